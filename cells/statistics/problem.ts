@@ -1,0 +1,42 @@
+// A problem: everything a fit needs, as numbers. All columns have the same length and hold the rows used, no missing value among them.
+// Symbols are those of the README: y response, m trials, R repeat, w precision, o offset, E exposure.
+
+/** Families and links by name, with their parameters in order. */
+export type FamilySpec = { readonly name: string; readonly parameters: readonly number[] }
+export type LinkSpec = { readonly name: string; readonly parameters: readonly number[] }
+
+export type Variable =
+  | { readonly type: "number"; readonly values: Float64Array }
+  | { readonly type: "factor"; readonly codes: Int32Array; readonly levels: readonly string[]; readonly coding: "corner" | "sum_to_zero" }
+
+export type Piece = {
+  readonly variable: string
+  readonly as: "itself" | "log" | "square_root" | "power" | "polynomial" | "natural_spline" | "periodic" | "category"
+  readonly setting: number | null
+}
+export type Term = { readonly pieces: readonly Piece[]; readonly says: string }
+
+export type Dispersion = "one" | "pearson" | "deviance" | "likelihood" | number
+
+export type Problem = {
+  readonly family: FamilySpec
+  readonly link: LinkSpec
+  readonly intercept: boolean
+  readonly terms: readonly Term[]
+  readonly variables: { readonly [name: string]: Variable }
+  /** Rows used. */
+  readonly rows: number
+  /** Binomial: the proportion K/N. */
+  readonly y: Float64Array
+  readonly trials: Float64Array | null
+  readonly repeat: Float64Array | null
+  readonly precision: Float64Array | null
+  readonly offset: Float64Array | null
+  readonly exposure: Float64Array | null
+  /** Cluster codes for `sandwich by C`. */
+  readonly cluster: Int32Array | null
+  readonly dispersion: Dispersion
+  readonly standardErrors: "expected" | "observed" | "sandwich"
+  /** Level of the intervals, such as 0.95. */
+  readonly confidence: number
+}
