@@ -1,0 +1,39 @@
+// What a model finds, as far as other kinds may rely on it: the one place where `model` and its readers (scales, value, and later
+// compare, effects and the like) meet, since kinds do not import each other. Plain data, so that a reader can refit with another link.
+
+import type { Name } from "../runtime/value.ts"
+import type { Expression } from "./language/expression.ts"
+import type { Fit } from "./statistics/fit.ts"
+import type { Problem, Variable } from "./statistics/problem.ts"
+
+/** How a column is called on axes and in sentences. */
+export type Label = { readonly label: string; readonly unit: string | null }
+
+/** An offset keeps its expression, so that its columns can be held at a value as the predictors are. */
+export type OffsetFinding = {
+  readonly expression: Expression
+  /** Columns it reads, over the rows used. */
+  readonly variables: { readonly [name: Name]: Variable }
+  /** Dials and values it reads. */
+  readonly numbers: { readonly [name: Name]: number }
+}
+
+export type ModelFinding = {
+  readonly problem: Problem
+  readonly fit: Fit
+  /** The link as a clause would say it, numbers in the place of dials: `cloglog`, `power(0.5)`. */
+  readonly link: string
+  readonly response: Label & {
+    /** What one observation is. */
+    readonly measured: "number" | "count" | "share" | "truth"
+  }
+  /** Every column of the predictor and of the offset. */
+  readonly labels: { readonly [name: Name]: Label }
+  readonly offset: OffsetFinding | null
+  /** The column of the exposure, where there is one. */
+  readonly exposure: (Label & { readonly name: Name }) | null
+  /** Record numbers (from 0) of the rows used, in the file with this name. */
+  readonly records: Uint32Array
+  /** Rows of the table that were not used, by why. */
+  readonly unused: readonly { readonly by: string; readonly rows: number }[]
+}
