@@ -63,7 +63,10 @@ export interface Work {
   checkpoint(): Promise<void>
   /** Hands out one part of the finding, once and final; readers of that part may go on. */
   publish(part: string, value: Value): void
+  /** The bytes of an enclosure, from the start at each call; throws an Error called `NoFile` where the notebook has none of that name. */
   file(name: string): AsyncIterable<Uint8Array>
+  /** The SHA-256 of that enclosure, lower-case hex; null where the notebook has none of that name. */
+  fileHash(name: string): string | null
   /** The last finding of this cell, in a gesture only (for warm starts); else null. */
   readonly near: Value | null
   /**
