@@ -1,0 +1,31 @@
+// Numbers as a face sets them: written out by the one module that kinds use too, and lined up on the decimal point. Lining up adds only
+// spaces, so that nothing is shown to more digits than it was given.
+
+export {
+  absent,
+  decimalsOf,
+  plain,
+  written,
+  writtenCount,
+  writtenFixed,
+  writtenInFull,
+  writtenProbability,
+  writtenRange,
+  writtenShare,
+} from "../../cells/figure/number.ts"
+
+/** A written number in two: up to the decimal point, and from the point on (empty for a whole number). */
+export function atPoint(text: string): { readonly before: string; readonly after: string } {
+  const [, before = text, after = ""] = /^([−\d\u202f]+)(\..*)$/u.exec(text) ?? []
+  return { before, after }
+}
+
+/** Texts of one column, padded with ordinary spaces so that points stand under each other where every sign is equally wide. */
+export function pointAligned(texts: readonly string[]): readonly string[] {
+  const halves = texts.map(atPoint)
+  const before = Math.max(0, ...halves.map((half) => [...half.before].length))
+  const after = Math.max(0, ...halves.map((half) => [...half.after].length))
+  return halves.map((half) => spaces(before - [...half.before].length) + half.before + half.after + spaces(after - [...half.after].length))
+}
+
+const spaces = (count: number): string => " ".repeat(Math.max(0, count))
