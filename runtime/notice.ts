@@ -24,6 +24,8 @@ export interface ClauseEdit {
   /** Which of the clauses with this keyword, counted from 0; one past the last adds a clause. */
   readonly nth: number
   readonly says: string | null
+  /** Another keyword to stand in place of `clause`: mends one that is misspelt, where it stands. */
+  readonly keyword?: string
 }
 
 /** What a click would do to the text. `rewritten` in statement.ts turns it into writes. */
