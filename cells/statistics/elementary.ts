@@ -271,11 +271,8 @@ const powersOfTwo = new Float64Array(2098)
 for (let i = 0, power = 5e-324; i < 2098; i++, power *= 2) powersOfTwo[i] = power
 
 const rounding = 6755399441055744
-// Written out, not taken from Math: its constants are only said to be approximate.
-// biome-ignore lint/suspicious/noApproximativeNumericConstant: as above.
-const inverseLn2 = 1.4426950408889634
-// biome-ignore lint/suspicious/noApproximativeNumericConstant: as above.
-const ln2 = 0.6931471805599453
+const inverseLn2 = Math.LOG2E
+const ln2 = Math.LN2
 const ln2High = 0.6931471803691238
 const ln2Low = 1.9082149292705877e-10
 const halfPi = 1.5707963267948966

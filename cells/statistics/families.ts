@@ -1,0 +1,89 @@
+// The families, each a record of scalar functions. Unit deviances do not cancel near y = μ and log densities have every constant; both
+// are built from the deviance term and the error of Stirling's formula (Loader 2000), so that large counts lose no digits either.
+
+import { log, log1p } from "./elementary.ts"
+import type { Family } from "./family.ts"
+import type { FamilySpec } from "./problem.ts"
+import { devianceTerm, halfLogTwoPi, stirlingError } from "./special.ts"
+
+/** Names of all families, in the order in which they are offered. */
+export const familyNames = ["normal", "binomial", "poisson", "gamma"] as const
+export type FamilyName = (typeof familyNames)[number]
+
+export const isFamilyName = (name: string): name is FamilyName => (familyNames as readonly string[]).includes(name)
+
+/** @throws RangeError for a name that is none: what a statement says is checked before */
+export const familyOf = (spec: FamilySpec): Family => {
+  if (!isFamilyName(spec.name) || spec.parameters.length > 0) throw new RangeError(`There is no family ${spec.name}.`)
+  return families[spec.name]
+}
+
+/** V = 1, u = (y − μ)². */
+const normal: Family = {
+  name: "normal",
+  range: { low: -Infinity, high: Infinity },
+  discrete: false,
+  dispersion: "pearson",
+  variance: () => 1,
+  varianceSlope: () => 0,
+  unitDeviance: (y, mu) => (y - mu) * (y - mu),
+  logDensity: (y, mu, _rest, _trials, phi) => -halfLogTwoPi - 0.5 * log(phi) - ((y - mu) / phi) * (0.5 * (y - mu)),
+}
+
+/** V = μ(1 − μ), y the share of successes, u = 2[y ln(y/μ) + (1 − y) ln((1 − y)/(1 − μ))]. McCullagh & Nelder (1989), §4.4. */
+const binomial: Family = {
+  name: "binomial",
+  range: { low: 0, high: 1 },
+  discrete: true,
+  dispersion: "one",
+  variance: (mu, rest) => mu * rest,
+  varianceSlope: (mu, rest) => rest - mu,
+  unitDeviance: (y, mu, rest) => 2 * (devianceTerm(y, mu) + devianceTerm(1 - y, rest)),
+  logDensity: (y, mu, rest, trials) => {
+    // The share was a quotient: times the trials it is a whole number again.
+    const successes = Math.round(y * trials)
+    const failures = trials - successes
+    if (successes === 0) return trials * (rest < 0.5 ? log(rest) : log1p(-mu))
+    if (failures === 0) return trials * (mu < 0.5 ? log(mu) : log1p(-rest))
+    return (
+      stirlingError(trials) -
+      stirlingError(successes) -
+      stirlingError(failures) -
+      devianceTerm(successes, trials * mu) -
+      devianceTerm(failures, trials * rest) -
+      halfLogTwoPi -
+      0.5 * log(successes * (failures / trials))
+    )
+  },
+}
+
+/** V = μ, u = 2[y ln(y/μ) − (y − μ)]. McCullagh & Nelder (1989), §6.2. */
+const poisson: Family = {
+  name: "poisson",
+  range: { low: 0, high: Infinity },
+  discrete: true,
+  dispersion: "one",
+  variance: (mu) => mu,
+  varianceSlope: () => 1,
+  unitDeviance: (y, mu) => 2 * devianceTerm(y, mu),
+  logDensity: (y, mu) => (y === 0 ? -mu : -stirlingError(y) - devianceTerm(y, mu) - halfLogTwoPi - 0.5 * log(y)),
+}
+
+/**
+ * V = μ², u = 2[(y − μ)/μ − ln(y/μ)]. McCullagh & Nelder (1989), §8.3.
+ *
+ * With ν = 1/φ the log density is ν ln(νy/μ) − νy/μ − ln y − ln Γ(ν); its large terms cancel against Stirling's formula for Γ.
+ */
+const gamma: Family = {
+  name: "gamma",
+  range: { low: 0, high: Infinity },
+  discrete: false,
+  dispersion: "pearson",
+  variance: (mu) => mu * mu,
+  varianceSlope: (mu) => 2 * mu,
+  unitDeviance: (y, mu) => (2 * devianceTerm(mu, y)) / mu,
+  logDensity: (y, mu, _rest, _trials, phi) =>
+    -devianceTerm(mu, y) / mu / phi - halfLogTwoPi - 0.5 * log(phi) - log(y) - stirlingError(1 / phi),
+}
+
+const families: Readonly<Record<FamilyName, Family>> = { normal, binomial, poisson, gamma }

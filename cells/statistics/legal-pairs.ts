@@ -1,0 +1,48 @@
+// Which link goes with which family: a link is legal where it is defined for every mean the family can have; the normal family takes all,
+// and its means are then those of the link. A legal link may still reach impossible means, which is the fit's business.
+
+import { familyNames, isFamilyName } from "./families.ts"
+import { isLinkName, type LinkName, linkNames } from "./links.ts"
+import type { FamilySpec, LinkSpec } from "./problem.ts"
+
+/** Whether the link is defined for every mean the family can have. Conventions: README.md, links. */
+export const isLegal = (family: FamilySpec, link: LinkSpec): boolean => {
+  if (!isFamilyName(family.name) || !isLinkName(link.name)) return false
+  return family.name === "normal" || family.name === "binomial" || !ontoShares.has(link.name)
+}
+
+/** The names of the legal links, the canonical one first. */
+export const legalLinks = (family: FamilySpec): readonly LinkName[] => {
+  const canonical = isFamilyName(family.name) ? canonicalLinks[family.name] : null
+  const names = (Object.keys(linkNames) as LinkName[]).filter((name) => isLegal(family, { name, parameters: [] }))
+  return canonical === null ? names : [canonical, ...names.filter((name) => name !== canonical)]
+}
+
+/** The names of the families for which the link is legal. */
+export const legalFamilies = (link: LinkSpec): readonly string[] => familyNames.filter((name) => isLegal({ name, parameters: [] }, link))
+
+/** The canonical link: that under which Xβ is the natural parameter. McCullagh & Nelder (1989), §2.2.4. */
+export const canonicalLink = (family: FamilySpec): LinkSpec => {
+  if (!isFamilyName(family.name)) throw new RangeError(`There is no family ${family.name}.`)
+  return { name: canonicalLinks[family.name], parameters: [] }
+}
+
+/** Whether the link is canonical, up to a linear change: `power(−1)` is the reciprocal. */
+export const isCanonical = (family: FamilySpec, link: LinkSpec): boolean => canonicalLink(family).name === plainLink(link).name
+
+/** A power that has a name of its own, by that name. */
+const plainLink = (link: LinkSpec): LinkSpec => {
+  if (link.name !== "power") return link
+  const name = { "-1": "reciprocal", "0": "log", "0.5": "square_root", "1": "identity" }[String(link.parameters[0])]
+  return name === undefined ? link : { name, parameters: [] }
+}
+
+const canonicalLinks: Readonly<Record<(typeof familyNames)[number], LinkName>> = {
+  normal: "identity",
+  binomial: "logit",
+  poisson: "log",
+  gamma: "reciprocal",
+}
+
+/** Links from the open interval (0, 1): counts and amounts can have means above 1. */
+const ontoShares: ReadonlySet<string> = new Set(["logit", "probit", "cauchit", "cloglog", "loglog"])
