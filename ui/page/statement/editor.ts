@@ -1,0 +1,242 @@
+// The one live editor: a statement under the hand. It is fetched when a hand first goes into a statement, keeps no history of its own (the
+// notebook has the only one) and says every change by an event. Colours come from the same marks as those of statements that stand still.
+
+import {
+  acceptCompletion,
+  autocompletion,
+  type Completion,
+  type CompletionContext,
+  type CompletionResult,
+  completionStatus,
+  startCompletion,
+} from "@codemirror/autocomplete"
+import { defaultKeymap, insertNewline } from "@codemirror/commands"
+import { type Diagnostic, lintKeymap, setDiagnostics } from "@codemirror/lint"
+import { Annotation, EditorSelection, EditorState, type Range, StateField } from "@codemirror/state"
+import { Decoration, type DecorationSet, EditorView, keymap } from "@codemirror/view"
+import type { Intent, Notice } from "../../../runtime/notice.ts"
+import { textRange } from "../../../runtime/place.ts"
+import { IntentEvent } from "../intent.ts"
+import { completion, type Surroundings } from "./completion.ts"
+import { marks } from "./marks.ts"
+import { readingOf } from "./reading.ts"
+
+/** The text changed under the hand. */
+export class TextEvent extends CustomEvent<string> {
+  static readonly type = "etamu-text"
+  constructor(text: string) {
+    super(TextEvent.type, { detail: text, bubbles: true })
+  }
+}
+
+/** The hand leaves the statement by a key: where to. */
+export class LeaveEvent extends CustomEvent<"stay" | "above" | "below"> {
+  static readonly type = "etamu-leave"
+  constructor(to: "stay" | "above" | "below") {
+    super(LeaveEvent.type, { detail: to, bubbles: true })
+  }
+}
+
+/** Marks a change that came from outside (undo, a mend), which is not to be told again. */
+const outside = Annotation.define<boolean>()
+
+export class StatementEditor extends HTMLElement {
+  /** Asked at each completion, so that it is never out of date. */
+  surroundings: () => Surroundings | null = () => null
+  #view: EditorView | null = null
+  #text = ""
+  #notices: readonly Notice[] = []
+  #label = ""
+  #start: { at: number; offer: boolean } | null = null
+
+  get text(): string {
+    return this.#text
+  }
+
+  /** Written to when the text changes elsewhere; the caret stays where it was, as far as that place is still there. */
+  set text(text: string) {
+    this.#text = text.replaceAll("\r\n", "\n")
+    const view = this.#view
+    const now = view?.state.doc.toString() ?? ""
+    if (view === null || now === this.#text) return
+    const { from, to, insert } = difference(now, this.#text)
+    view.dispatch({ changes: { from, to, insert }, annotations: outside.of(true) })
+  }
+
+  /** What is wrong, to be underlined where it stands. */
+  set notices(notices: readonly Notice[]) {
+    if (notices === this.#notices) return
+    this.#notices = notices
+    this.#underline()
+  }
+
+  set label(label: string) {
+    this.#label = label
+    this.#view?.contentDOM.setAttribute("aria-label", label)
+  }
+
+  /** Puts the caret at a place, and offers what could stand there where asked to. */
+  take(at: number, offer = false): void {
+    this.#start = { at, offer }
+    this.#takeUp()
+  }
+
+  connectedCallback(): void {
+    this.#view ??= new EditorView({ parent: this, state: EditorState.create({ doc: this.#text, extensions: this.#extensions() }) })
+    this.label = this.#label
+    this.#underline()
+    this.#takeUp()
+  }
+
+  disconnectedCallback(): void {
+    this.#view?.destroy()
+    this.#view = null
+  }
+
+  #takeUp(): void {
+    const view = this.#view
+    if (view === null || this.#start === null) return
+    const { at, offer } = this.#start
+    this.#start = null
+    view.dispatch({ selection: EditorSelection.cursor(Math.min(at, view.state.doc.length)), scrollIntoView: true })
+    view.focus()
+    if (offer) startCompletion(view)
+  }
+
+  #underline(): void {
+    const view = this.#view
+    if (view === null) return
+    view.dispatch(setDiagnostics(view.state, this.#notices.map((notice) => this.#diagnostic(notice, view.state.doc.toString()))))
+  }
+
+  #diagnostic(notice: Notice, text: string): Diagnostic {
+    const { from, to } = textRange(readingOf(text).statement, notice.at)
+    const { mend } = notice
+    const severity = notice.level === "fault" ? "error" : notice.level === "warning" ? "warning" : "info"
+    return {
+      from,
+      to: Math.min(Math.max(to, from), text.length),
+      severity,
+      message: notice.hint === null ? notice.text : `${notice.text} ${notice.hint}`,
+      ...(mend === null ? {} : { actions: [{ name: mend.label, apply: () => this.#mend(mend) }] }),
+    }
+  }
+
+  #mend(intent: Intent): void {
+    this.dispatchEvent(new IntentEvent({ intent }))
+  }
+
+  #extensions() {
+    return [
+      EditorView.lineWrapping,
+      EditorState.tabSize.of(2),
+      colours,
+      autocompletion({
+        override: [(context) => this.#complete(context)],
+        icons: false,
+        closeOnBlur: true,
+        optionClass: (option) => `sort-${option.type ?? ""}`,
+        activateOnCompletion: (option) => (option as Completion & { more?: boolean }).more === true,
+      }),
+      keymap.of([
+        { key: "Tab", run: acceptCompletion },
+        { key: "Enter", run: newClause },
+        { key: "Shift-Enter", run: insertNewline },
+        { key: "ArrowUp", run: (view) => this.#leaveAt(view, "above") },
+        { key: "ArrowDown", run: (view) => this.#leaveAt(view, "below") },
+        { key: "Escape", run: () => this.dispatchEvent(new LeaveEvent("stay")) },
+        ...lintKeymap.filter(({ key }) => key === "F8"),
+        ...defaultKeymap.filter(({ key }) => key !== "Escape"),
+      ]),
+      EditorView.contentAttributes.of({ spellcheck: "false", autocapitalize: "off", autocorrect: "off" }),
+      EditorView.updateListener.of((update) => {
+        if (!update.docChanged) return
+        this.#text = update.state.doc.toString()
+        if (!update.transactions.some((each) => each.annotation(outside) === true)) this.dispatchEvent(new TextEvent(this.#text))
+      }),
+    ]
+  }
+
+  /** Out of the first line upwards, and out of the last downwards, the arrow goes on to the neighbour. */
+  #leaveAt(view: EditorView, to: "above" | "below"): boolean {
+    const { main } = view.state.selection
+    if (completionStatus(view.state) === "active" || !main.empty) return false
+    const there = view.moveVertically(main, to === "below")
+    const stays = to === "above" ? main.head === 0 : main.head === view.state.doc.length
+    if (!stays || there.head !== main.head) return false
+    return this.dispatchEvent(new LeaveEvent(to))
+  }
+
+  #complete(context: CompletionContext): CompletionResult | null {
+    const around = this.surroundings()
+    if (around === null) return null
+    const typed = context.matchBefore(/[\p{L}_][\p{L}\p{M}\p{Nd}_]*|[( ]/u)
+    if (!context.explicit && typed === null) return null
+    const found = completion(context.state.doc.toString(), context.pos, around)
+    if (found === null) return null
+    return {
+      from: found.from,
+      validFor: /^[\p{L}_"][\p{L}\p{M}\p{Nd}_]*$/u,
+      options: found.options.map((option, i) => ({
+        label: option.label,
+        detail: option.says,
+        type: option.sort,
+        boost: -i / 100,
+        ...(option.more === true ? { more: true } : {}),
+        ...(option.apply === undefined ? {} : { apply: option.apply }),
+      })),
+    }
+  }
+}
+
+/** A line feed, and under the heading the two blanks by which a clause stands in. */
+function newClause(view: EditorView): boolean {
+  const { state } = view
+  if (completionStatus(state) === "active") return false
+  const { statement } = readingOf(state.doc.toString())
+  const { from } = state.selection.main
+  const inNote = statement.kind === "note"
+  const line = state.doc.lineAt(from)
+  const indent = inNote || statement.kind === null ? "" : /^\s+/.exec(line.text)?.[0] || "  "
+  view.dispatch(state.replaceSelection(`\n${indent}`), { scrollIntoView: true, userEvent: "input" })
+  return true
+}
+
+/** The marks of a text as decorations. Reading takes some 50 µs, so the whole cell is read again at each change. */
+const colours = StateField.define<DecorationSet>({
+  create: (state) => decorations(state.doc.toString()),
+  update: (now, change) => (change.docChanged ? decorations(change.newDoc.toString()) : now),
+  provide: (field) => EditorView.decorations.from(field),
+})
+
+function decorations(text: string): DecorationSet {
+  const ranges: Range<Decoration>[] = []
+  for (const { from, to, kind } of marks(readingOf(text))) if (to > from) ranges.push(decoration(kind).range(from, to))
+  return Decoration.set(ranges)
+}
+
+const made = new Map<string, Decoration>()
+
+function decoration(kind: string): Decoration {
+  const found = made.get(kind) ?? Decoration.mark({ class: `m-${kind}` })
+  made.set(kind, found)
+  return found
+}
+
+/** The least change that makes one text of another: what they share at both ends is left alone. */
+function difference(now: string, next: string): { readonly from: number; readonly to: number; readonly insert: string } {
+  const most = Math.min(now.length, next.length)
+  let head = 0
+  while (head < most && now[head] === next[head]) head++
+  let tail = 0
+  while (tail < most - head && now[now.length - 1 - tail] === next[next.length - 1 - tail]) tail++
+  return { from: head, to: now.length - tail, insert: next.slice(head, next.length - tail) }
+}
+
+customElements.define("etamu-editor", StatementEditor)
+
+declare global {
+  interface HTMLElementTagNameMap {
+    "etamu-editor": StatementEditor
+  }
+}
