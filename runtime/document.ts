@@ -49,3 +49,6 @@ export interface Transaction {
 export type Applied =
   | { readonly ok: true; readonly notebook: Notebook; readonly inverse: Transaction }
   | { readonly ok: false; readonly notice: Notice }
+
+/** The next notebook and the way back; or, for a change that does not fit, why not, and nothing has changed. */
+export declare function apply(notebook: Notebook, transaction: Transaction): Applied

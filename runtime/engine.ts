@@ -2,7 +2,8 @@
 // and ready. It never touches a value, has no clock and no randomness; who the evaluator is and when it is at rest is said from outside.
 
 import type { Applied, CellId, Notebook, Transaction } from "./document.ts"
-import type { Shown } from "./evaluator.ts"
+import type { Evaluator, Shown } from "./evaluator.ts"
+import type { AnyWords } from "./kind.ts"
 import type { Notice } from "./notice.ts"
 import type { Hash, Json, Key } from "./value.ts"
 
@@ -42,4 +43,22 @@ export interface Engine {
   ask(id: CellId, question: Json): Promise<Json>
   settled(): Promise<void>
   subscribe(listen: (event: EngineEvent) => void): () => void
+  /** The SHA-256 of every enclosure that the notebook, undo or redo names: the shelf sweeps the bytes of all others. */
+  readonly reached: ReadonlySet<string>
 }
+
+export interface EngineOptions {
+  readonly words: readonly AnyWords[]
+  readonly notebook: Notebook
+  readonly evaluator: Evaluator
+  /** How many bytes of findings are remembered; 256 MB unless said otherwise. */
+  readonly memoBytes?: number
+  /** How many cells on the screen are worked on at once; the rest go one by one. Decides the order, never a result. */
+  readonly atOnce?: number
+}
+
+/**
+ * An engine at rest over a notebook; it begins by itself. `settled()` is reached when nothing runs and nothing could run until more is
+ * said: late parts wait for `rest()`, so whoever needs them (a report, a decision, the terminal) calls `rest()` first.
+ */
+export declare function createEngine(options: EngineOptions): Engine

@@ -17,7 +17,8 @@ export interface Shown {
 export interface TaskInput {
   readonly name: Name
   readonly key: Key
-  readonly whole: Hash
+  /** Null while the maker is still at work and only parts of it are read. */
+  readonly whole: Hash | null
   readonly parts: readonly { readonly part: string; readonly hash: Hash }[] | null
   readonly offers: readonly string[] | null
 }
@@ -38,6 +39,8 @@ export interface Task {
 /** A finding as the engine knows it: hashes and what to show. `parts` is empty for a finding that has none. */
 export interface Found {
   readonly ok: boolean
+  /** The version of the kind that found it: goes into the key. */
+  readonly version: number
   /** Null when there is no finding, only notices. */
   readonly whole: Hash | null
   readonly parts: Readonly<Record<string, Hash>>
@@ -55,11 +58,17 @@ export type Result =
   | { readonly type: "lost"; readonly hashes: readonly Hash[] }
 
 export interface TaskEvents {
-  /** A part was published before the end. */
-  published(part: string, hash: Hash): void
+  /** A part was published before the end; `version` is that of the kind. */
+  published(part: string, hash: Hash, version: number): void
   /** The finding so far: shown now; late parts follow when the engine says `rest`. */
   soFar(found: Found): void
 }
+
+/** What a figure asked later gets. Lost: the value is no longer held, and its maker has to be evaluated again. */
+export type Answer =
+  | { readonly type: "answer"; readonly answer: Json }
+  | { readonly type: "lost" }
+  | { readonly type: "crash"; readonly text: string; readonly stack: string }
 
 /** Holds values by hash and does evaluate, hashing, show and summary. */
 export interface Evaluator {
@@ -67,7 +76,7 @@ export interface Evaluator {
   cancel(id: number): void
   /** Late parts of this task may start (true) or are not wanted (false). */
   rest(id: number, wanted: boolean): void
-  ask(kind: string, whole: Hash, text: string, question: Json): Promise<Json>
-  /** Everything else may be dropped. */
+  ask(kind: string, whole: Hash, text: string, question: Json): Promise<Answer>
+  /** Everything else may be dropped. A value that has come up since the last call survives this one, as its message may still be under way. */
   keep(hashes: ReadonlySet<Hash>): void
 }
