@@ -1,0 +1,93 @@
+// The canonical form against the examples printed in RFC 8785 (§3.2.2, §3.2.3 and appendix B), and what has no canonical form.
+
+import { describe, expect, it } from "vitest"
+import type { Json } from "../../../runtime/value.ts"
+import { canonical, plain } from "../../../storage/file/canonical.ts"
+
+const fromHex = (hex: string): number => {
+  const view = new DataView(new ArrayBuffer(8))
+  view.setBigUint64(0, BigInt(`0x${hex}`))
+  return view.getFloat64(0)
+}
+
+describe("the canonical form", () => {
+  it("is the one printed in RFC 8785 §3.2.2 for its example", () => {
+    const example = JSON.parse(
+      `{"numbers": [333333333.33333329, 1E30, 4.50, 2e-3, 0.000000000000000000000000001],
+        "string": "\\u20ac$\\u000F\\u000aA'\\u0042\\u0022\\u005c\\\\\\"\\/",
+        "literals": [null, true, false]}`,
+    ) as Json
+    expect(canonical(example)).toBe(
+      `{"literals":[null,true,false],"numbers":[333333333.3333333,1e+30,4.5,0.002,1e-27],"string":"€$\\u000f\\nA'B\\"\\\\\\\\\\"/"}`,
+    )
+  })
+
+  it("sorts members by UTF-16 units, as in RFC 8785 §3.2.3", () => {
+    const example = {
+      "\u20ac": "Euro Sign",
+      "\r": "Carriage Return",
+      "\ufb33": "Hebrew Letter Dalet With Dagesh",
+      "1": "One",
+      "\ud83d\ude00": "Emoji: Grinning Face",
+      "\u0080": "Control",
+      "\u00f6": "Latin Small Letter O With Diaeresis",
+    }
+    expect([...canonical(example).matchAll(/:"([^"]+)"/g)].map((match) => match[1])).toEqual([
+      "Carriage Return",
+      "One",
+      "Control",
+      "Latin Small Letter O With Diaeresis",
+      "Euro Sign",
+      "Emoji: Grinning Face",
+      "Hebrew Letter Dalet With Dagesh",
+    ])
+  })
+
+  it.each([
+    // IEEE 754 bits, and the text in RFC 8785, appendix B.
+    ["0000000000000000", "0"],
+    ["8000000000000000", "0"],
+    ["0000000000000001", "5e-324"],
+    ["8000000000000001", "-5e-324"],
+    ["7fefffffffffffff", "1.7976931348623157e+308"],
+    ["ffefffffffffffff", "-1.7976931348623157e+308"],
+    ["4340000000000000", "9007199254740992"],
+    ["c340000000000000", "-9007199254740992"],
+    ["4430000000000000", "295147905179352830000"],
+    ["44b52d02c7e14af5", "9.999999999999997e+22"],
+    ["44b52d02c7e14af6", "1e+23"],
+    ["44b52d02c7e14af7", "1.0000000000000001e+23"],
+    ["444b1ae4d6e2ef4e", "999999999999999700000"],
+    ["444b1ae4d6e2ef4f", "999999999999999900000"],
+    ["444b1ae4d6e2ef50", "1e+21"],
+    ["3eb0c6f7a0b5ed8c", "9.999999999999997e-7"],
+    ["3eb0c6f7a0b5ed8d", "0.000001"],
+    ["41b3de4355555553", "333333333.3333332"],
+    ["41b3de4355555554", "333333333.33333325"],
+    ["41b3de4355555555", "333333333.3333333"],
+    ["41b3de4355555556", "333333333.3333334"],
+    ["41b3de4355555557", "333333333.33333343"],
+    ["becbf647612f3696", "-0.0000033333333333333333"],
+    ["43143ff3c1cb0959", "1424953923781206.2"],
+  ])("writes the double %s as %s", (bits, text) => {
+    expect(canonical(fromHex(bits))).toBe(text)
+  })
+
+  it("says in words what JSON cannot hold", () => {
+    expect(canonical({ none: Number.NaN, up: Number.POSITIVE_INFINITY, down: Number.NEGATIVE_INFINITY })).toBe(
+      '{"down":"-infinity","none":null,"up":"infinity"}',
+    )
+  })
+
+  it("replaces half of a surrogate pair, which UTF-8 cannot hold", () => {
+    expect(canonical(["a\ud800b", "\udc00\ud83d\ude00", "\ud83d\ude00\ud800"])).toBe(
+      '["a\ufffdb","\ufffd\ud83d\ude00","\ud83d\ude00\ufffd"]',
+    )
+  })
+
+  it("keeps a member called __proto__", () => {
+    const hostile = JSON.parse('{"__proto__":{"x":1},"constructor":2}') as Json
+    expect(canonical(hostile)).toBe('{"__proto__":{"x":1},"constructor":2}')
+    expect(Object.getPrototypeOf(plain(hostile))).toBe(Object.prototype)
+  })
+})
