@@ -2,15 +2,10 @@
 // without loss. Each is good to 13 significant digits in both tails (a test holds it); an upper tail is always computed as such, never as
 // one minus the lower. The hard kernels come from @stdlib's single packages, which are plain arithmetic; what surrounds them is ours.
 
-import betainc from "@stdlib/math-base-special-betainc"
 import digammaKernel from "@stdlib/math-base-special-digamma"
 import erfcx from "@stdlib/math-base-special-erfcx"
-import gammainc from "@stdlib/math-base-special-gammainc"
-import gammaincinv from "@stdlib/math-base-special-gammaincinv"
 import gammaln from "@stdlib/math-base-special-gammaln"
-import kernelBetaincinv from "@stdlib/math-base-special-kernel-betaincinv"
 import trigammaKernel from "@stdlib/math-base-special-trigamma"
-import normalQuantileKernel from "@stdlib/stats-base-dists-normal-quantile"
 import { exp, log, log1p } from "./elementary.ts"
 
 /**
@@ -40,14 +35,22 @@ export const normalLogCdf = (x: number): number => {
   return log(0.5 * erfcx(-x * inverseRootTwo)) - 0.5 * x * x
 }
 
-/** Φ⁻¹(p): −Infinity at 0, Infinity at 1, NaN outside; for the upper tail use −normalQuantile of the tail. */
+/**
+ * Φ⁻¹(p): −Infinity at 0, Infinity at 1, NaN outside; for the upper tail use −normalQuantile of the tail.
+ *
+ * Wichura, M. J. (1988). Algorithm AS 241: the percentage points of the normal distribution. Applied Statistics 37, 477-484.
+ */
 export const normalQuantile = (p: number): number => {
   if (!(p > 0 && p < 1)) return p === 0 ? -Infinity : p === 1 ? Infinity : NaN
-  const x = normalQuantileKernel(p, 0, 1)
-  if (p > 1e-8) return x
-  // One Newton step on the log scale; the rational approximation of the far tail is not made for probabilities this small.
-  const mills = 0.5 * erfcx(-x * inverseRootTwo) * rootTwoPi
-  return x - (normalLogCdf(x) - log(p)) * mills
+  const q = p - 0.5
+  if (q >= -0.425 && q <= 0.425) {
+    const r = 0.180625 - q * q
+    return q * (polynomial(middleAbove, r) / polynomial(middleBelow, r))
+  }
+  const r = Math.sqrt(-log(q < 0 ? p : 1 - p))
+  const size =
+    r <= 5 ? polynomial(flankAbove, r - 1.6) / polynomial(flankBelow, r - 1.6) : polynomial(tailAbove, r - 5) / polynomial(tailBelow, r - 5)
+  return q < 0 ? -size : size
 }
 
 export const logGamma = (x: number): number => gammaln(x)
@@ -57,46 +60,59 @@ export const digamma = (x: number): number => digammaKernel(x)
 export const trigamma = (x: number): number => trigammaKernel(x)
 
 /** P(χ² > x) on `df` degrees of freedom. */
-export const chiSquareUpperTail = (x: number, df: number): number => (x <= 0 ? 1 : gammainc(x / 2, df / 2, true, true))
+export const chiSquareUpperTail = (x: number, df: number): number => (x > 0 ? upperGamma(df / 2, x / 2) : Number.isNaN(x) ? NaN : 1)
 
-/** The x with P(χ² > x) = p. */
-export const chiSquareUpperQuantile = (p: number, df: number): number => 2 * gammaincinv(p, df / 2, true)
+/** The x with P(χ² > x) = p, 0 < p < 1. Started where Wilson & Hilferty (1931) put it. */
+export const chiSquareUpperQuantile = (p: number, df: number): number => {
+  const spread = 2 / (9 * df)
+  const root = 1 - spread - normalQuantile(p) * Math.sqrt(spread)
+  return quantile(
+    df * (root > 0.1 ? root * root * root : 0.001),
+    p,
+    (x) => chiSquareUpperTail(x, df),
+    (x) => (df / 2 - 1) * log(x / 2) - x / 2 - gammaln(df / 2) - Math.LN2,
+  )
+}
 
 /** P(T > x) for Student's t on `df` degrees of freedom. */
 export const tUpperTail = (x: number, df: number): number => {
   if (x < 0) return 1 - tUpperTail(-x, df)
-  const square = x * x
-  // Of the two forms of one value, that whose argument is the smaller: the other has rounded it away.
-  return (
-    0.5 * (square < df ? betainc(square / (df + square), 0.5, df / 2, true, true) : betainc(df / (df + square), df / 2, 0.5, true, false))
-  )
+  if (x === Infinity) return 0
+  // Both parts of one are quotients of their own, since their difference from one would have lost the smaller.
+  const sum = df + x * x
+  return sum === Infinity ? 0 : 0.5 * lowerBeta(df / 2, 0.5, df / sum, (x * x) / sum)
 }
 
 /** P(F > x) for the F law on (df1, df2) degrees of freedom. */
 export const fUpperTail = (x: number, df1: number, df2: number): number => {
-  if (x <= 0) return 1
+  if (!(x > 0)) return Number.isNaN(x) ? NaN : 1
   const first = df1 * x
-  return first < df2
-    ? betainc(first / (first + df2), df1 / 2, df2 / 2, true, true)
-    : betainc(df2 / (first + df2), df2 / 2, df1 / 2, true, false)
+  const sum = first + df2
+  return sum === Infinity ? 0 : lowerBeta(df2 / 2, df1 / 2, df2 / sum, first / sum)
 }
 
 /** The x with P(T > x) = p, 0 < p < 1. */
 export const tUpperQuantile = (p: number, df: number): number => {
   if (p > 0.5) return -tUpperQuantile(1 - p, df)
   if (p === 0.5) return 0
-  const [part, rest] = kernelBetaincinv(df / 2, 0.5, 2 * p, 1 - 2 * p) as [number, number]
-  let x = Math.sqrt((df * rest) / part)
-  for (let i = 0; i < 2; i++) x = improved(x, tUpperTail(x, df), p, tLogDensity(x, df))
-  return x
+  const constant = gammaln((df + 1) / 2) - gammaln(df / 2) - 0.5 * log(df * Math.PI)
+  return quantile(
+    -normalQuantile(p),
+    p,
+    (x) => tUpperTail(x, df),
+    (x) => constant - ((df + 1) / 2) * log1p((x * x) / df),
+  )
 }
 
 /** The x with P(F > x) = p, 0 < p < 1. */
 export const fUpperQuantile = (p: number, df1: number, df2: number): number => {
-  const [part, rest] = kernelBetaincinv(df1 / 2, df2 / 2, 1 - p, p) as [number, number]
-  let x = (df2 * part) / (df1 * rest)
-  for (let i = 0; i < 2; i++) x = improved(x, fUpperTail(x, df1, df2), p, fLogDensity(x, df1, df2))
-  return x
+  const constant = gammaln((df1 + df2) / 2) - gammaln(df1 / 2) - gammaln(df2 / 2) + (df1 / 2) * log(df1 / df2)
+  return quantile(
+    1,
+    p,
+    (x) => fUpperTail(x, df1, df2),
+    (x) => constant + (df1 / 2 - 1) * log(x) - ((df1 + df2) / 2) * log1p((df1 * x) / df2),
+  )
 }
 
 /**
@@ -182,19 +198,131 @@ const stirlingErrors: readonly number[] = [
   0.009255462182712733,
 ]
 
-/** A Newton step on log P(X > x), on which tails are nearly straight. */
-const improved = (x: number, tail: number, wanted: number, logDensity: number): number => {
-  const step = (log(tail) - log(wanted)) * exp(log(tail) - logDensity)
-  return step > -0.5 * x && step < x ? x + step : x
+/**
+ * Q(a, x) = Γ(a, x)/Γ(a), the upper incomplete gamma function in its regular form, a > 0, x > 0.
+ *
+ * A series of positive terms for x < a + 1 and a continued fraction beyond (Abramowitz & Stegun 1964, 6.5.29 and 6.5.31), both with the
+ * factor x^a e^−x/Γ(a + 1) taken in Loader's form, in which nothing cancels for large a. About 10·√a steps where x is near a.
+ */
+const upperGamma = (a: number, x: number): number => {
+  if (x === Infinity) return 0
+  const factor = exp(-devianceTerm(a, x) - stirlingError(a) - halfLogTwoPi - 0.5 * log(a))
+  if (x < a + 1) {
+    let term = 1
+    let sum = 1
+    for (let k = 1; term > sum * 1e-17; k++) {
+      term *= x / (a + k)
+      sum += term
+    }
+    return 1 - factor * sum
+  }
+  let b = x + 1 - a
+  let c = Infinity
+  let d = 1 / b
+  let fraction = d
+  for (let k = 1; k < longestFraction; k++) {
+    const numerator = -k * (k - a)
+    b += 2
+    d = 1 / (b + numerator * d)
+    c = b + numerator / c
+    fraction *= c * d
+    if (arrived(c * d)) break
+  }
+  return factor * a * fraction
 }
 
-const tLogDensity = (x: number, df: number): number =>
-  gammaln((df + 1) / 2) - gammaln(df / 2) - 0.5 * log(df * Math.PI) - ((df + 1) / 2) * log1p((x * x) / df)
+/**
+ * I_x(a, b), the regular incomplete beta function, with y = 1 − x given to full precision.
+ *
+ * The continued fraction of DiDonato & Morris (1992), ACM Transactions on Mathematical Software 18, 360-373, equation 9, on the side of
+ * the mean where it converges fast (about √max(a, b) steps at worst), with the factor x^a y^b/B(a, b) in Loader's form. The better known
+ * fraction 26.5.8 of Abramowitz & Stegun loses a digit for every tenfold of a where x is near 1, just where t on many degrees of freedom is.
+ */
+const lowerBeta = (a: number, b: number, x: number, y: number): number => {
+  if (x === 0) return 0
+  if (y === 0) return 1
+  return x * (a + b + 2) < a + 1 ? betaFraction(a, b, x, y) : 1 - betaFraction(b, a, y, x)
+}
 
-const fLogDensity = (x: number, df1: number, df2: number): number =>
-  gammaln((df1 + df2) / 2) -
-  gammaln(df1 / 2) -
-  gammaln(df2 / 2) +
-  (df1 / 2) * log(df1 / df2) +
-  (df1 / 2 - 1) * log(x) -
-  ((df1 + df2) / 2) * log1p((df1 * x) / df2)
+const betaFraction = (a: number, b: number, x: number, y: number): number => {
+  const n = a + b
+  const factor = exp(
+    stirlingError(n) -
+      stirlingError(a) -
+      stirlingError(b) -
+      devianceTerm(a, n * x) -
+      devianceTerm(b, n * y) -
+      halfLogTwoPi +
+      0.5 * log((b / n) * a),
+  )
+  const lead = a * y - b * x + 1
+  let fraction = (a * lead) / (a + 1)
+  let c = fraction
+  let d = 0
+  for (let m = 1; m < longestFraction; m++) {
+    const middle = a + 2 * m - 1
+    const above = ((m * (a + m - 1)) / middle) * ((n + m - 1) / middle) * (b - m) * x * x
+    const below = m + (m * (b - m) * x) / middle + ((a + m) * (lead + m * (2 - x))) / (middle + 2)
+    d = 1 / (below + above * d)
+    c = below + above / c
+    fraction *= c * d
+    if (arrived(c * d)) break
+  }
+  return factor / fraction
+}
+
+/** Enough for a, b up to about 10^10; a bound against rounding that would take turns. */
+const longestFraction = 1_000_000
+const arrived = (ratio: number): boolean => ratio > 1 - 2e-16 && ratio < 1 + 3e-16
+
+// Numerators and denominators of AS 241, from the constant upwards: |p − ½| ≤ 0.425, then r = √(−ln p) up to 5 and beyond.
+const middleAbove = [
+  3.3871328727963665, 133.14166789178438, 1971.5909503065513, 13731.69376550946, 45921.95393154987, 67265.7709270087, 33430.57558358813,
+  2509.0809287301227,
+]
+const middleBelow = [
+  1, 42.31333070160091, 687.1870074920579, 5394.196021424751, 21213.794301586597, 39307.89580009271, 28729.085735721943, 5226.495278852854,
+]
+const flankAbove = [
+  1.4234371107496835, 4.630337846156546, 5.769497221460691, 3.6478483247632045, 1.2704582524523684, 0.2417807251774506,
+  0.022723844989269184, 0.0007745450142783414,
+]
+const flankBelow = [
+  1, 2.053191626637759, 1.6763848301838038, 0.6897673349851, 0.14810397642748008, 0.015198666563616457, 0.0005475938084995345,
+  1.0507500716444169e-9,
+]
+const tailAbove = [
+  6.657904643501103, 5.463784911164114, 1.7848265399172913, 0.29656057182850487, 0.026532189526576124, 0.0012426609473880784,
+  0.000027115555687434876, 2.0103343992922881e-7,
+]
+const tailBelow = [
+  1, 0.599832206555888, 0.1369298809227358, 0.014875361290850615, 0.0007868691311456133, 0.000018463183175100548, 1.421511758316446e-7,
+  2.0442631033899397e-15,
+]
+
+/** The polynomial with these eight coefficients, by Horner's rule. */
+const polynomial = (c: readonly number[], x: number): number => {
+  let value = 0
+  for (let i = 7; i >= 0; i--) value = value * x + (c[i] as number)
+  return value
+}
+
+/**
+ * The positive x at which a falling tail is p: Newton's method for log P(X > x) as a function of log x, on which the tails of all three
+ * laws are straight or bend downwards, so that it arrives from the right without overshooting. The density steers only.
+ */
+const quantile = (start: number, p: number, tail: (x: number) => number, logDensity: (x: number) => number): number => {
+  const wanted = log(p)
+  let x = start
+  for (let i = 0; i < mostSteps; i++) {
+    const logTail = log(tail(x))
+    const step = logTail === -Infinity ? -1 : (logTail - wanted) * exp(logTail - logDensity(x) - log(x))
+    const bounded = Math.max(-longestStep, Math.min(longestStep, step))
+    x *= exp(bounded)
+    if (bounded < 1e-15 && bounded > -1e-15) break
+  }
+  return x
+}
+/** Far more than ever needed (about ten): a bound, since two neighbouring doubles may take turns. */
+const mostSteps = 100
+const longestStep = 5
