@@ -39,6 +39,8 @@ export interface Words<Said> {
   /** Whether the heading needs a name ("needed"), may have one, or defines nothing. */
   readonly name: "needed" | "optional"
   readonly clauses: Readonly<Record<string, ClauseWords>>
+  /** What may follow the name in the heading, as in `value NAME = EXPR`; left out: nothing. */
+  readonly heading?: ClauseWords
   /** One line on what the kind is for. */
   readonly says: string
   /** A statement that can be inserted as a start. */

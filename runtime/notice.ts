@@ -20,6 +20,7 @@ export interface Place {
 export interface ClauseEdit {
   /** The cell whose statement is edited; null: the one that carries the intent. */
   readonly cell: Name | null
+  /** The keyword; "" for the heading, of which `says` is the whole. */
   readonly clause: string
   /** Which of the clauses with this keyword, counted from 0; one past the last adds a clause. */
   readonly nth: number

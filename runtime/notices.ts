@@ -78,9 +78,6 @@ export const notAvailableYet = (kind: string, at: Place): Notice =>
     at,
   )
 
-export const reservedName = (name: string, at: Place): Notice =>
-  fault("cell/reserved-name", `No cell can be called ${name}: the word has a meaning of its own.`, "Give the cell another name.", at)
-
 export const doubledName = (name: string, cells: number, at: Place): Notice =>
   fault(
     "cell/doubled-name",

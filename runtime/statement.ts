@@ -108,11 +108,13 @@ export function canonical(statement: Statement): string {
 /**
  * The text with one clause said otherwise, everything else byte for byte. A new clause goes last, indented as the clause above, before
  * blank lines and comments at the end; a clause taken away takes its lines with it. A comment inside a clause of several lines that is
- * said anew moves to a line above it. A note and an empty cell have no clauses, and stay as they are.
+ * said anew moves to a line above it. A note and an empty cell have no clauses, and stay as they are. An edit of the clause "" is one of
+ * the heading, which can be said otherwise but not taken away.
  */
 export function rewritten(text: string, edit: ClauseEdit): string {
   const statement = read(text)
   if (statement.kind === null || statement.kind === "note") return text
+  if (edit.clause === "") return edit.says === null ? text : saidInHeading(statement, edit.says)
   const clause = statement.clauses.filter(({ keyword }) => keyword === edit.clause)[edit.nth]
   if (clause === undefined) return edit.says === null ? text : added(statement, edit.keyword ?? edit.clause, edit.says)
   return edit.says === null ? without(text, clause) : said(text, clause, edit.keyword ?? edit.clause, edit.says)
@@ -170,6 +172,11 @@ function said(text: string, clause: Clause, keyword: string, says: string): stri
   const comments = commentsWithin(text, clause)
   const lead = comments.map((comment) => comment + feedOf(text) + indentation(text, clause)).join("")
   return text.slice(0, clause.from) + lead + phrase(keyword, says) + text.slice(clause.to)
+}
+
+function saidInHeading({ text, heading }: Statement, says: string): string {
+  const from = heading[0]?.from ?? 0
+  return text.slice(0, from) + says + text.slice(heading.at(-1)?.to ?? from)
 }
 
 /** Comments between the first and the last token of a clause: what is left over when its tokens are taken out. */
