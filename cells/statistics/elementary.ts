@@ -151,7 +151,7 @@ export const pow = (x: number, y: number): number => {
 /** Sine of x radians, error below 1 ulp for every x. */
 export const sin = (x: number): number => {
   if (!(x > -Infinity && x < Infinity)) return NaN
-  if (x > -quarterPi && x < quarterPi) return sineKernel(x, 0)
+  if (x > -quarterPi && x < quarterPi) return x > -tiny && x < tiny ? x : sineKernel(x, 0)
   const quarter = reduced(x)
   const value = (quarter & 1) === 0 ? sineKernel(angle, angleRest) : cosineKernel(angle, angleRest)
   return (quarter & 2) === 0 ? value : -value
@@ -169,7 +169,7 @@ export const cos = (x: number): number => {
 /** Tangent of x radians, error below 1 ulp for every x. */
 export const tan = (x: number): number => {
   if (!(x > -Infinity && x < Infinity)) return NaN
-  if (x > -quarterPi && x < quarterPi) return tangentKernel(x, 0, false)
+  if (x > -quarterPi && x < quarterPi) return x > -tiny && x < tiny ? x : tangentKernel(x, 0, false)
   const quarter = reduced(x)
   return tangentKernel(angle, angleRest, (quarter & 1) === 1)
 }
@@ -179,7 +179,7 @@ export const asin = (x: number): number => {
   const size = x < 0 ? -x : x
   if (!(size <= 1)) return NaN
   if (size === 1) return x * halfPi + x * halfPiLow
-  if (size < 0.5) return size < 7.450580596923828e-9 ? x : x + x * arcTail(x * x)
+  if (size < 0.5) return size < tiny ? x : x + x * arcTail(x * x)
   const z = 0.5 * (1 - size)
   const r = arcTail(z)
   const s = Math.sqrt(z)
@@ -210,7 +210,7 @@ export const atan = (x: number): number => {
   if (Number.isNaN(x)) return NaN
   const size = x < 0 ? -x : x
   if (size >= 7.378697629483821e19) return x < 0 ? -halfPi : halfPi
-  if (size < 0.4375) return size < 7.450580596923828e-9 ? x : x - x * arcTangentTail(x)
+  if (size < 0.4375) return size < tiny ? x : x - x * arcTangentTail(x)
   let result: number
   if (size < 0.6875) result = arcTangentAbout((2 * size - 1) / (2 + size), 0.4636476090008061, 2.2698777452961687e-17)
   else if (size < 1.1875) result = arcTangentAbout((size - 1) / (size + 1), quarterPi, 3.061616997868383e-17)
@@ -277,6 +277,8 @@ const ln2High = 0.6931471803691238
 const ln2Low = 1.9082149292705877e-10
 const halfPi = 1.5707963267948966
 const halfPiLow = 6.123233995736766e-17
+/** 2^−27: the square of less is lost beside 1. */
+const tiny = 7.450580596923828e-9
 const quarterPi = 0.7853981633974483
 
 // exp: r − t·P(t) is r·(e^r + 1)/(e^r − 1) but for a term, on |r| ≤ ½ln 2.
