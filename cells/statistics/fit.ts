@@ -1,6 +1,20 @@
-// Fits: the whole of iteratively reweighted least squares, and what a fit is. See conventions for every definition.
+// Fits: a problem in, everything known about its maximum out. The climbing is in scoring.ts, what errors and tests follow from it in
+// inference.ts, what is certified about it in certificate.ts; this file puts them in order. Definitions: README.md.
 
-import type { Problem, Variable } from "./problem.ts"
+import { basisOf, type Dependence, mostInflation, reweightedBasis } from "./basis.ts"
+import { basisCoefficients, designCoefficients } from "./change.ts"
+import { columnsNeeded, type Design, designOf, mostColumns, recipeOf } from "./design.ts"
+import { dispersionRule } from "./dispersion.ts"
+import { Factor } from "./gram.ts"
+import { findings } from "./inference.ts"
+import { nullModel } from "./null-model.ts"
+import type { Problem } from "./problem.ts"
+import type { Recipe } from "./recipe.ts"
+import { type Responses, responsesOf } from "./rows.ts"
+import { Equations, type Maximum, maximum, Pace, type Point, polished } from "./scoring.ts"
+import { startingPoint } from "./start.ts"
+
+export type { Recipe } from "./recipe.ts"
 
 export type Coefficient = {
   /** Its term, such as `night`, `lot is b`, `lot is b . night`, `polynomial(night) 2`, `intercept`. */
@@ -26,10 +40,9 @@ export type Certificate = {
   readonly evidence: DependentTerms | null
 }
 /** Columns left out because earlier ones already say what they say: each with the columns and factors that make it. */
-export type DependentTerms = { readonly dependent: readonly { readonly column: string; readonly on: readonly { readonly column: string; readonly times: number }[] }[] }
-
-/** How to make the columns of the design for other rows: plain data, learned from the rows used (knots, orthogonal polynomials). */
-export type Recipe = { readonly [member: string]: import("./recipe.ts").RecipeValue }
+export type DependentTerms = {
+  readonly dependent: readonly { readonly column: string; readonly on: readonly { readonly column: string; readonly times: number }[] }[]
+}
 
 export type Fit = {
   readonly n: number
@@ -51,16 +64,124 @@ export type Fit = {
   readonly certificate: Certificate
   readonly goodnessOfLink: { readonly statistic: number; readonly df: number; readonly p: number } | null
   readonly meanRange: { readonly possible: readonly [number, number]; readonly fitted: readonly [number, number] }
+  /** Clusters of `sandwich by C`; null otherwise. */
+  readonly clusters: number | null
+  /** Degrees of freedom of the t of Wald ratios and intervals; null for the normal law. */
+  readonly lawDf: number | null
   readonly eta: Float64Array
   readonly mu: Float64Array
   readonly recipe: Recipe
+  /** What `predicted` needs beside the coefficients. */
+  readonly frame: Frame
 }
 
+/** The basis a fit was made in, so that standard errors elsewhere lose nothing to the distance from the origin. */
+export type Frame =
+  | {
+      readonly type: "scaled"
+      readonly column: Int32Array
+      readonly centre: Float64Array
+      readonly scale: Float64Array
+      readonly carrier: Int32Array
+      readonly gamma: Float64Array
+      /** Covariance in the basis by rows; empty where there are no errors. */
+      readonly covariance: Float64Array
+    }
+  | {
+      readonly type: "orthogonal"
+      readonly column: Int32Array
+      readonly high: Float64Array
+      readonly low: Float64Array
+      readonly gamma: Float64Array
+      readonly covariance: Float64Array
+    }
+
 /** A fit in the way of the world: to be told apart from a fit. */
-export type Fitted = { readonly ok: true; readonly fit: Fit } | { readonly ok: false; readonly why: "no_rows" | "no_start" | "gave_up"; readonly detail: string }
+export type Fitted =
+  | { readonly ok: true; readonly fit: Fit }
+  | { readonly ok: false; readonly why: "no_rows" | "no_start" | "gave_up"; readonly detail: string }
 
 /** `pause` is awaited at least every 50 ms of work; `near` is a fit of the same design to start from (gestures only). */
-export declare function fit(problem: Problem, pause: () => Promise<void>, near?: Fit | null): Promise<Fitted>
+export async function fit(problem: Problem, pause: () => Promise<void>, near: Fit | null = null): Promise<Fitted> {
+  if (problem.rows === 0) return { ok: false, why: "no_rows", detail: "no row has everything the model needs" }
+  const needed = columnsNeeded(problem.terms, problem.intercept, problem.variables)
+  if (needed > mostColumns)
+    return { ok: false, why: "gave_up", detail: `the predictor makes ${needed} columns, and at most ${mostColumns} are fitted` }
+  const pace = new Pace(pause)
+  const design = designOf(
+    recipeOf(problem.terms, problem.intercept, problem.variables, problem.rows, problem.repeat),
+    problem.variables,
+    problem.rows,
+  )
+  const unfit = missingIn(design)
+  if (unfit !== null) return { ok: false, why: "gave_up", detail: unfit }
+  const responses = responsesOf(problem)
+  const { basis, dependences } = basisOf(design)
+  if (pace.due(problem.rows * (50 + basis.plain.length * basis.plain.length))) await pace.rest()
+  const phi = provisionalDispersion(problem, responses)
+  const none = await nullModel(responses, pace, phi(1))
+  let equations = new Equations(basis, responses, pace)
+  const columns = design.recipe.columns.length
+  const constant = design.constant ? 0 : -1
+  const warm = near ? Float64Array.from(near.coefficients, ({ beta }) => beta ?? 0) : null
+  const start = await startingPoint(equations, constant, columns, none, warm)
+  if (!start) return { ok: false, why: "no_start", detail: "no coefficients were found under which every mean is possible" }
+  let found = await maximum(equations, start, phi(basis.size))
+  ;({ equations, found } = await sharpened(design, equations, found, phi(basis.size), columns))
+  return { ok: true, fit: await findings({ problem, design, responses, equations, found, dependences: named(dependences, design), none }) }
+}
 
-/** η without offset and its standard error at other rows; variables as the recipe wants them. */
-export declare function predicted(fit: Fit, variables: Readonly<Record<string, Variable>>, rows: number): { readonly eta: Float64Array; readonly error: Float64Array }
+/** φ for stopping rules: the number said, or Pearson's X² over what is left, never taken as more than a first idea. */
+function provisionalDispersion(problem: Problem, responses: Responses): (rank: number) => (point: Point) => number {
+  const { given } = dispersionRule(problem)
+  if (given !== null) return () => () => given
+  if (responses.family.discrete) return () => () => 1
+  let n = 0
+  for (let i = 0; i < responses.rows; i++) n += problem.repeat ? (problem.repeat[i] as number) : 1
+  return (rank) => (point) => point.pearson / Math.max(1, n - rank)
+}
+
+/** The same maximum in a basis orthonormal under its own weights, where the weights have made the columns nearly dependent. */
+async function sharpened(
+  design: Design,
+  equations: Equations,
+  found: Maximum,
+  phi: (point: Point) => number,
+  columns: number,
+): Promise<{ readonly equations: Equations; readonly found: Maximum }> {
+  if (found.end !== "arrived") return { equations, found }
+  await equations.fill(found.point, "expected", true)
+  const inflation = Factor.of(found.point.gram)?.inflation() ?? Number.POSITIVE_INFINITY
+  if (inflation < mostInflation) return { equations, found }
+  const basis = reweightedBasis(design, equations.basis, found.point.state.weight)
+  if (!basis) return { equations, found }
+  const next = new Equations(basis, equations.responses, equations.pace)
+  const point = next.point()
+  point.gamma.set(basisCoefficients(basis, designCoefficients(equations.basis, columns, found.point.gamma, found.point.gammaLow)))
+  if (!(await next.fill(point, "expected", true))) return { equations, found }
+  const again = await polished(next, point, next.point(), phi, found.iterations)
+  if (again.end !== "arrived") return { equations, found }
+  await next.fill(again.point, "expected", true)
+  return { equations: next, found: again }
+}
+
+const named = (dependences: readonly Dependence[], design: Design): DependentTerms["dependent"] =>
+  dependences.map(({ column, on }) => ({
+    column: design.recipe.columns[column] as string,
+    on: on.map((part) => ({ column: design.recipe.columns[part.column] as string, times: part.times })),
+  }))
+
+/** Rows used have everything present; where that is not so it is our mistake, said rather than computed with. */
+function missingIn(design: Design): string | null {
+  for (const { column, values } of design.plain) {
+    for (let i = 0; i < design.rows; i++)
+      if (!Number.isFinite(values[i] as number)) return `${design.recipe.columns[column]} is missing in a row`
+  }
+  for (const { cells, multiplier, columns } of design.blocks) {
+    for (let i = 0; i < design.rows; i++) {
+      if ((cells[i] as number) < 0 || (multiplier && !Number.isFinite(multiplier[i] as number)))
+        return `${design.recipe.columns[columns[0] as number]} is missing in a row`
+    }
+  }
+  return null
+}

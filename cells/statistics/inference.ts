@@ -1,0 +1,451 @@
+// From a maximum to findings: dispersion, errors, tests, criteria, certificate. Every definition is that of the conventions (README.md);
+// nothing here climbs.
+
+import { type CertificateBasis, certified } from "./certificate.ts"
+import { changeMatrix, designCoefficients, designCovariance, designScore } from "./change.ts"
+import type { Design } from "./design.ts"
+import { dispersionByLikelihood, dispersionRule } from "./dispersion.ts"
+import { log } from "./elementary.ts"
+import type { Coefficient, DependentTerms, Fit, Frame } from "./fit.ts"
+import { cholesky, Factor, type Gram } from "./gram.ts"
+import type { NullModel } from "./null-model.ts"
+import type { Problem } from "./problem.ts"
+import type { Responses } from "./rows.ts"
+import { directionScore, spansConstant } from "./score-direction.ts"
+import type { Equations, Maximum, Point } from "./scoring.ts"
+import { singularValues } from "./singular-values.ts"
+import { chiSquareUpperTail, fUpperTail, normalQuantile, normalUpperTail, tUpperQuantile, tUpperTail } from "./special.ts"
+
+export type Findings = {
+  readonly problem: Problem
+  readonly design: Design
+  readonly responses: Responses
+  readonly equations: Equations
+  /** Its point is filled with expected weights where the search arrived. */
+  readonly found: Maximum
+  readonly dependences: DependentTerms["dependent"]
+  readonly none: NullModel | null
+}
+
+/** Below this index the data cannot tell a direction from the columns. */
+const leastIndex = 1e-9
+
+/** A fit is perfect where every response is met to this share of its size: what is left is rounding. */
+const perfection = 1e-13
+
+export async function findings(given: Findings): Promise<Fit> {
+  const { problem, design, responses, equations, found, none } = given
+  const { family, link } = responses
+  const { basis } = equations
+  const { point } = found
+  const columns = design.recipe.columns.length
+  const arrived = found.end === "arrived"
+  if (!arrived) await equations.fill(point, "expected")
+  const rank = basis.size
+  const n = rowsCounted(problem)
+  const df = n - rank
+  const rule = dispersionRule(problem)
+  const perfect = !family.discrete && isPerfect(responses, point)
+  const deviance = perfect ? 0 : point.deviance
+  const pearson = perfect ? 0 : point.pearson
+
+  const ml = dispersionByLikelihood(problem, deviance, n)
+  const phi =
+    rule.given ??
+    (problem.dispersion === "likelihood" ? ml : df > 0 ? (problem.dispersion === "deviance" ? deviance : pearson) / df : perfect ? 0 : null)
+  const errorsKnown = arrived && phi !== null
+
+  const factor = Factor.of(point.gram)
+  const clusters = problem.standardErrors === "sandwich" && problem.cluster ? new Set(problem.cluster).size : null
+  const covariance = errorsKnown && factor ? await covarianceOf(given, factor, phi, n, clusters) : null
+  const lawDf = clusters !== null ? clusters - 1 : rule.estimated ? df : null
+  const constant = design.constant || spansConstant(equations)
+  const certificate: CertificateBasis = await certified(given, factor, arrived)
+  const interior = certificate.class === "interior" || certificate.class === "unidentified"
+
+  const beta = designCoefficients(basis, columns, point.gamma, point.gammaLow)
+  const inside = new Uint8Array(columns)
+  for (const at of basis.change.column) inside[at] = 1
+  const lower = covariance ? designCovariance(basis, columns, covariance) : new Float64Array((columns * (columns + 1)) / 2).fill(Number.NaN)
+  const critical = criticalOf(lawDf, problem.confidence)
+  const coefficients = design.recipe.columns.map((of, j): Coefficient => {
+    const term = design.termOf[j] as number
+    if (inside[j] !== 1) return { of, term, beta: null, toward: null, standardError: null, ratio: null, p: null, low: null, high: null }
+    const b = beta[j] as number
+    const variance = lower[(j * (j + 1)) / 2 + j] as number
+    const error = variance >= 0 ? Math.sqrt(variance) : null
+    const ratio = error !== null && error > 0 ? b / error : null
+    return {
+      of,
+      term,
+      beta: b,
+      toward: null,
+      standardError: error,
+      ratio,
+      p: ratio === null ? null : twoSided(ratio, lawDf),
+      low: error === null || critical === null ? null : b - critical * error,
+      high: error === null || critical === null ? null : b + critical * error,
+    }
+  })
+
+  const logLikelihood = perfect ? null : logLikelihoodOf(problem, responses, point, rule.given ?? ml)
+  const counted = rank + (family.discrete || rule.given !== null ? 0 : 1)
+  const criteria = logLikelihood !== null && !(family.discrete && phi !== 1)
+  const scaled = scaledScore(equations, point, phi === null || phi === 0 ? 1 : phi)
+  const range = meanRange(point.state.mu)
+
+  let goodness: Fit["goodnessOfLink"] = null
+  if (interior && certificate.class === "interior" && factor && phi !== null && phi > 0) {
+    const v = point.state.eta.map((eta) => eta * eta)
+    const sandwich = problem.standardErrors === "sandwich" ? { repeat: problem.repeat, cluster: problem.cluster } : null
+    const score = directionScore(equations, point, factor, v, phi, constant, sandwich)
+    if (score.index >= leastIndex && Number.isFinite(score.statistic)) {
+      const p = rule.estimated && !sandwich ? fUpperTail(score.statistic, 1, df) : chiSquareUpperTail(score.statistic, 1)
+      goodness = { statistic: score.statistic, df: 1, p }
+    }
+  }
+
+  return {
+    n,
+    rows: problem.rows,
+    rank,
+    df,
+    parametersCounted: counted,
+    coefficients,
+    covariance: lower,
+    deviance: Number.isFinite(deviance) ? deviance : null,
+    logLikelihood,
+    interceptOnly: constant ? { deviance: none ? none.deviance : null, df: n - 1 } : null,
+    aic: criteria ? 2 * counted - 2 * logLikelihood : null,
+    bic: criteria ? log(trialsCounted(problem)) * counted - 2 * logLikelihood : null,
+    pearson,
+    fitTest: fitTests(problem, rule.given, deviance, pearson, df),
+    dispersion: { value: phi, by: problem.dispersion, estimated: rule.estimated },
+    certificate: {
+      class: certificate.class,
+      global: certificate.global,
+      iterations: found.iterations,
+      scaledScore: scaled,
+      condition: conditionOf(equations, point.gram),
+      evidence: given.dependences.length > 0 ? { dependent: given.dependences } : null,
+    },
+    goodnessOfLink: goodness,
+    meanRange: {
+      possible: [Math.max(link.range.low, family.range.low), Math.min(link.range.high, family.range.high)],
+      fitted: range,
+    },
+    clusters,
+    lawDf,
+    eta: point.state.eta.slice(),
+    mu: point.state.mu.slice(),
+    recipe: design.recipe,
+    frame: frameOf(equations, point, covariance),
+  }
+}
+
+/** The point beyond which half of (1 − confidence) lies, on the law of a fit's Wald ratios: half-widths are this many errors. */
+export const criticalValue = (fit: Fit, confidence: number): number => criticalOf(fit.lawDf, confidence) ?? Number.NaN
+
+const criticalOf = (df: number | null, confidence: number): number | null => {
+  const tail = (1 - confidence) / 2
+  if (df === null) return -normalQuantile(tail)
+  return df > 0 ? tUpperQuantile(tail, df) : null
+}
+
+const twoSided = (ratio: number, df: number | null): number | null => {
+  if (df === null) return 2 * normalUpperTail(Math.abs(ratio))
+  return df > 0 ? 2 * tUpperTail(Math.abs(ratio), df) : null
+}
+
+/** n: rows used, or the sum of `repeat`. */
+export const rowsCounted = (problem: Problem): number => (problem.repeat ? problem.repeat.reduce((sum, R) => sum + R, 0) : problem.rows)
+
+const trialsCounted = (problem: Problem): number => {
+  let sum = 0
+  for (let i = 0; i < problem.rows; i++)
+    sum += (problem.repeat ? (problem.repeat[i] as number) : 1) * (problem.trials ? (problem.trials[i] as number) : 1)
+  return sum
+}
+
+function isPerfect({ y, a, rows }: Responses, { state: { mu } }: Point): boolean {
+  for (let i = 0; i < rows; i++) {
+    if (
+      (a[i] as number) > 0 &&
+      !(Math.abs((y[i] as number) - (mu[i] as number)) <= perfection * Math.max(Math.abs(y[i] as number), Math.abs(mu[i] as number)))
+    )
+      return false
+  }
+  return true
+}
+
+const meanRange = (mu: Float64Array): readonly [number, number] => {
+  let [low, high] = [Number.POSITIVE_INFINITY, Number.NEGATIVE_INFINITY]
+  for (const m of mu) {
+    if (m < low) low = m
+    if (m > high) high = m
+  }
+  return [low, high]
+}
+
+// Errors ---------------------------------------------------------------------------------------------------------------------------------
+
+/** φ(X'WX)⁻¹, φ(X'JX)⁻¹ or the sandwich, in the basis and by rows; null where there are none. */
+async function covarianceOf(
+  given: Findings,
+  factor: Factor,
+  phi: number,
+  n: number,
+  clusters: number | null,
+): Promise<Float64Array | null> {
+  const { problem, equations, found, responses } = given
+  const { basis } = equations
+  if (problem.standardErrors === "expected") return times(factor.inverse(), phi)
+  // The observed weights go into a point of their own, which keeps the first as it is.
+  let bread: Factor | null = factor
+  if (!responses.canonical) {
+    const other = equations.point()
+    other.gamma.set(found.point.gamma)
+    other.gammaLow.set(found.point.gammaLow)
+    bread = (await equations.fill(other, "observed", true)) ? Factor.of(other.gram) : null
+  }
+  if (!bread) return null
+  if (problem.standardErrors === "observed") return times(bread.inverse(), phi)
+  const p = basis.size
+  const { score } = found.point.state
+  let meat: Float64Array
+  let factorOfSample: number
+  if (problem.cluster) {
+    const G = clusters ?? 0
+    if (G < 2 || n <= p) return null
+    meat = clusterMeat(equations, score, problem.cluster)
+    factorOfSample = (G / (G - 1)) * ((n - 1) / (n - p))
+  } else {
+    if (n <= p) return null
+    const squares = new Float64Array(basis.rows)
+    // A row that stands R times has R scores of a share 1/R each.
+    for (let i = 0; i < basis.rows; i++) {
+      const s = score[i] as number
+      squares[i] = problem.repeat ? (s / (problem.repeat[i] as number)) * s : s * s
+    }
+    meat = equations.weighted(squares).full()
+    factorOfSample = n / (n - p)
+  }
+  const inverse = bread.inverse()
+  return times(product(product(inverse, meat, p), inverse, p), factorOfSample)
+}
+
+/** Σ over clusters of u·u', u the sum of s·x in the cluster. */
+function clusterMeat(equations: Equations, score: Float64Array, cluster: Int32Array): Float64Array {
+  const { basis } = equations
+  const p = basis.size
+  const place = new Map<number, number>()
+  for (const c of cluster) if (!place.has(c)) place.set(c, place.size)
+  const sums = new Float64Array(place.size * p)
+  for (let i = 0; i < basis.rows; i++) {
+    const base = (place.get(cluster[i] as number) as number) * p
+    const s = score[i] as number
+    for (let j = 0; j < basis.plain.length; j++) {
+      const x = basis.plain[j] as Float64Array | null
+      sums[base + j] = (sums[base + j] as number) + (x === null ? s : s * (x[i] as number))
+    }
+    for (const block of basis.blocks) {
+      const cell = block.cells[i] as number
+      const own = block.multiplier === null ? s : s * (block.multiplier[i] as number)
+      for (let e = block.starts[cell] as number; e < (block.starts[cell + 1] as number); e++) {
+        const at = base + (block.column[e] as number)
+        sums[at] = (sums[at] as number) + own * (block.value[e] as number)
+      }
+    }
+  }
+  const meat = new Float64Array(p * p)
+  for (let g = 0; g < place.size; g++) {
+    for (let i = 0; i < p; i++) {
+      const u = sums[g * p + i] as number
+      if (u === 0) continue
+      for (let j = 0; j < p; j++) meat[i * p + j] = (meat[i * p + j] as number) + u * (sums[g * p + j] as number)
+    }
+  }
+  return meat
+}
+
+const times = (matrix: Float64Array, by: number): Float64Array => matrix.map((x) => x * by)
+
+function product(a: Float64Array, b: Float64Array, n: number): Float64Array {
+  const out = new Float64Array(n * n)
+  for (let i = 0; i < n; i++) {
+    for (let k = 0; k < n; k++) {
+      const x = a[i * n + k] as number
+      if (x === 0) continue
+      for (let j = 0; j < n; j++) out[i * n + j] = (out[i * n + j] as number) + x * (b[k * n + j] as number)
+    }
+  }
+  return out
+}
+
+function frameOf(equations: Equations, point: Point, covariance: Float64Array | null): Frame {
+  const { change } = equations.basis
+  const shared = { gamma: point.gamma.slice(), covariance: covariance ?? new Float64Array(0) }
+  return change.type === "scaled"
+    ? { type: "scaled", column: change.column, centre: change.centre, scale: change.scale, carrier: change.carrier, ...shared }
+    : { type: "orthogonal", column: change.column, high: change.high, low: change.low, ...shared }
+}
+
+// Criteria -------------------------------------------------------------------------------------------------------------------------------
+
+/** Σ R·w·log f where discrete, Σ R·log f(…, φ/w) where not; null where a density is infinite. */
+function logLikelihoodOf(problem: Problem, responses: Responses, point: Point, phi: number): number | null {
+  const { family, link, y, rows } = responses
+  const { repeat, precision, trials } = problem
+  const { eta, mu } = point.state
+  let total = 0
+  let part = 0
+  for (let i = 0; i < rows; i++) {
+    const R = repeat ? (repeat[i] as number) : 1
+    const w = precision ? (precision[i] as number) : 1
+    const m = mu[i] as number
+    const rest = link.complement === null ? 1 - m : link.complement(eta[i] as number)
+    const f = family.logDensity(y[i] as number, m, rest, trials ? (trials[i] as number) : 1, family.discrete ? 1 : phi / w)
+    part += family.discrete ? R * w * f : R * f
+    if (i % 128 === 127) {
+      total += part
+      part = 0
+    }
+  }
+  total += part
+  return Number.isFinite(total) ? total : null
+}
+
+/** D and X² on χ²(df), only where φ is fixed and no row is a single trial. */
+function fitTests(problem: Problem, given: number | null, deviance: number, pearson: number, df: number): Fit["fitTest"] {
+  if (given === null || df <= 0) return []
+  if (problem.family.name === "binomial" && (problem.trials === null || problem.trials.some((m) => m === 1))) return []
+  return [
+    { by: "deviance", df, p: chiSquareUpperTail(deviance / given, df) },
+    { by: "pearson", df, p: chiSquareUpperTail(pearson / given, df) },
+  ]
+}
+
+// Certificate's numbers ------------------------------------------------------------------------------------------------------------------
+
+/** max |U_j|/√(φ·I_jj) over the design's own columns. */
+function scaledScore(equations: Equations, point: Point, phi: number): number {
+  const { basis } = equations
+  const p = basis.size
+  if (p === 0) return 0
+  const score = designScore(basis, point.score)
+  const information = ownInformation(equations, point.gram)
+  let most = 0
+  for (let j = 0; j < p; j++) {
+    const share = Math.abs(score[j] as number) / Math.sqrt(phi * (information[j] as number))
+    if (share > most) most = share
+  }
+  return most
+}
+
+/** I_jj of the design's own columns. */
+function ownInformation(equations: Equations, gram: Gram): Float64Array {
+  const { basis } = equations
+  const p = basis.size
+  const N = changeMatrix(basis)
+  const out = new Float64Array(p)
+  const column = new Float64Array(p)
+  for (let j = 0; j < p; j++) {
+    for (let i = 0; i < p; i++) column[i] = N[i * p + j] as number
+    const product = gram.times(column)
+    let sum = 0
+    for (let i = 0; i < p; i++) sum += (column[i] as number) * (product[i] as number)
+    out[j] = sum
+  }
+  return out
+}
+
+/** Most columns whose singular values are found one by one. */
+const mostForRotations = 80
+
+/** Ratio of the extreme singular values of √W·X, its columns of length one. */
+function conditionOf(equations: Equations, gram: Gram): number {
+  const { basis } = equations
+  const p = basis.size
+  if (p === 0) return 1
+  const lower = gram.full()
+  const scale = new Float64Array(p)
+  for (let j = 0; j < p; j++) scale[j] = Math.sqrt(lower[j * p + j] as number)
+  for (let i = 0; i < p; i++)
+    for (let j = 0; j < p; j++) lower[i * p + j] = (lower[i * p + j] as number) / ((scale[i] as number) * (scale[j] as number))
+  if (!cholesky(lower, p)) return Number.POSITIVE_INFINITY
+  // √W·X = Q·(L'·S·N) with Q orthonormal: the singular values are those of the small matrix.
+  const N = changeMatrix(basis)
+  const B = new Float64Array(p * p)
+  for (let i = 0; i < p; i++) {
+    for (let k = i; k < p; k++) {
+      const l = (lower[k * p + i] as number) * (scale[k] as number)
+      if (l === 0) continue
+      for (let j = 0; j < p; j++) {
+        const n = N[k * p + j] as number
+        if (n !== 0) B[i * p + j] = (B[i * p + j] as number) + l * n
+      }
+    }
+  }
+  for (let j = 0; j < p; j++) {
+    let squares = 0
+    for (let i = 0; i < p; i++) squares += (B[i * p + j] as number) * (B[i * p + j] as number)
+    const length = Math.sqrt(squares)
+    for (let i = 0; i < p; i++) B[i * p + j] = (B[i * p + j] as number) / length
+  }
+  if (p > mostForRotations) return conditionByPower(B, p)
+  const values = singularValues(B, p)
+  return (values[0] as number) / (values[p - 1] as number)
+}
+
+/** The same for many columns, by powers of B'B and of its inverse: three digits, which is what a condition is read to. */
+function conditionByPower(B: Float64Array, p: number): number {
+  const gram = new Float64Array(p * p)
+  for (let k = 0; k < p; k++) {
+    for (let i = 0; i < p; i++) {
+      const b = B[k * p + i] as number
+      if (b === 0) continue
+      for (let j = 0; j <= i; j++) gram[i * p + j] = (gram[i * p + j] as number) + b * (B[k * p + j] as number)
+    }
+  }
+  const most = powerOf(p, (x) => {
+    const out = new Float64Array(p)
+    for (let i = 0; i < p; i++) {
+      for (let j = 0; j <= i; j++) {
+        const g = gram[i * p + j] as number
+        out[i] = (out[i] as number) + g * (x[j] as number)
+        if (j < i) out[j] = (out[j] as number) + g * (x[i] as number)
+      }
+    }
+    return out
+  })
+  const lower = gram.slice()
+  if (!cholesky(lower, p)) return Number.POSITIVE_INFINITY
+  const least = powerOf(p, (x) => {
+    const out = x.slice()
+    for (let i = 0; i < p; i++) {
+      let sum = out[i] as number
+      for (let k = 0; k < i; k++) sum -= (lower[i * p + k] as number) * (out[k] as number)
+      out[i] = sum / (lower[i * p + i] as number)
+    }
+    for (let i = p - 1; i >= 0; i--) {
+      let sum = out[i] as number
+      for (let k = i + 1; k < p; k++) sum -= (lower[k * p + i] as number) * (out[k] as number)
+      out[i] = sum / (lower[i * p + i] as number)
+    }
+    return out
+  })
+  return Math.sqrt(most * least)
+}
+
+function powerOf(p: number, times: (x: Float64Array) => Float64Array): number {
+  let x = Float64Array.from({ length: p }, (_, i) => 1 + ((i * 7919) % 101) / 101)
+  let size = 0
+  for (let k = 0; k < 60; k++) {
+    const y = times(x)
+    let squares = 0
+    for (const v of y) squares += v * v
+    size = Math.sqrt(squares)
+    x = y.map((v) => v / size)
+  }
+  return size
+}

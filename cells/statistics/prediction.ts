@@ -1,0 +1,101 @@
+// Predictions at other rows: η without offset and its standard error, and the columns of the design there. Errors are taken in the basis of
+// the fit, where the columns are centred, so that nothing cancels far from the origin.
+
+import { denseColumns, designOf, type Variables } from "./design.ts"
+import { productError, WideSum } from "./double-double.ts"
+import type { Fit } from "./fit.ts"
+import type { Problem } from "./problem.ts"
+import { anyRows, responsesOf, rowState } from "./rows.ts"
+
+/** η without offset and its standard error at other rows; variables as the recipe wants them. NaN where a piece is missing there. */
+export function predicted(fit: Fit, variables: Variables, rows: number): { readonly eta: Float64Array; readonly error: Float64Array } {
+  const columns = designAt(fit, variables, rows)
+  const eta = new Float64Array(rows)
+  const error = new Float64Array(rows)
+  const { frame } = fit
+  const p = frame.column.length
+  const z = new Float64Array(p)
+  const moved = fit.coefficients.flatMap(({ toward }, j) => (toward === null ? [] : [{ column: columns[j] as Float64Array, toward }]))
+  for (let i = 0; i < rows; i++) {
+    basisRow(fit, columns, i, z)
+    let sum = 0
+    for (let j = 0; j < p; j++) sum += (z[j] as number) * (frame.gamma[j] as number)
+    eta[i] = sum
+    error[i] = frame.covariance.length === 0 ? Number.NaN : Math.sqrt(Math.max(0, quadratic(frame.covariance, z)))
+    // A coefficient that has gone to infinity takes with it every row whose column is not 0.
+    for (const { column, toward } of moved) {
+      const x = column[i] as number
+      if (x !== 0) {
+        eta[i] = (eta[i] as number) + x * (toward === "infinity" ? Number.POSITIVE_INFINITY : Number.NEGATIVE_INFINITY)
+        error[i] = Number.NaN
+      }
+    }
+  }
+  return { eta, error }
+}
+
+/** The columns of the design at other rows, one array a coefficient. */
+export const designAt = (fit: Fit, variables: Variables, rows: number): Float64Array[] =>
+  denseColumns(designOf(fit.recipe, variables, rows))
+
+/** Working residual (y − μ)/d and expected weight a·d²/V of each row of the problem, at its fit. */
+export function workingRows(problem: Problem, fit: Fit): { readonly residual: Float64Array; readonly weight: Float64Array } {
+  const responses = responsesOf(problem)
+  const state = rowState(problem.rows)
+  state.eta.set(fit.eta)
+  anyRows(responses, "expected", 0, problem.rows, state, new Float64Array(2))
+  const residual = new Float64Array(problem.rows)
+  for (let i = 0; i < problem.rows; i++) {
+    const eta = fit.eta[i] as number
+    const times = responses.scale ? (responses.scale[i] as number) : 1
+    const y = problem.y[i] as number
+    const rest = responses.link.complement
+    const difference = rest !== null && y > 0.5 && problem.family.name === "binomial" ? rest(eta) - (1 - y) : y - (state.mu[i] as number)
+    residual[i] = difference / (times * responses.link.slope(eta))
+  }
+  return { residual, weight: state.weight }
+}
+
+/** One row in the basis of the fit. */
+function basisRow(fit: Fit, columns: readonly Float64Array[], row: number, z: Float64Array): void {
+  const { frame } = fit
+  const p = frame.column.length
+  if (frame.type === "scaled") {
+    for (let j = 0; j < p; j++) {
+      const x = (columns[frame.column[j] as number] as Float64Array)[row] as number
+      const on = frame.carrier[j] as number
+      const carried = on < 0 ? 0 : (frame.centre[j] as number) * ((columns[on] as Float64Array)[row] as number)
+      z[j] = (x - carried) / (frame.scale[j] as number)
+    }
+    return
+  }
+  // R'·q = x from the first row down, in 32 digits.
+  const low = new Float64Array(p)
+  const sum = new WideSum()
+  for (let j = 0; j < p; j++) {
+    sum.clear()
+    sum.add((columns[frame.column[j] as number] as Float64Array)[row] as number)
+    for (let k = 0; k < j; k++) {
+      const r = frame.high[k * p + j] as number
+      sum.addProduct(-r, z[k] as number)
+      sum.add(-(r * (low[k] as number) + (frame.low[k * p + j] as number) * (z[k] as number)))
+    }
+    const r = frame.high[j * p + j] as number
+    const q = sum.high / r
+    const product = q * r
+    const rest = (sum.high - product - productError(q, r, product) + sum.low - q * (frame.low[j * p + j] as number)) / r
+    z[j] = q + rest
+    low[j] = q - (z[j] as number) + rest
+  }
+}
+
+const quadratic = (matrix: Float64Array, z: Float64Array): number => {
+  const p = z.length
+  let sum = 0
+  for (let i = 0; i < p; i++) {
+    let row = 0
+    for (let j = 0; j < p; j++) row += (matrix[i * p + j] as number) * (z[j] as number)
+    sum += (z[i] as number) * row
+  }
+  return sum
+}

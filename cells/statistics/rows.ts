@@ -1,0 +1,258 @@
+// What each row contributes at a linear predictor: mean, score, weight, deviance. The scalar functions are those of link and family; the
+// pairs fitted most have loops of their own, which share one exponential a row, and a test holds them to the scalar functions.
+
+import { exp, expm1, log } from "./elementary.ts"
+import { familyOf } from "./families.ts"
+import type { Family } from "./family.ts"
+import { isCanonical } from "./legal-pairs.ts"
+import type { Link } from "./link.ts"
+import { linkOf } from "./links.ts"
+import type { Problem } from "./problem.ts"
+import { devianceTerm } from "./special.ts"
+
+/** Which weights: the expected W, or the observed J. */
+export type Information = "expected" | "observed"
+
+/** A model without its predictor: everything that turns η into means, scores and weights. */
+export type Responses = {
+  readonly rows: number
+  readonly family: Family
+  readonly link: Link
+  /** True where W and J are the same. */
+  readonly canonical: boolean
+  readonly y: Float64Array
+  /** a = R·w·m; a row with 0 takes no part. */
+  readonly a: Float64Array
+  /** Added to η: the offset, and log E under log and cloglog. */
+  readonly offset: Float64Array | null
+  /** E where the mean is E·h(η); null where it went into the offset or there is none. */
+  readonly scale: Float64Array | null
+  /** Open interval of η on which every row has a possible mean. */
+  readonly low: number
+  readonly high: number
+}
+
+/** Rows at one point of the parameters; every array is as long as the data. */
+export type RowState = {
+  readonly eta: Float64Array
+  readonly mu: Float64Array
+  /** a(y − μ)d/V. */
+  readonly score: Float64Array
+  /** a·d²/V, or J. */
+  readonly weight: Float64Array
+}
+
+export const rowState = (rows: number): RowState => ({
+  eta: new Float64Array(rows),
+  mu: new Float64Array(rows),
+  score: new Float64Array(rows),
+  weight: new Float64Array(rows),
+})
+
+/** @throws RangeError where the exposure cannot be had under this family and link: what a statement says is checked before */
+export function responsesOf(problem: Problem): Responses {
+  const { rows, y, trials, repeat, precision, exposure } = problem
+  const family = familyOf(problem.family)
+  const a = new Float64Array(rows)
+  for (let i = 0; i < rows; i++) {
+    a[i] = (repeat ? (repeat[i] as number) : 1) * (precision ? (precision[i] as number) : 1) * (trials ? (trials[i] as number) : 1)
+  }
+  const negative = problem.family.name === "normal" && problem.link.name === "reciprocal" && weightedSum(a, y) < 0
+  const link = linkOf(problem.link, negative ? -1 : 1)
+  let offset = problem.offset
+  let scale: Float64Array | null = null
+  if (exposure) {
+    if (link.name === "log" || link.name === "power(0)" || link.name === "cloglog") {
+      offset = exposure.map((e, i) => log(e) + (problem.offset ? (problem.offset[i] as number) : 0))
+    } else if (family.name === "binomial") throw new RangeError(`an exposure means nothing under the link ${link.name}`)
+    else scale = exposure
+  }
+  const ends = etaEnds(link, family)
+  return { rows, family, link, canonical: isCanonical(problem.family, problem.link), y, a, offset, scale, ...ends }
+}
+
+/** The open interval of η whose means lie in the range of the family and of the link. */
+export function etaEnds(link: Link, family: Family): { readonly low: number; readonly high: number } {
+  const at = (mu: number, fallback: number): number => {
+    const eta = link.eta(mu)
+    return Number.isNaN(eta) ? fallback : eta
+  }
+  const lowest = at(Math.max(link.range.low, family.range.low), link.reach.low)
+  const highest = at(Math.min(link.range.high, family.range.high), link.reach.high)
+  return {
+    low: Math.max(Math.min(lowest, highest), link.reach.low),
+    high: Math.min(Math.max(lowest, highest), link.reach.high),
+  }
+}
+
+/**
+ * Fills mean, score and weight of the rows from … to at their η.
+ * @param sums  deviance and Pearson's X² of these rows are added to its first two numbers
+ * @returns     false at the first row whose η has no possible mean or whose deviance is not finite
+ */
+export function fillRows(of: Responses, information: Information, from: number, to: number, state: RowState, sums: Float64Array): boolean {
+  const { eta } = state
+  const { low, high } = of
+  if (low > Number.NEGATIVE_INFINITY || high < Number.POSITIVE_INFINITY) {
+    for (let i = from; i < to; i++) {
+      const e = eta[i] as number
+      if (!(e > low && e < high) && (of.a[i] as number) > 0) return false
+    }
+  }
+  if (of.family.name === "binomial" && of.link.name === "logit") return logitRows(of, from, to, state, sums)
+  if (of.family.name === "poisson" && of.link.name === "log") return logRows(of, from, to, state, sums)
+  if (of.family.name === "binomial" && of.link.name === "cloglog") return cloglogRows(of, information, from, to, state, sums)
+  if (of.family.name === "normal" && of.link.name === "identity") return identityRows(of, from, to, state, sums)
+  return anyRows(of, information, from, to, state, sums)
+}
+
+/** Rows by the scalar functions, for every family and link. */
+export function anyRows(of: Responses, information: Information, from: number, to: number, state: RowState, sums: Float64Array): boolean {
+  const { family, link, y, a, scale } = of
+  const observed = information === "observed" && !of.canonical
+  const { eta, mu, score, weight } = state
+  const binomial = family.name === "binomial"
+  let deviance = 0
+  let pearson = 0
+  for (let i = from; i < to; i++) {
+    const own = a[i] as number
+    const e = eta[i] as number
+    const times = scale === null ? 1 : (scale[i] as number)
+    const m = times * link.mean(e)
+    mu[i] = m
+    if (own === 0) {
+      score[i] = 0
+      weight[i] = 0
+      continue
+    }
+    const response = y[i] as number
+    const rest = link.complement === null ? 1 - m : link.complement(e)
+    const d = times * link.slope(e)
+    const v = family.variance(m, rest)
+    // For a share near 1 the difference is taken between the failures, which have not lost their digits.
+    const residual = binomial && response > 0.5 ? rest - (1 - response) : response - m
+    deviance += own * family.unitDeviance(response, m, rest)
+    if (v > 0) {
+      const standard = residual / v
+      const ratio = d / v
+      let w = ratio * d
+      if (observed) w -= standard * (times * link.curvature(e)) - standard * ratio * (d * family.varianceSlope(m, rest))
+      score[i] = own * residual * ratio
+      weight[i] = own * w
+      pearson += own * residual * standard
+    } else {
+      // The mean is at the end of its range as far as doubles go: a row that agrees adds nothing, any other has no finite deviance.
+      score[i] = 0
+      weight[i] = 0
+    }
+  }
+  sums[0] = (sums[0] as number) + deviance
+  sums[1] = (sums[1] as number) + pearson
+  return Number.isFinite(deviance)
+}
+
+// Loops of their own ---------------------------------------------------------------------------------------------------------------------
+
+function logitRows(of: Responses, from: number, to: number, state: RowState, sums: Float64Array): boolean {
+  const { y, a } = of
+  const { eta, mu, score, weight } = state
+  let deviance = 0
+  let pearson = 0
+  for (let i = from; i < to; i++) {
+    const own = a[i] as number
+    const e = eta[i] as number
+    const t = exp(e < 0 ? e : -e)
+    const near = 1 / (1 + t)
+    const far = t * near
+    const m = e < 0 ? far : near
+    const rest = e < 0 ? near : far
+    mu[i] = m
+    const response = y[i] as number
+    const residual = response > 0.5 ? rest - (1 - response) : response - m
+    const v = near * far
+    score[i] = own * residual
+    weight[i] = own * v
+    if (own === 0) continue
+    deviance += own * 2 * (devianceTerm(response, m) + devianceTerm(1 - response, rest))
+    if (v > 0) pearson += own * residual * (residual / v)
+  }
+  sums[0] = (sums[0] as number) + deviance
+  sums[1] = (sums[1] as number) + pearson
+  return Number.isFinite(deviance)
+}
+
+function logRows(of: Responses, from: number, to: number, state: RowState, sums: Float64Array): boolean {
+  const { y, a } = of
+  const { eta, mu, score, weight } = state
+  let deviance = 0
+  let pearson = 0
+  for (let i = from; i < to; i++) {
+    const own = a[i] as number
+    const m = exp(eta[i] as number)
+    mu[i] = m
+    const response = y[i] as number
+    const residual = response - m
+    score[i] = own * residual
+    weight[i] = own * m
+    if (own === 0) continue
+    deviance += own * 2 * devianceTerm(response, m)
+    if (m > 0) pearson += own * residual * (residual / m)
+  }
+  sums[0] = (sums[0] as number) + deviance
+  sums[1] = (sums[1] as number) + pearson
+  return Number.isFinite(deviance)
+}
+
+function cloglogRows(of: Responses, information: Information, from: number, to: number, state: RowState, sums: Float64Array): boolean {
+  const { y, a } = of
+  const { eta, mu, score, weight } = state
+  const observed = information === "observed"
+  let deviance = 0
+  let pearson = 0
+  for (let i = from; i < to; i++) {
+    const own = a[i] as number
+    const t = exp(eta[i] as number)
+    const m = -expm1(-t)
+    const rest = t < 0.5 ? 1 - m : exp(-t)
+    mu[i] = m
+    const response = y[i] as number
+    const residual = response > 0.5 ? rest - (1 - response) : response - m
+    // d = t·e^(−t) and V = μ·e^(−t), so d/V = t/μ, which tends to 1 on the left.
+    const ratio = m > 0 ? t / m : 1
+    const d = t * rest
+    let w = ratio * d
+    const v = m * rest
+    if (observed && v > 0) {
+      // J = W − s·(d'/d − d·V'/V) with d'/d = 1 − t and d·V'/V = (t/μ)(1 − 2μ).
+      w -= residual * ratio * (1 - t - ratio * (rest - m))
+    }
+    score[i] = own * residual * ratio
+    weight[i] = own * w
+    if (own === 0) continue
+    deviance += own * 2 * (devianceTerm(response, m) + devianceTerm(1 - response, rest))
+    if (v > 0) pearson += own * residual * (residual / v)
+  }
+  sums[0] = (sums[0] as number) + deviance
+  sums[1] = (sums[1] as number) + pearson
+  return Number.isFinite(deviance)
+}
+
+function identityRows(of: Responses, from: number, to: number, state: RowState, sums: Float64Array): boolean {
+  const { y, a } = of
+  const { eta, mu, score, weight } = state
+  let deviance = 0
+  for (let i = from; i < to; i++) {
+    const own = a[i] as number
+    const m = eta[i] as number
+    mu[i] = m
+    const residual = (y[i] as number) - m
+    score[i] = own * residual
+    weight[i] = own
+    deviance += own * residual * residual
+  }
+  sums[0] = (sums[0] as number) + deviance
+  sums[1] = (sums[1] as number) + deviance
+  return Number.isFinite(deviance)
+}
+
+const weightedSum = (a: Float64Array, y: Float64Array): number => a.reduce((sum, own, i) => sum + own * (y[i] as number), 0)

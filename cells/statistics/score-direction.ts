@@ -1,0 +1,109 @@
+// The score of a direction: would the model be better with v as one more column? No refit is needed. This is the test of the link (v = η²),
+// of a link family (v = ∂g/∂γ) and of terms left out. Rao 1948; Pregibon 1980; conventions, choosing the link.
+
+import { Factor } from "./gram.ts"
+import { cellTerms, type Equations, linearPredictor, type Point } from "./scoring.ts"
+
+export type DirectionScore = {
+  /** (v'Wr)²/(φ·v⊥'Wv⊥), or (Σ v⊥s)²/Σ(v⊥s)² under sandwich errors. */
+  readonly statistic: number
+  /** v'Wr/v⊥'Wv⊥: the coefficient one step would give v. */
+  readonly step: number
+  /** v⊥'Wv⊥ as a share of v'Wv, v less its W-mean where the columns span a constant. */
+  readonly index: number
+  /** v⊥'Wv⊥. */
+  readonly information: number
+}
+
+/**
+ * @param point     filled with expected weights
+ * @param v         a value a row
+ * @param phi       dispersion
+ * @param centred   whether the columns span a constant
+ * @param sandwich  how scores are summed where errors are sandwich: copies of each row, and clusters
+ */
+export function directionScore(
+  equations: Equations,
+  point: Point,
+  factor: Factor,
+  v: Float64Array,
+  phi: number,
+  centred: boolean,
+  sandwich: { readonly repeat: Float64Array | null; readonly cluster: Int32Array | null } | null,
+): DirectionScore {
+  const { weight, score } = point.state
+  const n = v.length
+  let [total, sum] = [0, 0]
+  for (let i = 0; i < n; i++) {
+    const w = weight[i] as number
+    if (w === 0) continue
+    total += w
+    sum += w * (v[i] as number)
+  }
+  const mean = centred ? sum / total : 0
+  const rest = new Float64Array(n)
+  let whole = 0
+  for (let i = 0; i < n; i++) {
+    const w = weight[i] as number
+    rest[i] = w === 0 ? 0 : (v[i] as number) - mean
+    whole += w * (rest[i] as number) * (rest[i] as number)
+  }
+  // Projected twice: what the first time leaves by rounding, the second takes.
+  for (let round = 0; round < 2; round++) project(equations, weight, factor, rest)
+  let [information, u] = [0, 0]
+  for (let i = 0; i < n; i++) {
+    const x = rest[i] as number
+    information += (weight[i] as number) * x * x
+    u += x * (score[i] as number)
+  }
+  let variance = phi * information
+  if (sandwich) {
+    variance = 0
+    const { repeat, cluster } = sandwich
+    if (cluster) {
+      const sums = new Map<number, number>()
+      for (let i = 0; i < n; i++)
+        sums.set(cluster[i] as number, (sums.get(cluster[i] as number) ?? 0) + (rest[i] as number) * (score[i] as number))
+      for (const own of sums.values()) variance += own * own
+    } else {
+      for (let i = 0; i < n; i++) {
+        const own = (rest[i] as number) * (score[i] as number)
+        variance += (own * own) / (repeat ? (repeat[i] as number) : 1)
+      }
+    }
+  }
+  return { statistic: (u * u) / variance, step: u / information, index: whole > 0 ? information / whole : 0, information }
+}
+
+/** v − X(X'WX)⁻¹X'Wv in place. */
+export function project(equations: Equations, weight: Float64Array, factor: Factor, v: Float64Array): void {
+  const { basis } = equations
+  const weighted = new Float64Array(v.length)
+  for (let i = 0; i < v.length; i++) weighted[i] = (weight[i] as number) === 0 ? 0 : (weight[i] as number) * (v[i] as number)
+  const gamma = factor.solve(equations.scored(weighted))
+  const fitted = new Float64Array(v.length)
+  linearPredictor(
+    basis,
+    gamma,
+    basis.blocks.map((block) => cellTerms(block, gamma)),
+    null,
+    0,
+    v.length,
+    fitted,
+  )
+  for (let i = 0; i < v.length; i++) v[i] = (v[i] as number) - (fitted[i] as number)
+}
+
+/** Whether the columns span a constant: what is left of it after projection is rounding. */
+export function spansConstant(equations: Equations): boolean {
+  const { rows } = equations.basis
+  if (equations.basis.size === 0) return false
+  const one = new Float64Array(rows).fill(1)
+  const factor = Factor.of(equations.weighted(one))
+  if (!factor) return false
+  const left = one.slice()
+  for (let round = 0; round < 2; round++) project(equations, one, factor, left)
+  let squares = 0
+  for (const x of left) squares += x * x
+  return squares < 1e-18 * rows
+}
