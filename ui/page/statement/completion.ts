@@ -87,7 +87,7 @@ function clauses({ statement, words }: Reading, from: number): readonly Option[]
 }
 
 function inClause({ words, statement }: Reading, clause: Clause, from: number, around: Surroundings): readonly Option[] {
-  const forms = words?.clauses[clause.keyword]?.forms
+  const forms = words?.clauses[clause.keyword]
   if (forms === undefined) return []
   const before = clause.tokens.filter((token) => token.to <= from)
   if (before.at(-1)?.type === "open-text") return []

@@ -106,7 +106,12 @@ export class StatementEditor extends HTMLElement {
   #underline(): void {
     const view = this.#view
     if (view === null) return
-    view.dispatch(setDiagnostics(view.state, this.#notices.map((notice) => this.#diagnostic(notice, view.state.doc.toString()))))
+    view.dispatch(
+      setDiagnostics(
+        view.state,
+        this.#notices.map((notice) => this.#diagnostic(notice, view.state.doc.toString())),
+      ),
+    )
   }
 
   #diagnostic(notice: Notice, text: string): Diagnostic {

@@ -1,72 +1,65 @@
 // What may come next in a clause, by the forms of its kind: the forms are walked along the tokens that are there, and what the walk
 // would take after the last of them is what is expected. Completion and help come from here; faults do not (they are form.ts's).
 
+import { type Item, parsedForms, type SlotType } from "../../../cells/language/form-pattern.ts"
+import type { ClauseWords } from "../../../runtime/kind.ts"
 import type { Token } from "../../../runtime/statement.ts"
 
-export type SlotType = "NAME" | "CELL" | "ID" | "TEXT" | "NUMBER" | "BOUND" | "CHOICE" | "CALL" | "EXPR" | "TERMS"
-
-/** A word or sign of the form, or a slot; `argument` is what stands in the brackets of a call. */
+/** A word or sign of the form, or a slot; `ARGUMENT` is what stands in the brackets of a call. */
 export type Expected =
   | { readonly type: "word"; readonly text: string }
   | { readonly type: "slot"; readonly slot: SlotType | "ARGUMENT"; readonly label: string }
 
 /** Everything that may stand after `tokens` (the clause without its keyword), each once. */
-export function expected(forms: readonly string[], tokens: readonly Token[]): readonly Expected[] {
+export function expected(words: ClauseWords, tokens: readonly Token[]): readonly Expected[] {
   const found = new Map<string, Expected>()
-  for (const form of forms) {
-    walk(parts(form), tokens, 0, (next) => found.set(next.type === "word" ? next.text : `${next.slot}:${next.label}`, next))
+  const tell = (next: Expected): void => {
+    found.set(next.type === "word" ? next.text : `${next.slot}:${next.label}`, next)
   }
+  for (const form of parsedForms(words)) walk(form, tokens, 0, tell)
   return [...found.values()]
 }
 
-type Part =
-  | { readonly type: "word"; readonly text: string }
-  | { readonly type: "slot"; readonly slot: SlotType; readonly label: string }
-  | { readonly type: "optional"; readonly of: readonly Part[] }
-  | { readonly type: "list"; readonly of: readonly Part[] }
-
-const known = new Map<string, readonly Part[]>()
-
-/** A form as parts: `{ … },` is a list, `( … )?` may be left out. */
-function parts(form: string): readonly Part[] {
-  const remembered = known.get(form)
-  if (remembered !== undefined) return remembered
-  const stack: Part[][] = [[]]
-  for (const word of form.split(/\s+/).filter((each) => each !== "")) {
-    const top = stack.at(-1) ?? []
-    if (word === "{" || word === "(") stack.push([])
-    else if (word === "}," || word === ")?") {
-      stack.pop()
-      stack.at(-1)?.push({ type: word === ")?" ? "optional" : "list", of: top })
-    } else {
-      const slot = /^([A-Z]+):(\w+)$/.exec(word)
-      top.push(slot === null ? { type: "word", text: word } : { type: "slot", slot: slot[1] as SlotType, label: slot[2] ?? "" })
+/** Every word that stands in some form of the clause, outside its slots. */
+export function formWords(words: ClauseWords): ReadonlySet<string> {
+  const found = new Set<string>()
+  const gather = (items: readonly Item[]): void => {
+    for (const item of items) {
+      if (item.type === "word") found.add(item.word)
+      else if (item.type === "one-of") for (const word of item.words) found.add(word)
+      else if (item.type !== "slot") gather(item.of)
     }
   }
-  const made = stack[0] ?? []
-  known.set(form, made)
-  return made
+  for (const form of parsedForms(words)) gather(form)
+  return found
 }
 
 /** Walks the parts from token `at` and gives every token the walk can end before; what would be taken past the last one is handed to `tell`. */
-function walk(all: readonly Part[], tokens: readonly Token[], at: number, tell: (next: Expected) => void): ReadonlySet<number> {
+function walk(all: readonly Item[], tokens: readonly Token[], at: number, tell: (next: Expected) => void): ReadonlySet<number> {
   let ends: ReadonlySet<number> = new Set([at])
   for (const part of all) {
     const after = new Set<number>()
     for (const from of ends) {
-      if (part.type === "optional") {
-        after.add(from)
-        for (const end of walk(part.of, tokens, from, tell)) after.add(end)
-      } else if (part.type === "list") {
-        for (const end of list(part.of, tokens, from, tell)) after.add(end)
-      } else for (const end of taken(part, tokens, from, tell)) after.add(end)
+      for (const end of endings(part, tokens, from, tell)) after.add(end)
     }
     ends = after
   }
   return ends
 }
 
-function list(of: readonly Part[], tokens: readonly Token[], from: number, tell: (next: Expected) => void): ReadonlySet<number> {
+function endings(part: Item, tokens: readonly Token[], from: number, tell: (next: Expected) => void): Iterable<number> {
+  switch (part.type) {
+    case "optional":
+    case "list":
+      return part.type === "list" ? list(part.of, tokens, from, tell) : [from, ...walk(part.of, tokens, from, tell)]
+    case "word":
+    case "one-of":
+    case "slot":
+      return taken(part, tokens, from, tell)
+  }
+}
+
+function list(of: readonly Item[], tokens: readonly Token[], from: number, tell: (next: Expected) => void): ReadonlySet<number> {
   const after = new Set<number>()
   const due = [from]
   for (let start = due.pop(); start !== undefined; start = due.pop()) {
@@ -81,21 +74,26 @@ function list(of: readonly Part[], tokens: readonly Token[], from: number, tell:
 
 /** Where one word or slot that begins at `from` can end. */
 function taken(
-  part: Extract<Part, { type: "word" | "slot" }>,
+  part: Extract<Item, { type: "word" | "one-of" | "slot" }>,
   tokens: readonly Token[],
   from: number,
   tell: (next: Expected) => void,
 ): readonly number[] {
   const token = tokens[from]
+  if (part.type !== "slot") {
+    const words = part.type === "word" ? [part.word] : part.words
+    if (token === undefined) for (const text of words) tell({ type: "word", text })
+    return token !== undefined && words.includes(token.text) ? [from + 1] : []
+  }
+  const { slot, label } = part
   if (token === undefined) {
-    tell(part)
+    tell({ type: "slot", slot, label })
     return []
   }
-  if (part.type === "word") return token.text === part.text ? [from + 1] : []
   const signed = token.text === "-" || token.text === "+" ? from + 1 : from
   const value = tokens[signed]
   const isNumber = value?.type === "number" || value?.type === "percent"
-  switch (part.slot) {
+  switch (slot) {
     case "NAME":
     case "CELL":
     case "ID":
@@ -112,10 +110,10 @@ function taken(
     case "CHOICE":
       return isNumber || value?.type === "word" || token.type === "text" ? [signed + 1] : []
     case "CALL":
-      return call(part.label, tokens, from, tell)
+      return call(label, tokens, from, tell)
     case "EXPR":
     case "TERMS":
-      tell(part)
+      tell({ type: "slot", slot, label })
       return [tokens.length]
   }
 }

@@ -2,6 +2,7 @@
 // marks, so that a statement does not change its looks when a hand goes into it. A word is a keyword where the forms of its clause say so.
 
 import type { Clause, Token } from "../../../runtime/statement.ts"
+import { formWords } from "./expected.ts"
 import type { Reading } from "./reading.ts"
 
 export type MarkKind =
@@ -38,7 +39,8 @@ export function marks(reading: Reading): readonly Mark[] {
     else found.push(marked(token, statement.heading[i + 1]))
   })
   for (const clause of statement.clauses) {
-    const words = formWords(reading, clause)
+    const said = reading.words?.clauses[clause.keyword]
+    const words = said === undefined ? noWords : formWords(said)
     found.push({ from: clause.from, to: clause.from + keywordLength(statement.text, clause), kind: "keyword" })
     clause.tokens.forEach((token, i) => {
       const isWord = token.type === "word" && words.has(token.text) && !isFirstOfName(clause, i)
@@ -47,12 +49,6 @@ export function marks(reading: Reading): readonly Mark[] {
   }
   if (statement.prose !== null) return [...found, ...proseMarks(statement.text, statement.prose.from)]
   return withComments(statement.text, found)
-}
-
-/** Every word that stands in some form of the clause, outside its slots. */
-function formWords(reading: Reading, clause: Clause): ReadonlySet<string> {
-  const forms = reading.words?.clauses[clause.keyword]?.forms ?? []
-  return new Set(forms.flatMap((form) => form.replace(/[A-Z]+:\w+/g, " ").match(/[a-z_]+/g) ?? []))
 }
 
 /** A column may be called as a word of the form is: what opens a clause whose forms open with a slot is a name. */
@@ -79,6 +75,7 @@ function marked(token: Token, next: Token | undefined): Mark {
   }
 }
 
+const noWords: ReadonlySet<string> = new Set()
 const operators: ReadonlySet<string> = new Set(["and", "or", "not", "in"])
 
 /** Comments are no tokens: they are what is left between the marks and begins with `#`. */
