@@ -6,6 +6,7 @@ export {
   decimalsOf,
   plain,
   written,
+  writtenAsPower,
   writtenCount,
   writtenFixed,
   writtenInFull,
@@ -13,6 +14,15 @@ export {
   writtenRange,
   writtenShare,
 } from "../../cells/figure/number.ts"
+
+/** Enough decimals to tell apart places a few pixels from each other on an axis of that extent. */
+export function decimalsForExtent(extent: number): number {
+  if (extent > 400) return 0
+  if (extent > 12) return 1
+  let decimals = 2
+  for (let left = extent; left < 0.8 && decimals < 9; left *= 10) decimals += 1
+  return decimals
+}
 
 /** A written number in two: up to the decimal point, and from the point on (empty for a whole number). */
 export function atPoint(text: string): { readonly before: string; readonly after: string } {

@@ -1,0 +1,203 @@
+// The bridge: an alignment chart between the edge that is the μ axis and the edge that is the η axis. Lines join means to their g(μ); some
+// are labelled at both ends, so that it can be read which μ meets which η. Labels are round means, chosen so that no two labels touch on
+// either edge, and every line starts and ends at exactly the place its two labels name.
+
+import type { ScalesCandidate } from "../../../cells/block.ts"
+import type { Scale } from "../axis.ts"
+import { decimalsForExtent, writtenFixed } from "../number.ts"
+import { tenth, textWidth } from "../scene.ts"
+import { TICK_SIZE } from "./layout.ts"
+
+type Pairs = ScalesCandidate["bridge"]
+
+export interface BridgeLine {
+  readonly mu: number
+  readonly eta: number
+  /** Places along the edge of μ and along the edge of η. */
+  readonly from: number
+  readonly to: number
+}
+
+export interface LabelledLine extends BridgeLine {
+  readonly muText: string
+  readonly etaText: string
+}
+
+export interface BridgeEdges {
+  readonly mu: Scale
+  readonly eta: Scale
+  /** Whether places run down the page (labels are kept apart by their height) or across it (by their width). */
+  readonly runs: "down" | "across"
+}
+
+/** Whether larger means meet smaller η: then the lines cross. */
+export function falls(pairs: Pairs): boolean {
+  const last = pairs.mu.length - 1
+  return last > 0 && (pairs.eta[last] ?? 0) < (pairs.eta[0] ?? 0)
+}
+
+/**
+ * g at one mean, looked up between the pairs: by the cubic through the four nearest, since pairs are few and links bend. NaN outside.
+ */
+export function etaAt(pairs: Pairs, mu: number): number {
+  const { mu: means, eta: etas } = pairs
+  const n = means.length
+  if (n === 0 || mu < (means[0] ?? 0) || mu > (means[n - 1] ?? 0)) return Number.NaN
+  let low = 0
+  let high = n - 1
+  while (high - low > 1) {
+    const middle = (low + high) >> 1
+    if ((means[middle] as number) <= mu) low = middle
+    else high = middle
+  }
+  for (const i of [low, high]) if (means[i] === mu) return etas[i] as number
+  const first = Math.max(0, Math.min(n - 4, low - 1))
+  const last = Math.min(n - 1, first + 3)
+  let sum = 0
+  for (let i = first; i <= last; i += 1) {
+    let weight = 1
+    for (let j = first; j <= last; j += 1) {
+      if (j !== i) weight *= (mu - (means[j] as number)) / ((means[i] as number) - (means[j] as number))
+    }
+    sum += weight * (etas[i] as number)
+  }
+  return sum
+}
+
+/** Lines that show how the link spreads the means: the pairs, thinned until neighbours stand apart on at least one edge. */
+export function bridgeHairs(pairs: Pairs, edges: BridgeEdges, apart: number): readonly BridgeLine[] {
+  const kept: BridgeLine[] = []
+  for (let i = 0; i < pairs.mu.length; i += 1) {
+    const line = lineAt(pairs.mu[i] as number, pairs.eta[i] as number, edges)
+    const last = kept.at(-1)
+    if (line === null) continue
+    if (last === undefined || Math.max(Math.abs(line.from - last.from), Math.abs(line.to - last.to)) >= apart) kept.push(line)
+  }
+  return kept
+}
+
+/** The labelled lines, at most `most`, in order of μ. */
+export function labelledLines(pairs: Pairs, edges: BridgeEdges, most: number): readonly LabelledLine[] {
+  const etaDecimals = decimalsForExtent(edges.eta.to - edges.eta.from)
+  const offered = roundMeans(Math.max(edges.mu.from, pairs.mu[0] ?? 0), Math.min(edges.mu.to, pairs.mu.at(-1) ?? 0)).flatMap((mean) => {
+    const line = lineAt(mean.mu, etaAt(pairs, mean.mu), edges)
+    return line === null ? [] : [{ ...line, cost: mean.cost, muText: mean.text, etaText: writtenFixed(line.eta, etaDecimals) }]
+  })
+  const roomy = offered.filter(
+    (line) => withinEdge(line.from, line.muText, edges.mu, edges.runs) && withinEdge(line.to, line.etaText, edges.eta, edges.runs),
+  )
+  const kept: LabelledLine[] = []
+  const left = new Set(roomy)
+  // The line farthest from those that stand is taken next, less round means being asked to stand farther off.
+  while (kept.length < most && left.size > 0) {
+    let best: (typeof roomy)[number] | null = null
+    let bestWorth = Number.NEGATIVE_INFINITY
+    for (const line of left) {
+      const clear = Math.min(
+        ...kept.map((other) =>
+          Math.min(
+            clearance(line.from, line.muText, other.from, other.muText, edges.runs),
+            clearance(line.to, line.etaText, other.to, other.etaText, edges.runs),
+          ),
+        ),
+      )
+      if (clear < 0) {
+        left.delete(line)
+        continue
+      }
+      const worth = Math.min(clear, 60) - line.cost * 14
+      if (worth > bestWorth) {
+        bestWorth = worth
+        best = line
+      }
+    }
+    if (best === null) break
+    left.delete(best)
+    const { cost: _, ...line } = best
+    kept.push(line)
+  }
+  return kept.toSorted((a, b) => a.mu - b.mu)
+}
+
+const lineAt = (mu: number, eta: number, edges: BridgeEdges): BridgeLine | null =>
+  Number.isFinite(eta) && mu >= edges.mu.from && mu <= edges.mu.to && eta >= edges.eta.from && eta <= edges.eta.to
+    ? { mu, eta, from: edges.mu.place(mu), to: edges.eta.place(eta) }
+    : null
+
+/** Half of what a label takes up along its edge, with room around it. */
+const halfSize = (text: string, runs: BridgeEdges["runs"]): number =>
+  runs === "down" ? TICK_SIZE * 0.62 : textWidth(text, TICK_SIZE) / 2 + 3
+
+const clearance = (a: number, aText: string, b: number, bText: string, runs: BridgeEdges["runs"]): number =>
+  Math.abs(a - b) - halfSize(aText, runs) - halfSize(bText, runs)
+
+const withinEdge = (place: number, text: string, scale: Scale, runs: BridgeEdges["runs"]): boolean => {
+  const half = halfSize(text, runs) - (runs === "down" ? 2 : 6)
+  return place - half >= Math.min(scale.start, scale.end) && place + half <= Math.max(scale.start, scale.end)
+}
+
+interface RoundMean {
+  readonly mu: number
+  readonly text: string
+  /** 0 for the roundest. */
+  readonly cost: number
+}
+
+/**
+ * Round means within a range: 1, 2, 5 and their like at every power of ten, and their distances from one where means are shares.
+ * Two digits cost more than one, so that they appear only where there is room.
+ */
+function roundMeans(low: number, high: number): readonly RoundMean[] {
+  const found = new Map<string, RoundMean>()
+  const offer = (mu: number, decimals: number, cost: number): void => {
+    if (mu < low || mu > high) return
+    const text = writtenFixed(mu, decimals)
+    const known = found.get(text)
+    if (known === undefined || known.cost > cost) found.set(text, { mu: Number(mu.toFixed(decimals)), text, cost })
+  }
+  const largest = Math.max(Math.abs(low), Math.abs(high))
+  const extent = high - low
+  for (let power = -4; power <= 11; power += 1) {
+    const unit = Number(`1e${power}`)
+    if (unit > largest * 1.0001 || unit < extent * 1e-4) continue
+    const decimals = Math.max(0, -power)
+    for (let k = 1; k <= 9; k += 1) {
+      const cost = k === 1 || k === 5 ? 0 : k === 2 ? 0.15 : 0.5
+      for (const sign of [1, -1]) offer(sign * k * unit, decimals, cost)
+      if (unit < 0.2 && high <= 1) offer(1 - k * unit, decimals, cost)
+    }
+    // Two digits, where the range is narrow beside its distance from nought.
+    const first = Math.ceil(low / unit)
+    const last = Math.floor(high / unit)
+    if (last - first <= 60) {
+      for (let k = first; k <= last; k += 1) {
+        offer(k * unit, decimals, k % 10 === 0 ? 0.1 : k % 5 === 0 ? 0.8 : k % 2 === 0 ? 1.2 : 1.6)
+      }
+    }
+  }
+  if (low <= 0 && high >= 0) offer(0, 0, 0)
+  return [...found.values()]
+}
+
+/** The path of a joining line. It leaves and arrives at right angles to the edges, so that its ends can be read. */
+export function joinPath(runs: BridgeEdges["runs"], fromEdge: number, toEdge: number, from: number, to: number, stub: number): string {
+  const [a, b] = [fromEdge + stub, toEdge - stub]
+  const middle = (a + b) / 2
+  return runs === "down"
+    ? `M${tenth(fromEdge)} ${tenth(from)}H${tenth(a)}C${tenth(middle)} ${tenth(from)} ${tenth(middle)} ${tenth(to)} ${tenth(b)} ${tenth(to)}H${tenth(toEdge)}`
+    : `M${tenth(from)} ${tenth(fromEdge)}V${tenth(a)}C${tenth(from)} ${tenth(middle)} ${tenth(to)} ${tenth(middle)} ${tenth(to)} ${tenth(b)}V${tenth(toEdge)}`
+}
+
+/** The area between two joining lines. */
+export function joinArea(
+  runs: BridgeEdges["runs"],
+  fromEdge: number,
+  toEdge: number,
+  from: readonly [number, number],
+  to: readonly [number, number],
+  stub: number,
+): string {
+  const there = joinPath(runs, fromEdge, toEdge, from[0], to[0], stub)
+  const back = joinPath(runs, toEdge, fromEdge, to[1], from[1], -stub)
+  return `${there}L${back.slice(1)}Z`
+}

@@ -1,0 +1,45 @@
+// The two scales in words: what each kind of mark means, only for the marks that are there. The sentences for those who cannot see the
+// figure come with the finding.
+
+import type { ScalesBlock } from "../../../cells/block.ts"
+import { decimalsForExtent, writtenFixed } from "../number.ts"
+import type { ScalesLayout } from "./layout.ts"
+import { agreementMean } from "./preview.ts"
+
+export function scalesLegend(block: ScalesBlock, layout: ScalesLayout): readonly string[] {
+  const { subject, mean, predictor } = layout
+  const sentences: string[] = []
+  const hasPoints = subject.points.some((points) => points.x.length > 0)
+  const [first, second] = layout.arrangement === "beside" ? ["left", "right"] : ["above", "below"]
+  if (hasPoints) {
+    const mark = block.split === null ? "Circles" : "Points"
+    sentences.push(`${mark} ${first}: observed means. ${mark} ${second}: working responses, sized by working weight.`)
+  }
+  const percent = `${Math.round(block.confidence * 1000) / 10} %`
+  sentences.push(block.across.levels === null ? `Bands: ${percent} for the mean, at each x by itself.` : `Bars: ${percent} for the mean.`)
+  if (block.possible[0] > mean.y.from || block.possible[1] < mean.y.to) sentences.push("Hatched: means that cannot be.")
+  if (block.across.levels === null && (block.range[0] < block.data[0] || block.range[1] > block.data[1])) {
+    sentences.push("Shaded: outside the data, lines there are extrapolated.")
+  }
+  sentences.push("Tinted in the bridge: the means these data use.")
+  const held = block.candidates.filter((candidate) => candidate !== subject && candidate.curves.length > 0).length
+  if (held > 0 && block.split === null) {
+    sentences.push(block.across.levels === null ? "Thin lines: candidates for comparison." : "Short strokes: candidates for comparison.")
+  }
+  const cut = subject.points.reduce(
+    (count, points) => count + points.working.reduce((sum, z) => sum + (z < predictor.y.from || z > predictor.y.to ? 1 : 0), 0),
+    0,
+  )
+  if (cut > 0)
+    sentences.push(`${cut === 1 ? "One working response lies" : `${cut} working responses lie`} past the edge, as an arrow shows.`)
+  if (subject.curves.some((curve) => curve.mu.some(Number.isNaN))) sentences.push("A bar ends a curve where no mean is possible beyond it.")
+  if (block.aligned) sentences.push("All links are drawn to agree in value and slope at the middle of the data.")
+  return sentences
+}
+
+/** What a ghost is, said while it is there. */
+export function ghostSays(block: ScalesBlock, layout: ScalesLayout, link: string): string {
+  if (block.aligned) return `${link}: a preview, nothing is changed yet.`
+  const at = writtenFixed(agreementMean(layout.subject), Math.max(1, decimalsForExtent((layout.mean.y.to - layout.mean.y.from) * 4)))
+  return `${link}: a preview, nothing is changed yet. Its η is drawn to agree with ${layout.subject.link} in value and slope at μ = ${at}.`
+}
