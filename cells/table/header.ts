@@ -22,10 +22,20 @@ export const namesFor = (heads: readonly (string | null)[], taken: ReadonlySet<N
       return { name: head, head, unit: null }
     }
     const { words, unit } = parted(head ?? "")
-    const name = free(made(words, i), used)
+    const name = free(nameFrom(words, `column_${i + 1}`), used)
     used.add(name)
     return { name, head, unit }
   })
+}
+
+/** A name made of any text, such as a file's name; `fallback` where nothing of it can stand in a name. */
+export const nameFrom = (words: string, fallback: Name): Name => {
+  const joined = words
+    .normalize("NFC")
+    .replace(/[^\p{L}\p{M}\p{Nd}_]+/gu, "_")
+    .replace(/^[_\p{M}]+|_+$/gu, "")
+  if (joined === "") return fallback
+  return isName(joined) ? joined : `_${joined}`
 }
 
 const isName = (head: string): boolean => isWord(head) && !reserved.has(head)
@@ -37,13 +47,6 @@ const parted = (head: string): { readonly words: string; readonly unit: string |
   return parts === null || unit === "" || unit.length > 12 || /[=,;]/.test(unit)
     ? { words: head, unit: null }
     : { words: parts[1] as string, unit }
-}
-
-const made = (words: string, index: number): Name => {
-  const joined = words.replace(/[^\p{L}\p{M}\p{Nd}_]+/gu, "_").replace(/^[_\p{M}]+|_+$/gu, "")
-  if (joined === "") return `column_${index + 1}`
-  if (reserved.has(joined)) return `column_${joined}`
-  return isWord(joined) ? joined : `_${joined}`
 }
 
 const free = (name: Name, used: ReadonlySet<Name>): Name => {

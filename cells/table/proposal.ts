@@ -7,7 +7,8 @@ import type { Met } from "./readers.ts"
 
 /** Why a column that looks like numbers was not proposed as such. */
 export type Doubt =
-  | { readonly type: "leading-zeros" | "long"; readonly example: Example }
+  | { readonly type: "leading-zeros"; readonly example: Example }
+  | { readonly type: "long"; readonly example: Example }
   /** At least half of the entries are numbers; `examples` are the first that are not. */
   | { readonly type: "mixed"; readonly numbers: number; readonly present: number; readonly examples: readonly Example[] }
   /** Every entry is a number under a decimal comma, but the comma may as well group thousands. */

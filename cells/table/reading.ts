@@ -42,24 +42,23 @@ export type Reading = {
 /** A piece of work between two checkpoints: some 10 ms on a slow machine. */
 const bytesBetweenPauses = 1 << 19
 
-/**
- * Reads a file. `plan` is asked once, when the heads are known, what to do with each column.
- *
- * @param pause  awaited between pieces of work; when it rejects, so does the reading
- */
+/** What to do with each column of a file, asked once, when the heads are known. */
+export type Plan = (heads: readonly (string | null)[]) => readonly ColumnTask[]
+
+/** Reads a file in pieces. `pause` is awaited between pieces of work; when it rejects, so does the reading. */
 export async function readTable(
   file: AsyncIterable<Uint8Array>,
   dialect: Dialect,
-  plan: (heads: readonly (string | null)[]) => readonly ColumnTask[],
+  plan: Plan,
   pause: () => Promise<void>,
 ): Promise<Reading> {
   const sink = new TableSink(dialect, plan)
   const scanner = new Scanner(dialect.separator, sink)
   let since = 0
-  reading: for await (const chunk of file) {
+  pieces: for await (const chunk of file) {
     for (let from = 0; from < chunk.length; from += bytesBetweenPauses) {
       const piece = chunk.subarray(from, Math.min(chunk.length, from + bytesBetweenPauses))
-      if (!scanner.push(piece)) break reading
+      if (!scanner.push(piece)) break pieces
       since += piece.length
       if (since >= bytesBetweenPauses) {
         since = 0
@@ -70,24 +69,36 @@ export async function readTable(
   scanner.end()
   const columns: ColumnResult[] = []
   for (const taker of sink.takers) {
-    columns.push(
-      taker instanceof EvidenceTaker
-        ? { did: "weigh", evidence: taker.taken() }
-        : taker === skipper
-          ? { did: "skip" }
-          : { did: "read", read: (taker as Reader).taken() },
-    )
+    columns.push(resultOf(taker))
     await pause()
   }
-  return {
-    heads: sink.heads,
-    records: sink.records,
-    columns,
-    oddities: shifted(scanner.oddities, dialect),
-    ...sink.ragged(),
-    broken: shiftedBroken(scanner.broken, dialect),
-  }
+  return reading(sink, scanner, columns)
 }
+
+/** Reads bytes that are all there, at once: for the beginning of a file. */
+export function readBytes(bytes: Uint8Array, dialect: Dialect, plan: Plan): Reading {
+  const sink = new TableSink(dialect, plan)
+  const scanner = new Scanner(dialect.separator, sink)
+  scanner.push(bytes)
+  scanner.end()
+  return reading(sink, scanner, sink.takers.map(resultOf))
+}
+
+const reading = (sink: TableSink, scanner: Scanner, columns: readonly ColumnResult[]): Reading => ({
+  heads: sink.heads,
+  records: sink.records,
+  columns,
+  oddities: shifted(scanner.oddities, sink.dialect),
+  ...sink.ragged(),
+  broken: shiftedBroken(scanner.broken, sink.dialect),
+})
+
+const resultOf = (taker: Taker): ColumnResult =>
+  taker instanceof EvidenceTaker
+    ? { did: "weigh", evidence: taker.taken() }
+    : taker === skipper
+      ? { did: "skip" }
+      : { did: "read", read: (taker as Reader).taken() }
 
 const skipper: Taker = { take: () => {}, absent: () => {} }
 
@@ -97,8 +108,8 @@ class TableSink implements RecordSink {
   takers: readonly Taker[] = []
   heads: readonly (string | null)[] = []
   records = 0
-  private readonly dialect: Dialect
-  private readonly plan: (heads: readonly (string | null)[]) => readonly ColumnTask[]
+  readonly dialect: Dialect
+  private readonly plan: Plan
   private readonly opening: Uint8Array[] = []
   private begun = false
   private surplus = false
@@ -106,7 +117,7 @@ class TableSink implements RecordSink {
   private readonly longTally = new RaggedTally()
   private readonly trailingTally = new RaggedTally()
 
-  constructor(dialect: Dialect, plan: (heads: readonly (string | null)[]) => readonly ColumnTask[]) {
+  constructor(dialect: Dialect, plan: Plan) {
     this.dialect = dialect
     this.plan = plan
   }
