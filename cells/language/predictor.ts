@@ -228,8 +228,8 @@ class Expansion {
 
 /** A product of pieces, each once. */
 function term(pieces: readonly PredictorPiece[]): PredictorTerm {
-  const each = new Map(pieces.map((piece) => [pieceText(piece), piece] as const).reverse())
-  const once = pieces.filter((piece) => each.get(pieceText(piece)) === piece)
+  const texts = pieces.map(pieceText)
+  const once = pieces.filter((_, k) => texts.indexOf(texts[k] ?? "") === k)
   return { pieces: once, says: once.map(pieceText).join(".") }
 }
 
