@@ -26,8 +26,11 @@ export function surroundings(desk: Desk, id: CellId): Surroundings | null {
     }),
     columns: table === undefined ? [] : columns(desk.state(table.id), table),
     files: desk.notebook.enclosures.map(({ name }) => name),
-    families,
-    links: (family) => (family === null ? links : legalLinks(family)),
+    families: Object.values(families).filter(({ later }) => !later),
+    links: (family) => {
+      const names = family === null ? Object.keys(links) : legalLinks(family)
+      return names.flatMap((name) => (links[name]?.later === false ? [links[name]] : []))
+    },
     functions: [...functions, ...modelFunctions].map(([name, { form, says }]) => ({ name, says: `${form}: ${says}` })),
     predictorCalls,
     family:
