@@ -4,6 +4,9 @@
 /** How much is read at a time. */
 const pieceBytes = 1024 * 1024
 
+/** What a Blob is put together of here. */
+export type Part = Blob | Uint8Array<ArrayBuffer>
+
 /** The bytes of a Blob, a piece at a time. */
 export async function* pieces(blob: Blob): AsyncGenerator<Uint8Array<ArrayBuffer>> {
   for (let at = 0; at < blob.size; at += pieceBytes) yield await slice(blob, at, at + pieceBytes)

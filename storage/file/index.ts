@@ -2,7 +2,7 @@
 
 export { pieces } from "./blob.ts"
 export { mostCells, mostEnclosureBytes, mostTextBytes } from "./bounds.ts"
-export { canonical } from "./canonical.ts"
+export { canonical, plain } from "./canonical.ts"
 export { appended, type Entry, type Event, firstBreak, type TrailHead, trailHead } from "./chain.ts"
 export { blobDigest, digest, type RunningDigest, runningDigest } from "./digest.ts"
 export { type Kept, type KeptFinding, newlyKept, type Seal } from "./kept.ts"
@@ -11,3 +11,4 @@ export type { FileNotice } from "./notices.ts"
 export { cellTexts, type PlainCell, plainCells, plainForm } from "./plain.ts"
 export { type Opened, readNotebook, type Standing } from "./read.ts"
 export { type ByteStore, notebookFile, obstacles, writeNotebook } from "./write.ts"
+export { writer } from "./writer.ts"

@@ -5,6 +5,7 @@
 import type { Cell, Enclosed } from "../../runtime/document.ts"
 import type { Json } from "../../runtime/value.ts"
 import { bytesOfBase64 } from "./base64.ts"
+import type { Part } from "./blob.ts"
 import { mostCells, mostEnclosureBytes, mostLineBytes, mostNesting, mostTextBytes, nesting, textBytes } from "./bounds.ts"
 import { type Entry, firstBreak, trailHead } from "./chain.ts"
 import { type RunningDigest, runningDigest } from "./digest.ts"
@@ -53,7 +54,7 @@ interface Arriving {
   readonly enclosed: Enclosed
   readonly line: number
   readonly digest: RunningDigest
-  parts: BlobPart[]
+  parts: Part[]
   partBytes: number
   at: number
   spoilt: boolean

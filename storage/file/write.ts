@@ -5,7 +5,7 @@ import { utf8ToBytes } from "@noble/hashes/utils.js"
 
 import type { Enclosed } from "../../runtime/document.ts"
 import { base64 } from "./base64.ts"
-import { isText, slice } from "./blob.ts"
+import { isText, type Part, slice } from "./blob.ts"
 import { mostCells, mostChunkBytes, mostEnclosureBytes, mostLineBytes, mostNesting, mostTextBytes, nesting, textBytes } from "./bounds.ts"
 import { canonical } from "./canonical.ts"
 import { trailHead } from "./chain.ts"
@@ -103,7 +103,7 @@ export async function* writeNotebook(kept: Kept, store: ByteStore): AsyncGenerat
 
 /** A notebook file as a Blob, to be handed to whoever asked for it. */
 export async function notebookFile(kept: Kept, store: ByteStore): Promise<Blob> {
-  let parts: BlobPart[] = []
+  let parts: Part[] = []
   let held = 0
   for await (const chunk of writeNotebook(kept, store)) {
     parts.push(chunk)
