@@ -57,7 +57,7 @@ export class Menu extends LitElement {
 
   #item(item: MenuItem) {
     return html`<button type="button" role="menuitem" tabindex="-1" aria-disabled=${item.off === true} @click=${() => this.#act(item)}>
-      <span class="name">${item.label}</span>${item.keys === undefined ? nothing : html`<kbd>${item.keys}</kbd>`}
+      <span class=${item.says !== undefined && /^\w+$/.test(item.label) ? "name word" : "name"}>${item.label}</span>${item.keys === undefined ? nothing : html`<kbd>${item.keys}</kbd>`}
       ${item.says === undefined ? nothing : html`<span class="says">${item.says}</span>`}
     </button>`
   }

@@ -12,6 +12,7 @@ import type { Desk } from "../desk.ts"
 import { IntentEvent } from "../intent.ts"
 import { keyOf } from "../keys.ts"
 import type { MenuItem } from "../menu.ts"
+import { ink } from "../statement/ink.ts"
 import { marks } from "../statement/marks.ts"
 import { lineOf, reading } from "../statement/reading.ts"
 import { surroundings } from "../statement/surroundings.ts"
@@ -135,7 +136,7 @@ export class Row extends LitElement {
         ${this.#statement(title, notices)}
         ${this.still && faults.length > 0 ? html`<ul class="notices">${faults.map((notice) => this.#notice(notice))}</ul>` : nothing}
         <div class="foot">
-          <span class="state">${how.words}</span>
+          <span class="state">${how.form === "waiting" ? (how.stale ? "what is shown is out of date" : "") : how.words}</span>
           ${this.desk.readOnly ? nothing : html`<etamu-menu class="tools" text="⋯" .label=${`What can be done with ${title}`} .items=${this.#tools(statement.off)}></etamu-menu>`}
         </div>
       </div>
@@ -163,7 +164,7 @@ export class Row extends LitElement {
   #statement(title: string, notices: readonly Notice[]): TemplateResult {
     if (this.editing !== null) {
       return html`<div class="statement live">
-        <etamu-editor ${ref(this.#editor)} .label=${`Statement of ${title}`} .text=${this.cell.text} .notices=${notices}
+        <etamu-editor ${ref(this.#editor)} .label=${`Statement of ${title}`} .text=${this.cell.text} .notices=${notices.filter(inPlace)}
           .surroundings=${() => surroundings(this.desk, this.cell.id)}
           @etamu-text=${(event: CustomEvent<string>) => this.#typed(event.detail)}
           @etamu-leave=${(event: CustomEvent<"stay" | "above" | "below">) => this.#ask({ type: "leave", to: event.detail })}></etamu-editor>
@@ -180,7 +181,7 @@ export class Row extends LitElement {
     const { text } = this.cell
     const read = reading(this.cell)
     const all = marks(read)
-    const wrong = notices.map((notice) => ({ ...textRange(read.statement, notice.at), level: notice.level }))
+    const wrong = notices.filter(inPlace).map((notice) => ({ ...textRange(read.statement, notice.at), level: notice.level }))
     const cuts = [...new Set([...all, ...wrong].flatMap(({ from, to }) => [from, to]))].sort((one, other) => one - other)
     const lines: TemplateResult[] = []
     let start = 0
@@ -274,16 +275,15 @@ export class Row extends LitElement {
 
   #heights(faults: readonly Notice[]): readonly number[] {
     const { statement } = reading(this.cell)
-    return faults.map(({ at }) => this.tops[lineOf(statement, at)] ?? this.tops[0] ?? 25)
+    return faults.map(({ at }) => (this.tops[lineOf(statement, at)] ?? this.tops[0] ?? 25) - 10)
   }
 
   /** Where the lines of the statement stand, for the gap in the hairline and the knots of the threads. */
   #measure(): void {
     const top = this.getBoundingClientRect().top
     const half = 10.5
-    const tops = [...this.querySelectorAll(".statement .line, .statement .cm-line")].map((line) =>
-      Math.round(line.getBoundingClientRect().top - top + half),
-    )
+    const lines = this.#editor.value?.lines ?? [...this.querySelectorAll(".statement .line")]
+    const tops = lines.map((line) => Math.round(line.getBoundingClientRect().top - top + half))
     if (tops.length !== this.tops.length || tops.some((each, i) => each !== this.tops[i])) this.tops = tops
   }
 
@@ -326,6 +326,11 @@ export class Row extends LitElement {
     }
   }
 }
+
+/** What is about the cell as a whole is said in words and underlines nothing. */
+const inPlace = ({ clause, level }: Notice): boolean => clause !== null || level === "fault"
+
+if (ink.styleSheet !== undefined) document.adoptedStyleSheets = [...document.adoptedStyleSheets, ink.styleSheet]
 
 customElements.define("etamu-row", Row)
 

@@ -18,6 +18,7 @@ import type { Intent, Notice } from "../../../runtime/notice.ts"
 import { textRange } from "../../../runtime/place.ts"
 import { IntentEvent } from "../intent.ts"
 import { completion, type Surroundings } from "./completion.ts"
+import { editorInk, ink } from "./ink.ts"
 import { marks } from "./marks.ts"
 import { readingOf } from "./reading.ts"
 
@@ -65,7 +66,7 @@ export class StatementEditor extends HTMLElement {
 
   /** What is wrong, to be underlined where it stands. */
   set notices(notices: readonly Notice[]) {
-    if (notices === this.#notices) return
+    if (notices.length === this.#notices.length && notices.every((notice, i) => notice === this.#notices[i])) return
     this.#notices = notices
     this.#underline()
   }
@@ -81,8 +82,21 @@ export class StatementEditor extends HTMLElement {
     this.#takeUp()
   }
 
+  /** The lines, from the top, to be measured. */
+  get lines(): readonly Element[] {
+    return [...(this.shadowRoot?.querySelectorAll(".cm-line") ?? [])]
+  }
+
   connectedCallback(): void {
-    this.#view ??= new EditorView({ parent: this, state: EditorState.create({ doc: this.#text, extensions: this.#extensions() }) })
+    const root = this.shadowRoot ?? this.attachShadow({ mode: "open" })
+    if (this.#view === null) {
+      const parent = document.createElement("div")
+      root.replaceChildren(parent)
+      const state = EditorState.create({ doc: this.#text, extensions: this.#extensions() })
+      // A root of its own: in a document the editor would write its styles into a style element, which the policy forbids.
+      this.#view = new EditorView({ root, parent, state })
+      root.adoptedStyleSheets = [...root.adoptedStyleSheets, ...[ink, editorInk].flatMap(({ styleSheet }) => styleSheet ?? [])]
+    }
     this.label = this.#label
     this.#underline()
     this.#takeUp()
@@ -136,6 +150,9 @@ export class StatementEditor extends HTMLElement {
       EditorView.lineWrapping,
       EditorState.tabSize.of(2),
       colours,
+      EditorView.editorAttributes.compute(["doc"], (state) => ({
+        class: readingOf(state.doc.toString()).statement.kind === "note" ? "is-note" : "",
+      })),
       autocompletion({
         override: [(context) => this.#complete(context)],
         icons: false,
