@@ -72,7 +72,8 @@ const namesAlike = (a: Reading, b: Reading): boolean =>
     a.uses.length === b.uses.length &&
     a.uses.every(({ name, either }, i) => name === b.uses[i]?.name && either === b.uses[i]?.either))
 
-const listsAlike = (a: readonly string[] | undefined, b: readonly string[] | undefined): boolean =>
+/** Whether two lists hold the same in the same order; a list that is not there is like no list but another that is not. */
+export const listsAlike = (a: readonly string[] | undefined, b: readonly string[] | undefined): boolean =>
   a === b || (a?.length === b?.length && a?.every((item, i) => item === b?.[i]) === true)
 
 function sameArrows(

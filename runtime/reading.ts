@@ -2,25 +2,30 @@
 // remembered by it. Names are read from the text, so no cell chooses at run time what it reads.
 
 import type { Cell } from "./document.ts"
+import { hash } from "./hash.ts"
 import type { AnyWords, Names, Use } from "./kind.ts"
 import { nearest } from "./nearest.ts"
 import type { Intent, Notice, Place } from "./notice.ts"
 import { notAvailableYet, unknownKind } from "./notices.ts"
 import type { Statement } from "./statement.ts"
 import { canonical, read } from "./statement.ts"
-import type { Name } from "./value.ts"
+import type { Hash, Name } from "./value.ts"
 
 export interface Reading {
   readonly cell: Cell
   readonly statement: Statement
   /** The statement in its canonical form. */
   readonly canonical: string
+  /** Its hash: stands for the statement in what went in. */
+  readonly hash: Hash
   /** Empty cells and cells switched off define nothing and are not evaluated. */
   readonly idle: boolean
   /** Of an idle cell: the name it would define were it on. */
   readonly asleep: Name | null
   readonly defines: Name | null
   readonly uses: readonly Use[]
+  /** What is read of each name, over all its uses: certain parts, in order of their names, or all of it. */
+  readonly reads: ReadonlyMap<Name, readonly string[] | "all">
   /** Names of enclosures that are read. */
   readonly files: readonly string[]
   /** All notices of the statement itself. */
@@ -74,14 +79,15 @@ const kindsOfTheLanguage: ReadonlySet<string> = new Set([
 function readingOf(cell: Cell, byWord: ReadonlyMap<string, AnyWords>): Reading {
   const statement = read(cell.text)
   const { kind, name, off } = statement
+  const form = canonical(statement)
   const bare = {
     cell,
     statement,
-    canonical: canonical(statement),
+    canonical: form,
+    hash: hash(form),
     idle: false,
     asleep: null,
-    uses: [],
-    files: [],
+    ...readsNothing,
     faulty: false,
     crash: null,
   }
@@ -95,10 +101,22 @@ function readingOf(cell: Cell, byWord: ReadonlyMap<string, AnyWords>): Reading {
     const { said, notices } = words.parse(statement)
     const names: Names = words.names(said)
     const faulty = notices.some(({ level }) => level === "fault")
-    return { ...bare, defines: names.defines, uses: names.uses, files: names.files, notices, faulty }
+    const reads = partsByName(names.uses)
+    return { ...bare, defines: names.defines, uses: names.uses, reads, files: names.files, notices, faulty }
   } catch (error) {
     return { ...bare, defines: name, notices: [], crash: crashOf(error) }
   }
+}
+
+const readsNothing = { uses: [], reads: new Map<Name, "all">(), files: [] } as const
+
+function partsByName(uses: readonly Use[]): ReadonlyMap<Name, readonly string[] | "all"> {
+  const reads = new Map<Name, readonly string[] | "all">()
+  for (const { name, parts } of uses) {
+    const former = reads.get(name) ?? []
+    reads.set(name, parts === "all" || former === "all" ? "all" : [...new Set([...former, ...parts])].sort())
+  }
+  return reads
 }
 
 /** What was thrown, as the text and the stack to show. */
