@@ -29,8 +29,8 @@ export type Column = NumberColumn | CodedColumn
 /** The part of a table that says which record of the file each row is. Never a column's name, since names hold no `#`. */
 export const rowsPart = "#"
 
-/** Record numbers from 0 (the row after the header is 0); of the first record where `total` made one row of several. */
-export type RowIdentity = { readonly sha256: string; readonly records: Uint32Array }
+/** The file and record numbers from 0 (the row after the header is 0); of the first record where `total` made one row of several. */
+export type RowIdentity = { readonly file: string; readonly sha256: string; readonly records: Uint32Array }
 
 export type TableParts = { readonly [part: string]: Column | RowIdentity }
 
