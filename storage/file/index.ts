@@ -8,7 +8,7 @@ export { blobDigest, digest, type RunningDigest, runningDigest } from "./digest.
 export { type Kept, type KeptFinding, newlyKept, type Seal } from "./kept.ts"
 export { mediaOf, notebookMedia } from "./media.ts"
 export type { FileNotice } from "./notices.ts"
-export { cellTexts, type PlainCell, plainCells, plainForm } from "./plain.ts"
+export { type PlainCell, type PlainOpened, plainCells, plainForm, readPlain } from "./plain.ts"
 export { type Opened, readNotebook, type Standing } from "./read.ts"
 export { type ByteStore, notebookFile, obstacles, writeNotebook } from "./write.ts"
 export { writer } from "./writer.ts"

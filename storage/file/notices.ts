@@ -110,6 +110,9 @@ export const notText = (line: number): FileNotice =>
     "A notebook file is UTF-8 text from end to end.",
   )
 
+export const plainNotText = (): FileNotice =>
+  notice("fault", "not-utf-8", null, "The file is not valid UTF-8, so it is not read.", "Save it as UTF-8 text.")
+
 export const notARecord = (line: number): FileNotice =>
   notice(
     "fault",

@@ -2,8 +2,14 @@
 // control. A line inside a cell that would part it carries a backslash more; a cell's text is all that stands between two such lines, so
 // reading what was written gives the same texts back, blank ones too.
 
-/** The texts of the cells in a file of the plain form. Line ends of other systems and a byte-order mark are taken as those of this one. */
-export const cellTexts = (file: string): string[] => plainCells(file).map((cell) => cell.text)
+import { mostCells, mostTextBytes, textBytes } from "./bounds.ts"
+import { type FileNotice, plainNotText, tooManyCells, tooMuchText } from "./notices.ts"
+
+/** What could be made out of a file of the plain form. It never throws: what is wrong is in the notices, with its line. */
+export interface PlainOpened {
+  readonly cells: readonly PlainCell[]
+  readonly notices: readonly FileNotice[]
+}
 
 /** A cell of the plain form and the line of the file it begins on, counted from 1. */
 export interface PlainCell {
@@ -11,7 +17,21 @@ export interface PlainCell {
   readonly line: number
 }
 
-/** The cells of a file of the plain form, with their places. */
+/** Reads a file of the plain form, within the bounds of the format. */
+export function readPlain(bytes: Uint8Array): PlainOpened {
+  const text = textIn(bytes)
+  if (text === null) return { cells: [], notices: [plainNotText()] }
+  const notices: FileNotice[] = []
+  const cells = plainCells(text).filter((cell, i) => {
+    if (i === mostCells) notices.push(tooManyCells(cell.line, mostCells))
+    const fits = textBytes(cell.text) <= mostTextBytes
+    if (i < mostCells && !fits) notices.push(tooMuchText(cell.line, `on line ${cell.line}`, mostTextBytes))
+    return i < mostCells && fits
+  })
+  return { cells, notices }
+}
+
+/** The cells of a text in the plain form, with their places. Line ends of other systems and a byte-order mark are taken as those of this one. */
 export function plainCells(file: string): PlainCell[] {
   const lines = file
     .replace(/^\uFEFF/, "")
@@ -49,3 +69,11 @@ export const plainForm = (texts: readonly string[]): string =>
 const parting = "---"
 const anyParting = /^\\*---$/
 const escapedParting = /^\\+---$/
+
+function textIn(bytes: Uint8Array): string | null {
+  try {
+    return new TextDecoder("utf-8", { fatal: true, ignoreBOM: true }).decode(bytes)
+  } catch {
+    return null
+  }
+}

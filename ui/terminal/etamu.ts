@@ -26,6 +26,9 @@ async function etamu(words: readonly string[], terminal: Terminal): Promise<numb
   }
 }
 
+// Whoever reads what is printed may stop reading, and then nothing more is to be said.
+process.stdout.on("error", (error: NodeJS.ErrnoException) => process.exit(error.code === "EPIPE" ? 0 : 1))
+
 /** npm runs a command from the folder of package.json and says where the person stands. */
 const folder = process.env["npm_lifecycle_event"] === "etamu" ? (process.env["INIT_CWD"] ?? process.cwd()) : process.cwd()
 

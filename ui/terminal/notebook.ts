@@ -8,7 +8,7 @@ import { words } from "../../cells/words.ts"
 import type { Cell, Enclosed, Notebook } from "../../runtime/document.ts"
 import { createReader } from "../../runtime/reading.ts"
 import { read } from "../../runtime/statement.ts"
-import { type Kept, type Opened, pieces, plainCells, readNotebook } from "../../storage/file/index.ts"
+import { type FileNotice, type Kept, type Opened, pieces, readNotebook, readPlain } from "../../storage/file/index.ts"
 import { besideIn, contents, isMissing, messageOf } from "./beside.ts"
 
 export interface OpenNotebook {
@@ -25,6 +25,8 @@ export interface OpenNotebook {
   readonly paths: ReadonlyMap<string, string>
   /** Names of files that cells read and that are neither inside nor beside. */
   readonly missing: readonly string[]
+  /** Whether the file is not as it was written, or not all of it could be read. */
+  readonly broken: boolean
   /** What is to be said about the file, in sentences. */
   readonly remarks: readonly string[]
 }
@@ -49,7 +51,8 @@ export async function openNotebook(path: string): Promise<Opening> {
 }
 
 async function openPlain(path: string): Promise<OpenNotebook> {
-  const cells = plainCells(await readFile(path, "utf8")).map(({ text, line }, i) => ({ cell: { id: `c${i + 1}`, text }, line }))
+  const plain = readPlain(await readFile(path))
+  const cells = plain.cells.map(({ text, line }, i) => ({ cell: { id: `c${i + 1}`, text }, line }))
   const title = basename(path).replace(/\.cells$/, "")
   const bare: Notebook = { id: "", title, cells: cells.map(({ cell }) => cell), enclosures: [], rest: null }
   const { enclosures, remarks, ...beside } = await lookBeside(dirname(path), bare, new Set())
@@ -60,7 +63,8 @@ async function openPlain(path: string): Promise<OpenNotebook> {
     title,
     lines: new Map(cells.map(({ cell, line }) => [cell.id, line])),
     bytes: (sha256) => contents(beside.paths.get(sha256) ?? ""),
-    remarks,
+    broken: plain.notices.length > 0,
+    remarks: [...plain.notices.map(remarkOf), ...remarks],
   }
 }
 
@@ -79,10 +83,8 @@ async function withBytes(path: string, kept: Kept, opened: Opened): Promise<Open
       const blob = opened.bytes.get(sha256)
       return blob === undefined ? contents(beside.paths.get(sha256) ?? "") : pieces(blob)
     },
-    remarks: [
-      ...opened.notices.map(({ text, hint, line }) => (line === null ? sentences(text, hint) : `line ${line}: ${sentences(text, hint)}`)),
-      ...remarks,
-    ],
+    broken: opened.standing.status === "broken",
+    remarks: [...opened.notices.map(remarkOf), ...remarks],
   }
 }
 
@@ -131,6 +133,12 @@ async function isPlainForm(path: string): Promise<boolean> {
   if (path.endsWith(".etamu")) return false
   for await (const piece of contents(path)) return piece[0] !== "{".charCodeAt(0)
   return true
+}
+
+/** A notice about the file, with its line where the text does not say it. */
+function remarkOf({ text, hint, line }: FileNotice): string {
+  const said = sentences(text, hint)
+  return line === null || new RegExp(`\\bline ${line}\\b`, "i").test(text) ? said : `line ${line}: ${said}`
 }
 
 const sentences = (text: string, hint: string | null): string => (hint === null ? text : `${text} ${hint}`)

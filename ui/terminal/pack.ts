@@ -23,9 +23,12 @@ export async function pack(command: Extract<Command, { type: "pack" }>, terminal
     terminal.complain(`${command.file} is a notebook already; pack takes the plain form.\n`)
     return 2
   }
-  const { notebook, missing, paths, remarks, title } = opening.open
+  const { broken, notebook, missing, paths, remarks, title } = opening.open
   for (const remark of remarks) terminal.complain(`${remark}\n`)
   for (const name of missing) terminal.complain(`The file ${name} is not beside ${basename(from)}, so it is not enclosed.\n`)
+
+  // A notebook of half the cells would look whole.
+  if (broken) return 1
 
   const kept = newlyKept({
     id: terminal.newId(),

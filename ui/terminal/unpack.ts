@@ -19,14 +19,14 @@ export async function unpack(command: Extract<Command, { type: "unpack" }>, term
     terminal.complain(`${opening.text}\n`)
     return opening.missing ? 2 : 1
   }
-  const { kept, notebook, remarks, bytes } = opening.open
+  const { kept, notebook, remarks, bytes, broken } = opening.open
   if (kept === null) {
     terminal.complain(`${command.file} is the plain form already; unpack takes a notebook.\n`)
     return 2
   }
   for (const remark of remarks) terminal.complain(`${remark}\n`)
 
-  let whole = true
+  let whole = !broken
   const files: { readonly path: string; readonly bytes: Uint8Array }[] = []
   const plan = (name: string, contents: Uint8Array): void => {
     const path = placeIn(folder, name)

@@ -2,7 +2,9 @@
 
 import fc from "fast-check"
 import { describe, expect, it } from "vitest"
-import { cellTexts, plainCells, plainForm } from "../../../storage/file/plain.ts"
+import { plainCells, plainForm, readPlain } from "../../../storage/file/plain.ts"
+
+const cellTexts = (file: string): string[] => plainCells(file).map(({ text }) => text)
 
 describe("the plain form", () => {
   it.each([
@@ -44,5 +46,28 @@ describe("the plain form", () => {
   it("is the same file again where no cell is left empty", () => {
     const file = 'data d\n  from "d.csv"\n\n---\n\nnote\n# Heading\n\\---\n---\nmodel m\n'
     expect(plainForm(cellTexts(file))).toBe(file)
+  })
+
+  it("is read from bytes within the bounds of the format, and says with its line what exceeds them", () => {
+    const read = (text: string): ReturnType<typeof readPlain> => readPlain(new TextEncoder().encode(text))
+    expect(read("\uFEFFa b\n---\nc d\n")).toEqual({
+      cells: [
+        { text: "a b", line: 1 },
+        { text: "c d", line: 3 },
+      ],
+      notices: [],
+    })
+    const long = read(`a b\n---\n${"x".repeat(1024 * 1024 + 1)}\n---\nc d\n`)
+    expect(long.cells.map(({ text }) => text)).toEqual(["a b", "c d"])
+    expect(long.notices.map(({ code, line }) => [code, line])).toEqual([["file/cell-too-long", 3]])
+    const many = read("a b\n---\n".repeat(10_003))
+    expect(many.cells).toHaveLength(10_000)
+    expect(many.notices.map(({ code, line }) => [code, line])).toEqual([["file/too-many-cells", 20_001]])
+  })
+
+  it("is refused in one sentence where it is not UTF-8", () => {
+    const { cells, notices } = readPlain(Uint8Array.of(0x6e, 0xe9, 0x0a))
+    expect(cells).toEqual([])
+    expect(notices.map(({ code }) => code)).toEqual(["file/not-utf-8"])
   })
 })
