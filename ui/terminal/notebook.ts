@@ -8,7 +8,7 @@ import { words } from "../../cells/words.ts"
 import type { Cell, Enclosed, Notebook } from "../../runtime/document.ts"
 import { createReader } from "../../runtime/reading.ts"
 import { read } from "../../runtime/statement.ts"
-import { type FileNotice, type Kept, type Opened, pieces, readNotebook, readPlain } from "../../storage/file/index.ts"
+import { type FileNotice, type Kept, type Opened, type PlainOpened, pieces, readNotebook, readPlain } from "../../storage/file/index.ts"
 import { besideIn, contents, isMissing, messageOf } from "./beside.ts"
 
 export interface OpenNotebook {
@@ -27,6 +27,8 @@ export interface OpenNotebook {
   readonly missing: readonly string[]
   /** Whether the file is not as it was written, or not all of it could be read. */
   readonly broken: boolean
+  /** Whether something of it could not be read, so that cells may be missing. */
+  readonly partial: boolean
   /** What is to be said about the file, in sentences. */
   readonly remarks: readonly string[]
 }
@@ -39,7 +41,13 @@ export type Opening =
 export async function openNotebook(path: string): Promise<Opening> {
   const name = basename(path)
   try {
-    if (await isPlainForm(path)) return { ok: true, open: await openPlain(path) }
+    if (await isPlainForm(path)) {
+      const plain = readPlain(await readFile(path))
+      const [first] = plain.notices
+      if (plain.cells.length === 0 && first !== undefined)
+        return { ok: false, missing: false, text: sentences(`${name}: ${first.text}`, first.hint) }
+      return { ok: true, open: await openPlain(path, plain) }
+    }
     const opened = await readNotebook(contents(path))
     if (opened.kept === null) {
       return { ok: false, missing: false, text: opened.notices.map(({ text, hint }) => sentences(`${name}: ${text}`, hint)).join("\n") }
@@ -50,8 +58,7 @@ export async function openNotebook(path: string): Promise<Opening> {
   }
 }
 
-async function openPlain(path: string): Promise<OpenNotebook> {
-  const plain = readPlain(await readFile(path))
+async function openPlain(path: string, plain: PlainOpened): Promise<OpenNotebook> {
   const cells = plain.cells.map(({ text, line }, i) => ({ cell: { id: `c${i + 1}`, text }, line }))
   const title = basename(path).replace(/\.cells$/, "")
   const bare: Notebook = { id: "", title, cells: cells.map(({ cell }) => cell), enclosures: [], rest: null }
@@ -64,6 +71,7 @@ async function openPlain(path: string): Promise<OpenNotebook> {
     lines: new Map(cells.map(({ cell, line }) => [cell.id, line])),
     bytes: (sha256) => contents(beside.paths.get(sha256) ?? ""),
     broken: plain.notices.length > 0,
+    partial: plain.notices.length > 0,
     remarks: [...plain.notices.map(remarkOf), ...remarks],
   }
 }
@@ -84,6 +92,7 @@ async function withBytes(path: string, kept: Kept, opened: Opened): Promise<Open
       return blob === undefined ? contents(beside.paths.get(sha256) ?? "") : pieces(blob)
     },
     broken: opened.standing.status === "broken",
+    partial: opened.notices.some(({ level, code }) => level === "fault" && !alterations.has(code)),
     remarks: [...opened.notices.map(remarkOf), ...remarks],
   }
 }
@@ -134,6 +143,15 @@ async function isPlainForm(path: string): Promise<boolean> {
   for await (const piece of contents(path)) return piece[0] !== "{".charCodeAt(0)
   return true
 }
+
+/** Faults of a file that is read whole all the same: it is not as it was sealed. */
+const alterations: ReadonlySet<string> = new Set([
+  "file/altered-enclosure",
+  "file/after-seal",
+  "file/broken-seal",
+  "file/broken-chain",
+  "file/other-trail",
+])
 
 /** A notice about the file, with its line where the text does not say it. */
 function remarkOf({ text, hint, line }: FileNotice): string {

@@ -12,7 +12,7 @@ import { openNotebook } from "./notebook.ts"
 import { printed } from "./print.ts"
 import type { Terminal } from "./terminal.ts"
 
-/** Gives the exit code: 0 where no cell is at fault or waiting, 1 otherwise, 2 where there is no such file. */
+/** Gives the exit code: 0 where no cell is at fault or waiting or could not be read, 1 otherwise, 2 where there is no such file. */
 export async function run(command: Extract<Command, { type: "run" }>, terminal: Terminal): Promise<number> {
   const opening = await openNotebook(resolve(terminal.folder, command.file))
   if (!opening.ok) {
@@ -36,7 +36,7 @@ export async function run(command: Extract<Command, { type: "run" }>, terminal: 
   const all = findings(engine)
   if (command.json) terminal.print(`${JSON.stringify(findingsAsJson(open.kept === null ? null : open.notebook.id, all))}\n`)
   else terminal.print(printed(open.title, all, { width: terminal.width, lines: open.lines, name: (id) => nameOf(all, id) }))
-  return all.every(isWell) ? 0 : 1
+  return all.every(isWell) && !open.partial ? 0 : 1
 }
 
 const nameOf = (all: ReturnType<typeof findings>, id: string): string => {

@@ -135,6 +135,23 @@ describe("etamu run", () => {
     }
   })
 
+  it("ends with 1 for a notebook that was cut short, and goes on with what is there", () => {
+    etamu("pack", "beetles.cells", "-o", "beetles.etamu")
+    const file = get("beetles.etamu")
+    put("beetles.etamu", file.slice(0, file.indexOf("response")))
+    const { code, out, complaints } = etamu("run", "beetles.etamu", "--json")
+    expect((JSON.parse(out) as Output).findings).toHaveLength(2)
+    expect(complaints).toContain("The file was cut short in line 4.")
+    expect(code).toBe(1)
+  })
+
+  it("ends with 1 for cells that are not UTF-8, in one sentence", () => {
+    writeFileSync(join(folder, "latin.cells"), Buffer.from("note\ncaf\xe9\n", "latin1"))
+    const { code, out, complaints } = etamu("run", "latin.cells")
+    expect([code, out]).toEqual([1, ""])
+    expect(complaints).toBe("latin.cells: The file is not valid UTF-8, so it is not read. Save it as UTF-8 text.\n")
+  })
+
   it("ends with 1 for a file that is no notebook, in one sentence", () => {
     put("other.etamu", "a,b\n1,2\n")
     const { code, out, complaints } = etamu("run", "other.etamu", "--json")
