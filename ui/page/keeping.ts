@@ -2,10 +2,10 @@
 // how that stands, in words for the head of the page, and never hides that something was refused.
 
 import type { Notice } from "../../runtime/notice.ts"
-import type { Kept } from "../../storage/file/index.ts"
+import { type Kept, writer } from "../../storage/file/index.ts"
 import type { Loan } from "../../storage/shelf/index.ts"
 import type { Desk } from "./desk.ts"
-import { now, writer } from "./opening.ts"
+import { now } from "./opening.ts"
 
 export type Saved =
   | { readonly status: "saving" }

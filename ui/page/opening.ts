@@ -3,11 +3,8 @@
 
 import type { Cell, Enclosed } from "../../runtime/document.ts"
 import type { Notice } from "../../runtime/notice.ts"
-import { blobDigest, cellTexts, type Kept, mediaOf, newlyKept, readNotebook } from "../../storage/file/index.ts"
+import { blobDigest, type Kept, mediaOf, newlyKept, plainCells, readNotebook, readPlain, writer } from "../../storage/file/index.ts"
 import { readingOf } from "./statement/reading.ts"
-
-/** The program and its version, as files name it. */
-export const writer = "Etamu 0.1.0"
 
 export interface Book {
   readonly kept: Kept
@@ -31,8 +28,10 @@ export const now = (): string => new Date().toISOString()
 /** Reads a notebook file of either form. Null with a reason where it is none. */
 export async function bookOfFile(file: File): Promise<{ readonly book: Book | null; readonly notices: readonly Notice[] }> {
   if (file.name.toLowerCase().endsWith(".cells")) {
-    const texts = cellTexts(await file.text())
-    return { book: await bookOfTexts(titleOf(texts, file.name), texts, new Map()), notices: [] }
+    const { cells, notices } = readPlain(new Uint8Array(await file.arrayBuffer()))
+    if (cells.length === 0 && notices.length > 0) return { book: null, notices }
+    const texts = cells.map(({ text }) => text)
+    return { book: { ...(await bookOfTexts(titleOf(texts, file.name), texts, new Map())), notices }, notices }
   }
   const { kept, bytes, standing, notices } = await readNotebook(file)
   if (kept === null) return { book: null, notices }
@@ -58,6 +57,8 @@ export async function bookOfSample({ file, title }: Sample): Promise<Book> {
 
 /** A notebook with nothing in it yet. */
 export const blankBook = (): Promise<Book> => bookOfTexts("Untitled", [], new Map())
+
+const cellTexts = (file: string): readonly string[] => plainCells(file).map(({ text }) => text)
 
 async function fetched(file: string): Promise<Blob> {
   const answer = await fetch(`samples/${encodeURIComponent(file)}`)

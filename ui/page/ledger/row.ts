@@ -51,6 +51,7 @@ export class Row extends LitElement {
     first: { type: Boolean },
     last: { type: Boolean },
     tops: { state: true },
+    gutter: { state: true },
     still: { state: true },
     failure: { state: true },
   }
@@ -63,6 +64,8 @@ export class Row extends LitElement {
   declare last: boolean
   /** The middle of each line of the statement, in pixels from the top of the row. */
   declare tops: readonly number[]
+  /** The width of the gutter, in pixels. */
+  declare gutter: number
   /** No key was struck for a moment: what is wrong may be put into words. */
   declare still: boolean
   declare failure: string | null
@@ -80,6 +83,7 @@ export class Row extends LitElement {
     this.first = false
     this.last = false
     this.tops = []
+    this.gutter = 60
     this.still = true
     this.failure = null
     this.addEventListener(IntentEvent.type, (event) => {
@@ -258,9 +262,11 @@ export class Row extends LitElement {
   }
 
   #threads(): TemplateResult {
-    const x = (lane: number): number => 60 - 11 - lane * 12
+    // In a narrow gutter the lanes stand closer.
+    const [width, step] = this.gutter >= 60 ? [60, 12] : [this.gutter, (this.gutter - 14) / (lanes - 1)]
+    const x = (lane: number): number => width - (width >= 60 ? 11 : 8) - lane * step
     const lit = [...this.strands].sort((one, other) => Number(one.lit) - Number(other.lit))
-    return html`<svg width="60" height="100%">${lit.map((strand) => {
+    return html`<svg width=${width} height="100%">${lit.map((strand) => {
       const at = x(Math.min(strand.lane, lanes - 1))
       const y = strand.knot === null ? 0 : (this.tops[strand.knot.line] ?? this.tops[0] ?? 25)
       const ring = strand.knot?.type === "ring"
@@ -282,6 +288,7 @@ export class Row extends LitElement {
   #measure(): void {
     const top = this.getBoundingClientRect().top
     const half = 10.5
+    this.gutter = this.querySelector(".gutter")?.clientWidth ?? 60
     const lines = this.#editor.value?.lines ?? [...this.querySelectorAll(".statement .line")]
     const tops = lines.map((line) => Math.round(line.getBoundingClientRect().top - top + half))
     if (tops.length !== this.tops.length || tops.some((each, i) => each !== this.tops[i])) this.tops = tops

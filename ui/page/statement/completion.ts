@@ -36,7 +36,9 @@ export interface Surroundings {
   readonly files: readonly string[]
   readonly families: readonly { readonly name: string; readonly says: string }[]
   /** Links, those that are legal for the family where one is said. */
-  links(family: string | null): readonly { readonly name: string; readonly says: string }[]
+  links(
+    family: string | null,
+  ): readonly { readonly name: string; readonly says: string /** A parameter in brackets. */; readonly takes: boolean }[]
   readonly functions: readonly { readonly name: string; readonly says: string }[]
   readonly predictorCalls: readonly { readonly name: string; readonly says: string }[]
   /** The family said in the cell, or in the model it shows. */
@@ -144,10 +146,7 @@ const files = (around: Surroundings): readonly Option[] =>
 function calls(label: string, statement: Statement, around: Surroundings): readonly Option[] {
   if (label === "family") return around.families.map(({ name, says }) => ({ label: name, says, sort: "family" }))
   const own = statement.clauses.find(({ keyword }) => keyword === "family")?.tokens[0]?.text ?? around.family
-  return around.links(own).map(({ name, says }) => {
-    const bare = name.replace(/\(.*$/, "")
-    return name === bare ? { label: name, says, sort: "link" } : { label: bare, apply: `${bare}(`, says, sort: "link" }
-  })
+  return around.links(own).map(({ name, says, takes }) => ({ label: name, says, sort: "link", ...(takes ? { apply: `${name}(` } : {}) }))
 }
 
 /** The levels of the column that is being given a value: `hold lot = `. */

@@ -27,15 +27,21 @@ export function surroundings(desk: Desk, id: CellId): Surroundings | null {
     columns: table === undefined ? [] : columns(desk.state(table.id), table),
     files: desk.notebook.enclosures.map(({ name }) => name),
     families: Object.values(families).filter(({ later }) => !later),
-    links: (family) => {
-      const names = family === null ? Object.keys(links) : legalLinks(family)
-      return names.flatMap((name) => (links[name]?.later === false ? [links[name]] : []))
-    },
+    links: (family) => linksFor(family === null ? Object.keys(links) : legalLinks(family)),
     functions: [...functions, ...modelFunctions].map(([name, { form, says }]) => ({ name, says: `${form}: ${says}` })),
     predictorCalls,
     family:
       model === undefined ? null : (reading(model).statement.clauses.find(({ keyword }) => keyword === "family")?.tokens[0]?.text ?? null),
   }
+}
+
+/** The links of these names, with g(μ) and one line each. */
+function linksFor(names: readonly string[]): ReturnType<Surroundings["links"]> {
+  return names
+    .flatMap((name) => links[name] ?? [])
+    .flatMap(({ name, says, formula, parameters, later }) =>
+      later ? [] : [{ name, says: `${formula} · ${says}`, takes: parameters.length > 0 }],
+    )
 }
 
 const predictorCalls = [
