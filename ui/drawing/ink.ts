@@ -47,6 +47,9 @@ ${links}
 .scene .bars { fill: var(--tint); stroke: var(--rule); stroke-width: 1; }
 .scene .hair { stroke: var(--link); stroke-width: 1; stroke-opacity: 0.22; }
 .scene .join { stroke: var(--link); stroke-width: 1.25; stroke-opacity: 0.85; }
+.scene .knot { fill: var(--link); }
+.scene .lit-knot { fill: var(--ink); }
+.scene .plate { fill: var(--paper); }
 .scene .join.ghost, .scene .hair.ghost { stroke-opacity: 0.8; stroke-width: 1.25; }
 .scene .used { fill: var(--link); fill-opacity: 0.09; }
 .scene .held-back { opacity: 0.45; }

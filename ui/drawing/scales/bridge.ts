@@ -105,7 +105,7 @@ export function labelledLines(pairs: Pairs, edges: BridgeEdges, most: number): r
         left.delete(line)
         continue
       }
-      const worth = Math.min(clear, 60) - line.cost * 14
+      const worth = Math.min(clear, 48) - line.cost * 26
       if (worth > bestWorth) {
         bestWorth = worth
         best = line
@@ -162,9 +162,11 @@ function roundMeans(low: number, high: number): readonly RoundMean[] {
     if (unit > largest * 1.0001 || unit < extent * 1e-4) continue
     const decimals = Math.max(0, -power)
     for (let k = 1; k <= 9; k += 1) {
-      const cost = k === 1 || k === 5 ? 0 : k === 2 ? 0.15 : 0.5
+      // Far out in a tail a mean is read less often than in the middle.
+      const tail = power <= -4 ? 0.9 : power === -3 ? 0.5 : 0
+      const cost = tail * (high <= 1 ? 1 : 0) + (k === 1 || k === 5 ? 0 : k === 2 ? 0.2 : 0.6)
       for (const sign of [1, -1]) offer(sign * k * unit, decimals, cost)
-      if (unit < 0.2 && high <= 1) offer(1 - k * unit, decimals, cost)
+      if (unit < 0.2 && high <= 1) offer(1 - k * unit, decimals, cost + (power < -1 && k !== 1 && k !== 5 ? 0.5 : 0))
     }
     // Two digits, where the range is narrow beside its distance from nought.
     const first = Math.ceil(low / unit)
@@ -179,25 +181,23 @@ function roundMeans(low: number, high: number): readonly RoundMean[] {
   return [...found.values()]
 }
 
-/** The path of a joining line. It leaves and arrives at right angles to the edges, so that its ends can be read. */
-export function joinPath(runs: BridgeEdges["runs"], fromEdge: number, toEdge: number, from: number, to: number, stub: number): string {
-  const [a, b] = [fromEdge + stub, toEdge - stub]
-  const middle = (a + b) / 2
+/** The path of a joining line between two places on lines that face each other; it leaves and arrives at right angles to them. */
+export function joinPath(runs: BridgeEdges["runs"], start: number, end: number, from: number, to: number): string {
+  const middle = (start + end) / 2
   return runs === "down"
-    ? `M${tenth(fromEdge)} ${tenth(from)}H${tenth(a)}C${tenth(middle)} ${tenth(from)} ${tenth(middle)} ${tenth(to)} ${tenth(b)} ${tenth(to)}H${tenth(toEdge)}`
-    : `M${tenth(from)} ${tenth(fromEdge)}V${tenth(a)}C${tenth(from)} ${tenth(middle)} ${tenth(to)} ${tenth(middle)} ${tenth(to)} ${tenth(b)}V${tenth(toEdge)}`
+    ? `M${tenth(start)} ${tenth(from)}C${tenth(middle)} ${tenth(from)} ${tenth(middle)} ${tenth(to)} ${tenth(end)} ${tenth(to)}`
+    : `M${tenth(from)} ${tenth(start)}C${tenth(from)} ${tenth(middle)} ${tenth(to)} ${tenth(middle)} ${tenth(to)} ${tenth(end)}`
 }
 
-/** The area between two joining lines. */
+/** The area between two joining lines, from edge to edge. */
 export function joinArea(
-  runs: BridgeEdges["runs"],
-  fromEdge: number,
-  toEdge: number,
+  ways: { readonly runs: BridgeEdges["runs"]; readonly near: number; readonly far: number; readonly start: number; readonly end: number },
   from: readonly [number, number],
   to: readonly [number, number],
-  stub: number,
 ): string {
-  const there = joinPath(runs, fromEdge, toEdge, from[0], to[0], stub)
-  const back = joinPath(runs, toEdge, fromEdge, to[1], from[1], -stub)
-  return `${there}L${back.slice(1)}Z`
+  const { runs, near, far, start, end } = ways
+  const straight = (across: number, along: number): string =>
+    runs === "down" ? `L${tenth(across)} ${tenth(along)}` : `L${tenth(along)} ${tenth(across)}`
+  const bend = (a: number, b: number, atA: number, atB: number): string => joinPath(runs, a, b, atA, atB).replace(/^M[^C]*/, "")
+  return `${straight(near, from[0]).replace("L", "M")}${straight(start, from[0])}${bend(start, end, from[0], to[0])}${straight(far, to[0])}${straight(far, to[1])}${straight(end, to[1])}${bend(end, start, to[1], from[1])}${straight(near, from[1])}Z`
 }

@@ -1,8 +1,8 @@
 // The two scales as a drawing: layout, the still scene, what follows the pointer, readings, and the words below.
 
 export { type ScalesLayout, scalesLayout, subjectOf } from "./layout.ts"
-export { scalesScene } from "./panels.ts"
 export { pointerMarks } from "./pointer.ts"
 export { type Pointing, pointed, type Reading, readingOf, readingSentence, steppedReading, xText } from "./reading.ts"
+export { scalesScene } from "./still.ts"
 export { linkThumbnail } from "./thumbnail.ts"
 export { ghostSays, scalesLegend } from "./words.ts"

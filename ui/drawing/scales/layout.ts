@@ -37,7 +37,7 @@ export const TITLE_SIZE = 14
 
 /** Below this width the panels stand over each other. */
 const STACKED_BELOW = 560
-const HEAD_ROWS = 46
+const HEAD_ROWS = 54
 const KEY_ROW = 18
 const ROW = 15
 
@@ -69,7 +69,7 @@ export function scalesLayout(block: ScalesBlock, width: number): ScalesLayout | 
   }
 
   if (!stacked) {
-    const bridgeWidth = width >= 820 ? 168 : 132
+    const bridgeWidth = width >= 820 ? 190 : width >= 680 ? 164 : 148
     const height = Math.round(Math.min(330, Math.max(220, width * 0.3)))
     const left = sideWidth(meanRange, height)
     const right = sideWidth(etaRange, height)
@@ -160,8 +160,9 @@ function meanRangeOf(block: ScalesBlock, subject: ScalesCandidate): readonly [nu
     curve.mu.forEach((mu, i) => {
       const inside = curve.inside[i] === 1
       all.takeWithin(mu, core, inside ? 1 : 0.9)
-      all.takeWithin(curve.muLow[i], core, inside ? 0.4 : 0.25)
-      all.takeWithin(curve.muHigh[i], core, inside ? 0.4 : 0.25)
+      const share = inside ? (block.across.levels === null ? 0.4 : 1.5) : 0.25
+      all.takeWithin(curve.muLow[i], core, share)
+      all.takeWithin(curve.muHigh[i], core, share)
     })
   }
   const [lowest, highest] = block.possible

@@ -2,12 +2,13 @@
 // intervals, and the one line of the bridge that ties them, so that a band on one scale is seen to become a band on the other.
 
 import type { ScalesBlock, ScalesCandidate, ScalesCurve } from "../../../cells/block.ts"
-import { type Box, type SceneMark, tenth } from "../scene.ts"
-import { joinArea, joinPath } from "./bridge.ts"
-import type { PanelLayout, ScalesLayout } from "./layout.ts"
-import { STUB, STUB_ACROSS } from "./panels.ts"
+import { type Box, type SceneMark, tenth, textWidth } from "../scene.ts"
+import { falls, joinArea, joinPath } from "./bridge.ts"
+import { labelled, waysOf } from "./bridge-marks.ts"
+import { type PanelLayout, type ScalesLayout, TICK_SIZE } from "./layout.ts"
+import { label, rect } from "./pieces.ts"
 import { onSubjectScale } from "./preview.ts"
-import type { Pointing } from "./reading.ts"
+import { type Pointing, readingOf } from "./reading.ts"
 
 export function pointerMarks(
   block: ScalesBlock,
@@ -17,16 +18,24 @@ export function pointerMarks(
 ): readonly SceneMark[] {
   if (pointing === null) return []
   const moved = block.aligned || of === layout.subject ? (eta: number): number => eta : onSubjectScale(layout.subject, of)
+  const reading = readingOf(block, layout, of, pointing)
+  const texts = reading === null ? null : ([reading.mu, reading.eta] as const)
   if (pointing.type === "bridge") {
     const mu = of.bridge.mu[pointing.at]
     const eta = of.bridge.eta[pointing.at]
-    return mu === undefined || eta === undefined ? [] : litJoin(layout, mu, moved(eta))
+    return mu === undefined || eta === undefined || texts === null ? [] : litJoin(layout, mu, moved(eta), texts)
   }
   const curve = of.curves[pointing.curve]
-  return curve === undefined ? [] : curvePointer(layout, curve, pointing.at, moved)
+  return curve === undefined || texts === null ? [] : curvePointer(layout, curve, pointing.at, moved, texts)
 }
 
-function curvePointer(layout: ScalesLayout, curve: ScalesCurve, i: number, moved: (eta: number) => number): readonly SceneMark[] {
+function curvePointer(
+  layout: ScalesLayout,
+  curve: ScalesCurve,
+  i: number,
+  moved: (eta: number) => number,
+  texts: readonly [string, string],
+): readonly SceneMark[] {
   const { mean, predictor } = layout
   const x = curve.x[i] as number
   const mu = curve.mu[i] as number
@@ -45,7 +54,7 @@ function curvePointer(layout: ScalesLayout, curve: ScalesCurve, i: number, moved
   const muShown = inside(mean.frame, meanY)
   const etaShown = inside(predictor.frame, etaY)
   marks.push(...litArea(layout, muEnds, etaEnds))
-  if (muShown && etaShown) marks.push(...litJoin(layout, mu, eta))
+  if (muShown && etaShown) marks.push(...litJoin(layout, mu, eta, texts))
   if (muShown) {
     const from = tenth(mean.x.place(x))
     const to = tenth(beside ? mean.frame.right : mean.frame.left)
@@ -85,37 +94,63 @@ function clamped(place: number, low: number, high: number, infinityIsLow: boolea
   return infinityIsLow ? low : high
 }
 
-const ways = (layout: ScalesLayout) => {
-  const beside = layout.arrangement === "beside"
-  const { frame } = layout.bridge
-  return {
-    runs: beside ? ("down" as const) : ("across" as const),
-    near: beside ? frame.left : frame.top,
-    far: beside ? frame.right : frame.bottom,
-    stub: beside ? STUB : STUB_ACROSS,
-    low: beside ? frame.top : frame.left,
-    high: beside ? frame.bottom : frame.right,
-  }
-}
-
-function litJoin(layout: ScalesLayout, mu: number, eta: number): readonly SceneMark[] {
-  const { runs, near, far, stub, low, high } = ways(layout)
+/** The line of the bridge that is lit, from edge to edge, with its two numbers over a clear ground. */
+function litJoin(layout: ScalesLayout, mu: number, eta: number, texts: readonly [string, string]): readonly SceneMark[] {
+  const { runs, near, far, start, end, low, high } = waysOf(layout)
   const from = layout.bridge.mu.place(mu)
   const to = layout.bridge.eta.place(eta)
   if (!(from >= low - 0.5 && from <= high + 0.5 && to >= low - 0.5 && to <= high + 0.5)) return []
-  return [{ type: "path", key: "lit-join", role: "lit", d: joinPath(runs, near, far, from, to, stub) }]
+  const marks: SceneMark[] = [{ type: "path", key: "lit-join", role: "lit", d: joinPath(runs, start, end, from, to) }]
+  // Numbers that the lit ones would touch make way, each as a whole.
+  const others = labelled(layout)
+  const places = [
+    [near, start, from, texts[0], "start"],
+    [far, end, to, texts[1], "end"],
+  ] as const
+  for (const [edge, inner, along, text, side] of places) {
+    const key = `lit-${side}`
+    const half = runs === "down" ? 8 : textWidth(text, TICK_SIZE) / 2 + 4
+    const [a, b] = [Math.min(edge, inner) + (side === "start" ? 1 : 3), Math.max(edge, inner) - (side === "start" ? 3 : 1)]
+    const box =
+      runs === "down"
+        ? { left: a, right: b, top: along - half, bottom: along + half }
+        : { left: along - half, right: along + half, top: a, bottom: b }
+    marks.push(rect(`${key}-plate`, "plate", box))
+    for (const line of others) {
+      const [there, its] = side === "start" ? [line.from, line.muText] : [line.to, line.etaText]
+      const reach = runs === "down" ? 7 : textWidth(its, TICK_SIZE) / 2 + 1
+      if (Math.abs(there - along) > half + reach) continue
+      const cover =
+        runs === "down" ? { ...box, top: there - reach, bottom: there + reach } : { ...box, left: there - reach, right: there + reach }
+      marks.push(rect(`${key}-plate-${its}`, "plate", cover))
+    }
+    marks.push({
+      type: "circle",
+      key: `${key}-knot`,
+      role: "lit-knot",
+      x: tenth(runs === "down" ? inner : along),
+      y: tenth(runs === "down" ? along : inner),
+      r: 2.5,
+    })
+    const lower = TICK_SIZE * 0.36
+    marks.push(
+      runs === "down"
+        ? label(key, "lit-text", edge + (side === "start" ? 7 : -7), along + lower, TICK_SIZE, side, text)
+        : label(key, "lit-text", along, side === "start" ? edge + 16 : edge - 8, TICK_SIZE, "middle", text),
+    )
+  }
+  return marks
 }
 
 /** The interval of the mean becoming the interval of the linear predictor. */
 function litArea(layout: ScalesLayout, muEnds: readonly [number, number], etaEnds: readonly [number, number]): readonly SceneMark[] {
   if ([...muEnds, ...etaEnds].some(Number.isNaN)) return []
-  const { runs, near, far, stub, low, high } = ways(layout)
-  const within = (place: number, infinityIsLow: boolean): number => clamped(place, low, high, infinityIsLow)
-  const beside = runs === "down"
+  const ways = waysOf(layout)
+  const beside = ways.runs === "down"
+  const within = (place: number, infinityIsLow: boolean): number => clamped(place, ways.low, ways.high, infinityIsLow)
   const from = muEnds.map((mu) => within(layout.bridge.mu.place(mu), mu > 0 === beside)) as [number, number]
   // The band of μ is in order of μ; where the link falls its ends meet those of η the other way round.
-  const rises = (layout.subject.bridge.eta.at(-1) ?? 0) >= (layout.subject.bridge.eta[0] ?? 0)
-  const pair = rises ? [Math.min(...etaEnds), Math.max(...etaEnds)] : [Math.max(...etaEnds), Math.min(...etaEnds)]
+  const pair = falls(layout.subject.bridge) ? [Math.max(...etaEnds), Math.min(...etaEnds)] : [Math.min(...etaEnds), Math.max(...etaEnds)]
   const to = pair.map((eta) => within(layout.bridge.eta.place(eta), eta > 0 === beside)) as [number, number]
-  return [{ type: "path", key: "lit-area", role: "lit-band", d: joinArea(runs, near, far, from, to, stub) }]
+  return [{ type: "path", key: "lit-area", role: "lit-band", d: joinArea(ways, from, to) }]
 }

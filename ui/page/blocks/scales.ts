@@ -52,6 +52,9 @@ export class ScalesElement extends LitElement {
     linkTokens,
     css`
       ${sceneStyles}
+      :host {
+        container-type: inline-size;
+      }
       figure {
         margin: 0;
       }
@@ -162,9 +165,13 @@ export class ScalesElement extends LitElement {
           break-inside: avoid;
         }
       }
-      @media (max-width: 480px) {
+      @container (max-width: 480px) {
         .reading {
-          min-height: 46px;
+          min-height: 66px;
+        }
+        .strip {
+          display: grid;
+          grid-template-columns: 1fr 1fr;
         }
       }
     `,

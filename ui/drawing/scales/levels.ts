@@ -1,0 +1,122 @@
+// A category across: at each level the observed mean, the fitted mean with its interval, and short strokes for the other candidates, side
+// by side so that none hides another. There are no lines, since nothing lies between levels.
+
+import type { ScalesBlock, ScalesCandidate, ScalesCurve } from "../../../cells/block.ts"
+import { shapeOf, shapePath } from "../curve.ts"
+import { linkRole } from "../link-ink.ts"
+import { type SceneMark, tenth } from "../scene.ts"
+import { levelIndex, ordered, placeOrEdge, pointMarks, stay, type Values, valuesOf, type Which } from "./curves.ts"
+import type { PanelLayout, ScalesLayout } from "./layout.ts"
+import { path } from "./pieces.ts"
+import { onSubjectScale } from "./preview.ts"
+
+export function levelMarks(block: ScalesBlock, layout: ScalesLayout, ghost: ScalesCandidate | null, which: Which): readonly SceneMark[] {
+  const { subject } = layout
+  const panel = layout[which]
+  const band = panel.x.place(1) - panel.x.place(0)
+  const groups = Math.max(1, subject.curves.length)
+  const room = (band * 0.86) / groups
+  const others =
+    (which === "mean" || block.aligned) && block.split === null
+      ? block.candidates.filter((other) => other !== subject && other !== ghost)
+      : []
+  const step = Math.min(13, room / (3 + others.length))
+  const marks: SceneMark[] = []
+  subject.curves.forEach((curve, g) => {
+    const centre = (g - (groups - 1) / 2) * room
+    const level = levelIndex(block, curve, g)
+    marks.push(
+      ...intervalMarks(
+        subject.link,
+        curve,
+        valuesOf(curve, which, stay),
+        panel,
+        `${linkRole(subject.link)} solid level-${level}`,
+        centre + step / 2,
+        true,
+      ),
+    )
+    others.forEach((other, k) => {
+      const same = other.curves[g]
+      if (same !== undefined) {
+        marks.push(
+          ...intervalMarks(
+            other.link,
+            same,
+            valuesOf(same, which, stay),
+            panel,
+            `${linkRole(other.link)} solid others`,
+            centre + step * (1.4 + k),
+            false,
+          ),
+        )
+      }
+    })
+    if (ghost !== null) {
+      const same = ghost.curves[g]
+      const moved = block.aligned ? stay : onSubjectScale(subject, ghost)
+      if (same !== undefined) {
+        marks.push(
+          ...intervalMarks(
+            `ghost-${ghost.link}`,
+            same,
+            ordered(valuesOf(same, which, moved)),
+            panel,
+            `${linkRole(ghost.link)} ghost`,
+            centre + step * (1.4 + others.length),
+            true,
+          ),
+        )
+      }
+    }
+    const points = subject.points[g]
+    if (points === undefined) return
+    const [values, size, largest] =
+      which === "mean" ? ([points.mean, points.rows, 5] as const) : ([points.working, points.weight, 6] as const)
+    marks.push(
+      ...pointMarks(
+        `points-${g}`,
+        points,
+        values,
+        size,
+        panel,
+        shapeOf(block.split === null ? 0 : level),
+        "",
+        largest,
+        centre - step * 0.75,
+      ),
+    )
+  })
+  return marks
+}
+
+function intervalMarks(
+  key: string,
+  curve: ScalesCurve,
+  values: Values,
+  panel: PanelLayout,
+  role: string,
+  shift: number,
+  interval: boolean,
+): readonly SceneMark[] {
+  const marks: SceneMark[] = []
+  const { top, bottom } = panel.frame
+  const within = (y: number): number => Math.min(bottom, Math.max(top, y))
+  for (let i = 0; i < curve.x.length; i += 1) {
+    const y = panel.y.place(values.middle[i] as number)
+    if (!Number.isFinite(y) || y < top || y > bottom) continue
+    const x = panel.x.place(curve.x[i] as number) + shift
+    const id = `${key}-${curve.level ?? ""}-${i}`
+    if (interval) {
+      const low = placeOrEdge(panel, values.low[i] as number)
+      const high = placeOrEdge(panel, values.high[i] as number)
+      if (Number.isFinite(low) && Number.isFinite(high)) {
+        // An end past the frame has no cap: the bar goes on.
+        const caps = [low, high].map((end) => (end === within(end) ? `M${tenth(x - 3)} ${tenth(end)}h6` : "")).join("")
+        marks.push(...path(`bar-${id}`, `bar ${role}`, `M${tenth(x)} ${tenth(within(low))}V${tenth(within(high))}${caps}`))
+      }
+      marks.push(...path(`fitted-${id}`, `fitted solid ${role}`, shapePath("diamond", x, y, 3.6)))
+    } else marks.push(...path(`fitted-${id}`, `bar ${role}`, `M${tenth(x - 4)} ${tenth(y)}h8`))
+  }
+  return marks
+}
