@@ -65,22 +65,28 @@ export const mostInflation = 1e4
 /** Most numbers that are written out for an orthogonal basis. */
 const mostWritten = 6e6
 
-/** A basis for a design, and the columns left out because earlier ones make them. */
-export function basisOf(design: Design): { readonly basis: Basis; readonly dependences: readonly Dependence[] } {
+/**
+ * A basis for a design, and the columns left out because earlier ones make them.
+ * @param order  in which columns come first, where not that of the terms
+ */
+export function basisOf(
+  design: Design,
+  order: readonly number[] | null = null,
+): { readonly basis: Basis; readonly dependences: readonly Dependence[] } {
   const p = design.recipe.columns.length
   const all = new Uint8Array(p).fill(1)
   const first = scaledBasis(design, all)
   if (first && inflation(first) < mostInflation) return { basis: first, dependences: [] }
   if (design.rows * p <= mostWritten) {
     const written = denseColumns(design)
-    const { kept, dependences, change, orthonormal } = orthogonalised(written, null)
+    const { kept, dependences, change } = orthogonalised(written, null, order)
     if (dependences.length > 0) {
       const keep = new Uint8Array(p)
       for (const column of kept) keep[column] = 1
       const rest = scaledBasis(design, keep)
       if (rest && inflation(rest) < mostInflation) return { basis: rest, dependences }
     }
-    return { basis: orthogonalBasis(written, kept, change, orthonormal), dependences }
+    return { basis: orthogonalBasis(written, kept, change), dependences }
   }
   // Too large to be written out: dependences by the normal matrix, which can tell parts down to about 1e-7 of a length.
   const dependences = dependencesByNormalMatrix(design)
@@ -96,8 +102,8 @@ export function reweightedBasis(design: Design, basis: Basis, weight: Float64Arr
   if (design.rows * basis.size > mostWritten) return null
   const columns = [...basis.change.column].sort((a, b) => a - b)
   const written = basis.written ?? denseColumns(design)
-  const { kept, change, orthonormal } = orthogonalised(written, weight, columns)
-  return kept.length === columns.length ? orthogonalBasis(written, kept, change, orthonormal) : null
+  const { kept, change } = orthogonalised(written, weight, columns)
+  return kept.length === columns.length ? orthogonalBasis(written, kept, change) : null
 }
 
 /** The largest variance inflation of the columns, from the normal matrix without weights; Infinity where it is not positive definite. */
@@ -264,8 +270,6 @@ type Orthogonalised = {
   readonly kept: number[]
   readonly dependences: Dependence[]
   readonly change: Change & { type: "orthogonal" }
-  /** Columns of Q (of √W·X where there are weights). */
-  readonly orthonormal: readonly Wide[]
 }
 
 /** Modified Gram-Schmidt in 32 digits over the columns in order, leaving out those whose part beyond the earlier ones is nothing. */
@@ -323,7 +327,7 @@ function orthogonalised(
       low[i * p + j] = entries[2 * i + 1] as number
     }
   })
-  return { kept, dependences, change: { type: "orthogonal", column: Int32Array.from(kept), high, low }, orthonormal: q }
+  return { kept, dependences, change: { type: "orthogonal", column: Int32Array.from(kept), high, low } }
 }
 
 /** A dependent column in terms of the earlier ones: R·c = entries, solved from the last row up; tiny parts are left out. */
@@ -353,12 +357,7 @@ function combination(
 /** A whole number where it is one but for rounding. */
 const tidy = (x: number): number => (Math.abs(x - Math.round(x)) < 1e-9 ? Math.round(x) : x)
 
-function orthogonalBasis(
-  written: readonly Float64Array[],
-  kept: readonly number[],
-  change: Change & { type: "orthogonal" },
-  orthonormal: readonly Wide[],
-): Basis {
+function orthogonalBasis(written: readonly Float64Array[], kept: readonly number[], change: Change & { type: "orthogonal" }): Basis {
   const n = written[0]?.length ?? 0
   const p = kept.length
   // X = Q·R solved for Q, a column at a time and in 32 digits: under weights the columns at hand are those of √W·X.

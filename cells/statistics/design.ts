@@ -132,6 +132,43 @@ export function denseColumns(design: Design): Float64Array[] {
   return columns
 }
 
+/** The same columns at some of the rows. */
+export function designAtRows(design: Design, rows: Int32Array): Design {
+  const taken = new Map<Float64Array | Int32Array, Float64Array | Int32Array>()
+  const take = <A extends Float64Array | Int32Array>(values: A): A => {
+    const known = taken.get(values)
+    if (known) return known as A
+    const some = (
+      values instanceof Float64Array ? Float64Array.from(rows, (i) => values[i] as number) : rows.map((i) => values[i] as number)
+    ) as A
+    taken.set(values, some)
+    return some
+  }
+  return {
+    ...design,
+    rows: rows.length,
+    plain: design.plain.map(({ column, values }) => ({ column, values: take(values) })),
+    blocks: design.blocks.map((block) => ({
+      ...block,
+      cells: take(block.cells),
+      multiplier: block.multiplier === null ? null : take(block.multiplier),
+    })),
+  }
+}
+
+/** The largest size of each column. */
+export function columnSizes(design: Design): Float64Array {
+  const sizes = new Float64Array(design.recipe.columns.length)
+  if (design.constant) sizes[0] = 1
+  const largest = (values: Float64Array): number => values.reduce((most, x) => Math.max(most, Math.abs(x)), 0)
+  for (const { column, values } of design.plain) sizes[column] = largest(values)
+  for (const block of design.blocks) {
+    const size = block.multiplier === null ? 1 : largest(block.multiplier)
+    for (const column of block.columns) sizes[column] = size
+  }
+  return sizes
+}
+
 /**
  * Which rows have every piece of the predictor: 1 where present. A missing number is NaN, a missing level −1; a piece that is undefined
  * there (the log of 0, the root of −1) counts as missing.

@@ -3,16 +3,18 @@
 
 import { basisOf, type Dependence, mostInflation, reweightedBasis } from "./basis.ts"
 import { basisCoefficients, designCoefficients } from "./change.ts"
+import { isConcave } from "./concavity.ts"
 import { columnsNeeded, type Design, designOf, mostColumns, recipeOf } from "./design.ts"
 import { dispersionRule } from "./dispersion.ts"
 import { Factor } from "./gram.ts"
 import { findings } from "./inference.ts"
+import { type Climb, limitOf } from "./limits.ts"
 import { nullModel } from "./null-model.ts"
 import type { Problem } from "./problem.ts"
 import type { Recipe } from "./recipe.ts"
 import { type Responses, responsesOf } from "./rows.ts"
 import { Equations, type Maximum, maximum, Pace, type Point, polished } from "./scoring.ts"
-import { startingPoint } from "./start.ts"
+import { linkedLeastSquares, startingPoint } from "./start.ts"
 
 export type { Recipe } from "./recipe.ts"
 
@@ -37,7 +39,22 @@ export type Certificate = {
   readonly scaledScore: number
   readonly condition: number
   /** In words or numbers, what anyone can recheck; null where there is nothing to show. */
-  readonly evidence: DependentTerms | null
+  readonly evidence: Evidence | null
+}
+export type Evidence = DependentTerms & {
+  /** Directions along which coefficients run to infinity: η changes by these times, and no likelihood is lost. */
+  readonly directions: readonly (readonly { readonly column: string; readonly times: number }[])[]
+  /** Rows of the problem whose mean is at the end of its range, each with its multiplier λ ≥ 0. */
+  readonly edge: readonly { readonly row: number; readonly multiplier: number }[]
+  /** Deviances of other maxima that other starts led to. */
+  readonly maxima: readonly number[]
+  /** Where a search that did not arrive was left. */
+  readonly stopped: {
+    readonly because: "arrived" | "stuck" | "singular" | "slow"
+    readonly steps: number
+    readonly deviance: number
+    readonly decrement: number
+  } | null
 }
 /** Columns left out because earlier ones already say what they say: each with the columns and factors that make it. */
 export type DependentTerms = {
@@ -73,6 +90,8 @@ export type Fit = {
   readonly recipe: Recipe
   /** What `predicted` needs beside the coefficients. */
   readonly frame: Frame
+  /** Directions along which coefficients run to infinity, over all coefficients; mostly none. */
+  readonly recession: readonly Float64Array[]
 }
 
 /** The basis a fit was made in, so that standard errors elsewhere lose nothing to the distance from the origin. */
@@ -120,15 +139,66 @@ export async function fit(problem: Problem, pause: () => Promise<void>, near: Fi
   if (pace.due(problem.rows * (50 + basis.plain.length * basis.plain.length))) await pace.rest()
   const phi = provisionalDispersion(problem, responses)
   const none = await nullModel(responses, pace, phi(1))
-  let equations = new Equations(basis, responses, pace)
+  const equations = new Equations(basis, responses, pace)
   const columns = design.recipe.columns.length
   const constant = design.constant ? 0 : -1
   const warm = near ? Float64Array.from(near.coefficients, ({ beta }) => beta ?? 0) : null
   const start = await startingPoint(equations, constant, columns, none, warm)
   if (!start) return { ok: false, why: "no_start", detail: "no coefficients were found under which every mean is possible" }
-  let found = await maximum(equations, start, phi(basis.size))
-  ;({ equations, found } = await sharpened(design, equations, found, phi(basis.size), columns))
-  return { ok: true, fit: await findings({ problem, design, responses, equations, found, dependences: named(dependences, design), none }) }
+  const measure = phi(basis.size)
+  let climb: Climb = { problem, design, responses, equations, found: await maximum(equations, start, measure) }
+  let limit = await limitOf(climb, measure)
+  const others: number[] = []
+  if (!isConcave(problem.family, problem.link) && !near && limit.type !== "infinite") {
+    const better = await fromOtherStarts(climb, measure, others)
+    if (better) {
+      climb = { ...climb, found: better }
+      limit = await limitOf(climb, measure)
+    }
+  }
+  if (limit.type === "inside") climb = await sharpened(climb, measure)
+  return { ok: true, fit: await findings({ climb, limit, dependences: named(dependences, design), none, others }) }
+}
+
+/**
+ * Where ℓ is not known to be concave: the search again from a least-squares fit and from places some standard errors away. Returns a maximum
+ * that is better, and adds the deviances of those that are worse.
+ */
+async function fromOtherStarts({ equations, found }: Climb, phi: (point: Point) => number, others: number[]): Promise<Maximum | null> {
+  const { point } = found
+  await equations.fill(point, "expected")
+  const errors = Factor.of(point.gram)?.inverse()
+  const p = equations.basis.size
+  const starts: Float64Array[] = []
+  const squares = linkedLeastSquares(equations)
+  if (squares) starts.push(squares)
+  for (let k = 0; k < 4 && errors; k++) {
+    const spread = Math.sqrt(phi(point)) * (4 + k)
+    starts.push(point.gamma.map((g, j) => g + ((k >> (j % 2)) % 2 === 0 ? 1 : -1) * spread * Math.sqrt(errors[j * p + j] as number)))
+  }
+  let best: Maximum = found
+  for (const start of starts) {
+    const begin = equations.point()
+    let possible = false
+    for (let halving = 0; halving < 5 && !possible; halving++) {
+      const share = 1 / (1 << halving)
+      start.forEach((g, j) => {
+        begin.gamma[j] = (point.gamma[j] as number) + share * (g - (point.gamma[j] as number))
+      })
+      possible = await equations.fill(begin, "expected")
+    }
+    if (!possible) continue
+    const again = await maximum(equations, begin, phi)
+    const gap = again.point.deviance - best.point.deviance
+    const noticeable = 1e-7 * phi(best.point) + 1e-10 * Math.abs(best.point.deviance)
+    if (gap < -noticeable) {
+      if (best.end === "arrived") others.push(best.point.deviance)
+      best = again
+    } else if (again.end === "arrived" && gap > noticeable && others.every((d) => Math.abs(d - again.point.deviance) > noticeable)) {
+      others.push(again.point.deviance)
+    }
+  }
+  return best === found ? null : best
 }
 
 /** φ for stopping rules: the number said, or Pearson's X² over what is left, never taken as more than a first idea. */
@@ -142,27 +212,20 @@ function provisionalDispersion(problem: Problem, responses: Responses): (rank: n
 }
 
 /** The same maximum in a basis orthonormal under its own weights, where the weights have made the columns nearly dependent. */
-async function sharpened(
-  design: Design,
-  equations: Equations,
-  found: Maximum,
-  phi: (point: Point) => number,
-  columns: number,
-): Promise<{ readonly equations: Equations; readonly found: Maximum }> {
-  if (found.end !== "arrived") return { equations, found }
+async function sharpened(climb: Climb, phi: (point: Point) => number): Promise<Climb> {
+  const { design, equations, found } = climb
   await equations.fill(found.point, "expected", true)
   const inflation = Factor.of(found.point.gram)?.inflation() ?? Number.POSITIVE_INFINITY
-  if (inflation < mostInflation) return { equations, found }
+  if (inflation < mostInflation) return climb
   const basis = reweightedBasis(design, equations.basis, found.point.state.weight)
-  if (!basis) return { equations, found }
+  if (!basis) return climb
   const next = new Equations(basis, equations.responses, equations.pace)
   const point = next.point()
-  point.gamma.set(basisCoefficients(basis, designCoefficients(equations.basis, columns, found.point.gamma, found.point.gammaLow)))
-  if (!(await next.fill(point, "expected", true))) return { equations, found }
+  const beta = designCoefficients(equations.basis, design.recipe.columns.length, found.point.gamma, found.point.gammaLow)
+  point.gamma.set(basisCoefficients(basis, beta))
+  if (!(await next.fill(point, "expected", true))) return climb
   const again = await polished(next, point, next.point(), phi, found.iterations)
-  if (again.end !== "arrived") return { equations, found }
-  await next.fill(again.point, "expected", true)
-  return { equations: next, found: again }
+  return again.end === "arrived" ? { ...climb, equations: next, found: again } : climb
 }
 
 const named = (dependences: readonly Dependence[], design: Design): DependentTerms["dependent"] =>

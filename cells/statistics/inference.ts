@@ -1,30 +1,29 @@
 // From a maximum to findings: dispersion, errors, tests, criteria, certificate. Every definition is that of the conventions (README.md);
 // nothing here climbs.
 
-import { type CertificateBasis, certified } from "./certificate.ts"
 import { changeMatrix, designCoefficients, designCovariance, designScore } from "./change.ts"
-import type { Design } from "./design.ts"
+import { isConcave } from "./concavity.ts"
 import { dispersionByLikelihood, dispersionRule } from "./dispersion.ts"
 import { log } from "./elementary.ts"
-import type { Coefficient, DependentTerms, Fit, Frame } from "./fit.ts"
+import type { Certificate, Coefficient, DependentTerms, Evidence, Fit, Frame } from "./fit.ts"
 import { cholesky, Factor, type Gram } from "./gram.ts"
+import type { Climb, Limit } from "./limits.ts"
 import type { NullModel } from "./null-model.ts"
 import type { Problem } from "./problem.ts"
 import type { Responses } from "./rows.ts"
 import { directionScore, spansConstant } from "./score-direction.ts"
-import type { Equations, Maximum, Point } from "./scoring.ts"
+import type { Equations, Point } from "./scoring.ts"
 import { singularValues } from "./singular-values.ts"
 import { chiSquareUpperTail, fUpperTail, normalQuantile, normalUpperTail, tUpperQuantile, tUpperTail } from "./special.ts"
 
 export type Findings = {
-  readonly problem: Problem
-  readonly design: Design
-  readonly responses: Responses
-  readonly equations: Equations
-  /** Its point is filled with expected weights where the search arrived. */
-  readonly found: Maximum
+  /** The search over all rows. */
+  readonly climb: Climb
+  readonly limit: Limit
   readonly dependences: DependentTerms["dependent"]
   readonly none: NullModel | null
+  /** Deviances of other maxima that other starts led to. */
+  readonly others: readonly number[]
 }
 
 /** Below this index the data cannot tell a direction from the columns. */
@@ -34,76 +33,43 @@ const leastIndex = 1e-9
 const perfection = 1e-13
 
 export async function findings(given: Findings): Promise<Fit> {
-  const { problem, design, responses, equations, found, none } = given
+  const { climb, limit, none, dependences } = given
+  const { problem, design, responses } = climb
   const { family, link } = responses
-  const { basis } = equations
-  const { point } = found
-  const columns = design.recipe.columns.length
-  const arrived = found.end === "arrived"
-  if (!arrived) await equations.fill(point, "expected")
-  const rank = basis.size
+  const rank = climb.equations.basis.size
   const n = rowsCounted(problem)
   const df = n - rank
   const rule = dispersionRule(problem)
-  const perfect = !family.discrete && isPerfect(responses, point)
-  const deviance = perfect ? 0 : point.deviance
-  const pearson = perfect ? 0 : point.pearson
+
+  // Likelihood and errors come from the rows whose means stay: all of them, unless coefficients run to infinity.
+  const rest = limit.type === "infinite" ? limit.rest : climb
+  const point = limit.type === "edge" ? limit.edge.point : (rest?.found.point ?? null)
+  if (rest && point && limit.type !== "edge") await rest.equations.fill(point, "expected", true)
+  const means = wholeMeans(given, point)
+  const moved = limit.type === "infinite" ? movedRows(climb, limit.rows, means.mu) : { deviance: 0, pearson: 0 }
+  const perfect = !family.discrete && isPerfect(responses, means.mu)
+  const deviance = perfect ? 0 : (point?.deviance ?? 0) + moved.deviance
+  const pearson = perfect ? 0 : (point?.pearson ?? 0) + moved.pearson
 
   const ml = dispersionByLikelihood(problem, deviance, n)
-  const phi =
-    rule.given ??
-    (problem.dispersion === "likelihood" ? ml : df > 0 ? (problem.dispersion === "deviance" ? deviance : pearson) / df : perfect ? 0 : null)
-  const errorsKnown = arrived && phi !== null
+  const estimate = problem.dispersion === "likelihood" ? ml : df > 0 ? (problem.dispersion === "deviance" ? deviance : pearson) / df : null
+  const phi = rule.given ?? estimate
 
-  const factor = Factor.of(point.gram)
   const clusters = problem.standardErrors === "sandwich" && problem.cluster ? new Set(problem.cluster).size : null
-  const covariance = errorsKnown && factor ? await covarianceOf(given, factor, phi, n, clusters) : null
   const lawDf = clusters !== null ? clusters - 1 : rule.estimated ? df : null
-  const constant = design.constant || spansConstant(equations)
-  const certificate: CertificateBasis = await certified(given, factor, arrived)
-  const interior = certificate.class === "interior" || certificate.class === "unidentified"
+  const constant = design.constant || spansConstant(climb.equations)
+  const certificate = classOf(given)
+  const factor = rest && point && limit.type !== "edge" ? Factor.of(point.gram) : null
+  const hasErrors = (limit.type === "inside" || limit.type === "infinite") && phi !== null && factor !== null && rest !== null
+  const covariance = hasErrors ? await covarianceOf(rest, factor, phi, n, clusters) : null
+  const { coefficients, lower } = coefficientsOf(given, rest, point, covariance, lawDf)
 
-  const beta = designCoefficients(basis, columns, point.gamma, point.gammaLow)
-  const inside = new Uint8Array(columns)
-  for (const at of basis.change.column) inside[at] = 1
-  const lower = covariance ? designCovariance(basis, columns, covariance) : new Float64Array((columns * (columns + 1)) / 2).fill(Number.NaN)
-  const critical = criticalOf(lawDf, problem.confidence)
-  const coefficients = design.recipe.columns.map((of, j): Coefficient => {
-    const term = design.termOf[j] as number
-    if (inside[j] !== 1) return { of, term, beta: null, toward: null, standardError: null, ratio: null, p: null, low: null, high: null }
-    const b = beta[j] as number
-    const variance = lower[(j * (j + 1)) / 2 + j] as number
-    const error = variance >= 0 ? Math.sqrt(variance) : null
-    const ratio = error !== null && error > 0 ? b / error : null
-    return {
-      of,
-      term,
-      beta: b,
-      toward: null,
-      standardError: error,
-      ratio,
-      p: ratio === null ? null : twoSided(ratio, lawDf),
-      low: error === null || critical === null ? null : b - critical * error,
-      high: error === null || critical === null ? null : b + critical * error,
-    }
-  })
-
-  const logLikelihood = perfect ? null : logLikelihoodOf(problem, responses, point, rule.given ?? ml)
+  const likely = perfect && rule.given === null ? null : point ? logLikelihoodOf(rest as Climb, point, rule.given ?? ml) : 0
+  const logLikelihood =
+    likely === null || limit.type !== "infinite" ? likely : likely + movedLikelihood(climb, limit.rows, means.mu, rule.given ?? ml)
   const counted = rank + (family.discrete || rule.given !== null ? 0 : 1)
-  const criteria = logLikelihood !== null && !(family.discrete && phi !== 1)
-  const scaled = scaledScore(equations, point, phi === null || phi === 0 ? 1 : phi)
-  const range = meanRange(point.state.mu)
-
-  let goodness: Fit["goodnessOfLink"] = null
-  if (interior && certificate.class === "interior" && factor && phi !== null && phi > 0) {
-    const v = point.state.eta.map((eta) => eta * eta)
-    const sandwich = problem.standardErrors === "sandwich" ? { repeat: problem.repeat, cluster: problem.cluster } : null
-    const score = directionScore(equations, point, factor, v, phi, constant, sandwich)
-    if (score.index >= leastIndex && Number.isFinite(score.statistic)) {
-      const p = rule.estimated && !sandwich ? fUpperTail(score.statistic, 1, df) : chiSquareUpperTail(score.statistic, 1)
-      goodness = { statistic: score.statistic, df: 1, p }
-    }
-  }
+  const criteria = logLikelihood !== null && limit.type !== "gave_up" && !(family.discrete && phi !== 1)
+  const measured = rest && point ? rest.equations : null
 
   return {
     n,
@@ -119,28 +85,168 @@ export async function findings(given: Findings): Promise<Fit> {
     aic: criteria ? 2 * counted - 2 * logLikelihood : null,
     bic: criteria ? log(trialsCounted(problem)) * counted - 2 * logLikelihood : null,
     pearson,
-    fitTest: fitTests(problem, rule.given, deviance, pearson, df),
+    fitTest: limit.type === "gave_up" ? [] : fitTests(problem, rule.given, deviance, pearson, df),
     dispersion: { value: phi, by: problem.dispersion, estimated: rule.estimated },
     certificate: {
-      class: certificate.class,
-      global: certificate.global,
-      iterations: found.iterations,
-      scaledScore: scaled,
-      condition: conditionOf(equations, point.gram),
-      evidence: given.dependences.length > 0 ? { dependent: given.dependences } : null,
+      class: certificate,
+      global: (limit.type === "inside" || limit.type === "edge" || limit.type === "infinite") && isConcave(problem.family, problem.link),
+      iterations: climb.found.iterations + (limit.type === "infinite" ? (limit.rest?.found.iterations ?? 0) : 0),
+      scaledScore: measured && point ? scaledScore(measured, point, phi === null || phi === 0 ? 1 : phi) : 0,
+      condition: measured && point && limit.type !== "edge" ? conditionOf(measured, point.gram) : Number.NaN,
+      evidence: evidenceOf(given, dependences),
     },
-    goodnessOfLink: goodness,
+    goodnessOfLink: certificate === "interior" && factor && phi !== null && phi > 0 ? goodnessOf(climb, factor, phi, constant, df) : null,
     meanRange: {
       possible: [Math.max(link.range.low, family.range.low), Math.min(link.range.high, family.range.high)],
-      fitted: range,
+      fitted: meanRange(means.mu),
     },
     clusters,
     lawDf,
-    eta: point.state.eta.slice(),
-    mu: point.state.mu.slice(),
+    eta: means.eta,
+    mu: means.mu,
     recipe: design.recipe,
-    frame: frameOf(equations, point, covariance),
+    frame: rest && point ? frameOf(rest.equations, point, covariance) : emptyFrame,
+    recession: limit.type === "infinite" ? limit.directions : [],
   }
+}
+
+function classOf({ limit, dependences, others }: Findings): Certificate["class"] {
+  if (limit.type === "gave_up") return "gave_up"
+  if (dependences.length > 0) return "unidentified"
+  if (limit.type === "infinite") return "infinite"
+  if (limit.type === "edge") return "boundary"
+  return others.length > 0 ? "several_maxima" : "interior"
+}
+
+/** Everything that anyone can recheck, whichever class it is of. */
+function evidenceOf({ climb, limit, others }: Findings, dependent: DependentTerms["dependent"]): Evidence | null {
+  const { found, design } = climb
+  const directions =
+    limit.type === "infinite"
+      ? limit.directions.map((direction) =>
+          design.recipe.columns.flatMap((column, j) => (direction[j] === 0 ? [] : [{ column, times: direction[j] as number }])),
+        )
+      : []
+  const edge = limit.type === "edge" ? limit.edge.active : []
+  const stopped =
+    limit.type === "gave_up"
+      ? { because: found.end, steps: found.iterations, deviance: found.point.deviance, decrement: found.decrement }
+      : null
+  if (dependent.length + directions.length + edge.length + others.length === 0 && stopped === null) return null
+  return { dependent, directions, edge, maxima: others, stopped }
+}
+
+/** η and μ of all rows: those that move are at the end of their range. */
+function wholeMeans({ climb, limit }: Findings, point: Point | null): { readonly eta: Float64Array; readonly mu: Float64Array } {
+  if (limit.type !== "infinite") return { eta: (point as Point).state.eta.slice(), mu: (point as Point).state.mu.slice() }
+  const { family, link } = climb.responses
+  const eta = new Float64Array(climb.problem.rows)
+  const mu = new Float64Array(climb.problem.rows)
+  limit.along.forEach((t, i) => {
+    eta[i] = t > 0 ? Number.POSITIVE_INFINITY : Number.NEGATIVE_INFINITY
+    mu[i] = t > 0 ? Math.min(family.range.high, link.range.high) : Math.max(family.range.low, link.range.low)
+  })
+  limit.rows.forEach((row, k) => {
+    eta[row] = (point as Point).state.eta[k] as number
+    mu[row] = (point as Point).state.mu[k] as number
+  })
+  return { eta, mu }
+}
+
+/** What the rows at an end of their range add to D and X²: nothing where they agree with it. */
+function movedRows(climb: Climb, stay: Int32Array, mu: Float64Array): { readonly deviance: number; readonly pearson: number } {
+  const { family, y, a, rows } = climb.responses
+  const staying = new Set(stay)
+  let [deviance, pearson] = [0, 0]
+  for (let i = 0; i < rows; i++) {
+    const own = a[i] as number
+    if (staying.has(i) || own === 0) continue
+    const m = mu[i] as number
+    const residual = (y[i] as number) - m
+    deviance += own * family.unitDeviance(y[i] as number, m, 1 - m)
+    if (residual !== 0) pearson += (own * residual * residual) / family.variance(m, 1 - m)
+  }
+  return { deviance, pearson }
+}
+
+/** The log-densities of the rows that moved: 0 for counts, which agree with the end. */
+function movedLikelihood(climb: Climb, stay: Int32Array, mu: Float64Array, phi: number): number {
+  const { family, y, rows } = climb.responses
+  if (family.discrete) return 0
+  const { repeat, precision, trials } = climb.problem
+  const staying = new Set(stay)
+  let sum = 0
+  for (let i = 0; i < rows; i++) {
+    if (staying.has(i)) continue
+    const m = mu[i] as number
+    const f = family.logDensity(
+      y[i] as number,
+      m,
+      1 - m,
+      trials ? (trials[i] as number) : 1,
+      phi / (precision ? (precision[i] as number) : 1),
+    )
+    sum += (repeat ? (repeat[i] as number) : 1) * f
+  }
+  return sum
+}
+
+function coefficientsOf(
+  { climb, limit }: Findings,
+  rest: Climb | null,
+  point: Point | null,
+  covariance: Float64Array | null,
+  lawDf: number | null,
+): { readonly coefficients: readonly Coefficient[]; readonly lower: Float64Array } {
+  const { design, problem } = climb
+  const columns = design.recipe.columns.length
+  const inside = new Uint8Array(columns)
+  const beta = rest && point ? designCoefficients(rest.equations.basis, columns, point.gamma, point.gammaLow) : new Float64Array(columns)
+  if (rest) for (const at of rest.equations.basis.change.column) inside[at] = 1
+  const sign = (j: number): number => (limit.type === "infinite" ? (limit.directions.find((direction) => direction[j] !== 0)?.[j] ?? 0) : 0)
+  const lower =
+    rest && covariance
+      ? designCovariance(rest.equations.basis, columns, covariance)
+      : new Float64Array((columns * (columns + 1)) / 2).fill(Number.NaN)
+  for (let i = 0; i < columns && limit.type === "infinite"; i++) {
+    for (let j = 0; j <= i; j++) if (sign(i) !== 0 || sign(j) !== 0) lower[(i * (i + 1)) / 2 + j] = Number.NaN
+  }
+  const critical = criticalOf(lawDf, problem.confidence)
+  const none = { beta: null, toward: null, standardError: null, ratio: null, p: null, low: null, high: null }
+  const coefficients = design.recipe.columns.map((of, j): Coefficient => {
+    const term = design.termOf[j] as number
+    if (sign(j) !== 0) return { ...none, of, term, toward: sign(j) > 0 ? "infinity" : "-infinity" }
+    if (inside[j] !== 1) return { ...none, of, term }
+    const b = beta[j] as number
+    const variance = lower[(j * (j + 1)) / 2 + j] as number
+    const error = variance >= 0 ? Math.sqrt(variance) : null
+    const ratio = error !== null && error > 0 ? b / error : null
+    const known = error !== null && critical !== null
+    return {
+      of,
+      term,
+      beta: b,
+      toward: null,
+      standardError: error,
+      ratio,
+      p: ratio === null ? null : twoSided(ratio, lawDf),
+      low: known ? b - critical * error : null,
+      high: known ? b + critical * error : null,
+    }
+  })
+  return { coefficients, lower }
+}
+
+/** The score of η²: does the model gain by the square of its own predictor? */
+function goodnessOf(climb: Climb, factor: Factor, phi: number, constant: boolean, df: number): Fit["goodnessOfLink"] {
+  const { problem, equations, found } = climb
+  const v = found.point.state.eta.map((eta) => eta * eta)
+  const sandwich = problem.standardErrors === "sandwich" ? { repeat: problem.repeat, cluster: problem.cluster } : null
+  const score = directionScore(equations, found.point, factor, v, phi, constant, sandwich)
+  if (!(score.index >= leastIndex) || !Number.isFinite(score.statistic)) return null
+  const { estimated } = dispersionRule(problem)
+  const p = estimated && !sandwich ? fUpperTail(score.statistic, 1, df) : chiSquareUpperTail(score.statistic, 1)
+  return { statistic: score.statistic, df: 1, p }
 }
 
 /** The point beyond which half of (1 − confidence) lies, on the law of a fit's Wald ratios: half-widths are this many errors. */
@@ -167,13 +273,14 @@ const trialsCounted = (problem: Problem): number => {
   return sum
 }
 
-function isPerfect({ y, a, rows }: Responses, { state: { mu } }: Point): boolean {
+/** Whether what is left of every row is rounding. Under the normal law rounding goes by the largest response, else by each. */
+function isPerfect({ family, y, a, rows }: Responses, mu: Float64Array): boolean {
+  let largest = 0
+  if (family.name === "normal") for (let i = 0; i < rows; i++) largest = Math.max(largest, Math.abs(y[i] as number))
   for (let i = 0; i < rows; i++) {
-    if (
-      (a[i] as number) > 0 &&
-      !(Math.abs((y[i] as number) - (mu[i] as number)) <= perfection * Math.max(Math.abs(y[i] as number), Math.abs(mu[i] as number)))
-    )
-      return false
+    if ((a[i] as number) === 0) continue
+    const size = Math.max(largest, Math.abs(y[i] as number))
+    if (!(Math.abs((y[i] as number) - (mu[i] as number)) <= perfection * size)) return false
   }
   return true
 }
@@ -190,14 +297,8 @@ const meanRange = (mu: Float64Array): readonly [number, number] => {
 // Errors ---------------------------------------------------------------------------------------------------------------------------------
 
 /** φ(X'WX)⁻¹, φ(X'JX)⁻¹ or the sandwich, in the basis and by rows; null where there are none. */
-async function covarianceOf(
-  given: Findings,
-  factor: Factor,
-  phi: number,
-  n: number,
-  clusters: number | null,
-): Promise<Float64Array | null> {
-  const { problem, equations, found, responses } = given
+async function covarianceOf(climb: Climb, factor: Factor, phi: number, n: number, clusters: number | null): Promise<Float64Array | null> {
+  const { problem, equations, found, responses } = climb
   const { basis } = equations
   if (problem.standardErrors === "expected") return times(factor.inverse(), phi)
   // The observed weights go into a point of their own, which keeps the first as it is.
@@ -282,6 +383,15 @@ function product(a: Float64Array, b: Float64Array, n: number): Float64Array {
   return out
 }
 
+const emptyFrame: Frame = {
+  type: "orthogonal",
+  column: new Int32Array(0),
+  high: new Float64Array(0),
+  low: new Float64Array(0),
+  gamma: new Float64Array(0),
+  covariance: new Float64Array(0),
+}
+
 function frameOf(equations: Equations, point: Point, covariance: Float64Array | null): Frame {
   const { change } = equations.basis
   const shared = { gamma: point.gamma.slice(), covariance: covariance ?? new Float64Array(0) }
@@ -293,9 +403,9 @@ function frameOf(equations: Equations, point: Point, covariance: Float64Array | 
 // Criteria -------------------------------------------------------------------------------------------------------------------------------
 
 /** Σ R·w·log f where discrete, Σ R·log f(…, φ/w) where not; null where a density is infinite. */
-function logLikelihoodOf(problem: Problem, responses: Responses, point: Point, phi: number): number | null {
-  const { family, link, y, rows } = responses
-  const { repeat, precision, trials } = problem
+function logLikelihoodOf(climb: Climb, point: Point, phi: number): number | null {
+  const { family, link, y, rows } = climb.responses
+  const { repeat, precision, trials } = climb.problem
   const { eta, mu } = point.state
   let total = 0
   let part = 0
@@ -316,12 +426,12 @@ function logLikelihoodOf(problem: Problem, responses: Responses, point: Point, p
 }
 
 /** D and X² on χ²(df), only where φ is fixed and no row is a single trial. */
-function fitTests(problem: Problem, given: number | null, deviance: number, pearson: number, df: number): Fit["fitTest"] {
-  if (given === null || df <= 0) return []
+function fitTests(problem: Problem, phi: number | null, deviance: number, pearson: number, df: number): Fit["fitTest"] {
+  if (phi === null || df <= 0) return []
   if (problem.family.name === "binomial" && (problem.trials === null || problem.trials.some((m) => m === 1))) return []
   return [
-    { by: "deviance", df, p: chiSquareUpperTail(deviance / given, df) },
-    { by: "pearson", df, p: chiSquareUpperTail(pearson / given, df) },
+    { by: "deviance", df, p: chiSquareUpperTail(deviance / phi, df) },
+    { by: "pearson", df, p: chiSquareUpperTail(pearson / phi, df) },
   ]
 }
 

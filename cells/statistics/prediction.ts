@@ -15,20 +15,24 @@ export function predicted(fit: Fit, variables: Variables, rows: number): { reado
   const { frame } = fit
   const p = frame.column.length
   const z = new Float64Array(p)
-  const moved = fit.coefficients.flatMap(({ toward }, j) => (toward === null ? [] : [{ column: columns[j] as Float64Array, toward }]))
   for (let i = 0; i < rows; i++) {
     basisRow(fit, columns, i, z)
     let sum = 0
     for (let j = 0; j < p; j++) sum += (z[j] as number) * (frame.gamma[j] as number)
     eta[i] = sum
     error[i] = frame.covariance.length === 0 ? Number.NaN : Math.sqrt(Math.max(0, quadratic(frame.covariance, z)))
-    // A coefficient that has gone to infinity takes with it every row whose column is not 0.
-    for (const { column, toward } of moved) {
-      const x = column[i] as number
-      if (x !== 0) {
-        eta[i] = (eta[i] as number) + x * (toward === "infinity" ? Number.POSITIVE_INFINITY : Number.NEGATIVE_INFINITY)
-        error[i] = Number.NaN
-      }
+    for (const direction of fit.recession) {
+      // A row that a direction moves is at the end of its range; one that it leaves alone has the fit of the rows that stayed.
+      let [along, size] = [0, 0]
+      direction.forEach((times, j) => {
+        const part = times * ((columns[j] as Float64Array)[i] as number)
+        along += part
+        size += Math.abs(part)
+      })
+      if (Math.abs(along) <= 1e-9 * size) continue
+      eta[i] = along > 0 ? Number.POSITIVE_INFINITY : Number.NEGATIVE_INFINITY
+      error[i] = Number.NaN
+      break
     }
   }
   return { eta, error }

@@ -40,13 +40,16 @@ export type RowState = {
   readonly score: Float64Array
   /** a·d²/V, or J. */
   readonly weight: Float64Array
+  /** What η has lost in its last digit, where it is summed with 32 digits; under the identity residuals are taken from both parts. */
+  readonly etaLow: Float64Array | null
 }
 
-export const rowState = (rows: number): RowState => ({
+export const rowState = (rows: number, wide = false): RowState => ({
   eta: new Float64Array(rows),
   mu: new Float64Array(rows),
   score: new Float64Array(rows),
   weight: new Float64Array(rows),
+  etaLow: wide ? new Float64Array(rows) : null,
 })
 
 /** @throws RangeError where the exposure cannot be had under this family and link: what a statement says is checked before */
@@ -239,13 +242,13 @@ function cloglogRows(of: Responses, information: Information, from: number, to: 
 
 function identityRows(of: Responses, from: number, to: number, state: RowState, sums: Float64Array): boolean {
   const { y, a } = of
-  const { eta, mu, score, weight } = state
+  const { eta, mu, score, weight, etaLow } = state
   let deviance = 0
   for (let i = from; i < to; i++) {
     const own = a[i] as number
     const m = eta[i] as number
     mu[i] = m
-    const residual = (y[i] as number) - m
+    const residual = (y[i] as number) - m - (etaLow === null ? 0 : (etaLow[i] as number))
     score[i] = own * residual
     weight[i] = own
     deviance += own * residual * residual

@@ -92,7 +92,7 @@ export class Equations {
     return {
       gamma: new Float64Array(p),
       gammaLow: new Float64Array(p),
-      state: rowState(this.basis.rows),
+      state: rowState(this.basis.rows, this.basis.change.type === "orthogonal"),
       deviance: Number.NaN,
       pearson: Number.NaN,
       score: new Float64Array(p),
@@ -113,8 +113,11 @@ export class Equations {
       const from = layout.chunkStart(chunk)
       const to = layout.chunkStart(chunk + 1)
       const sums = tree.next()
-      if (sharp) exactEta(basis, sharp, this.responses.offset, from, to, point.state.eta)
-      else linearPredictor(basis, point.gamma, cellValues, this.responses.offset, from, to, point.state.eta)
+      if (sharp) exactEta(basis, sharp, this.responses.offset, from, to, point.state)
+      else {
+        linearPredictor(basis, point.gamma, cellValues, this.responses.offset, from, to, point.state.eta)
+        point.state.etaLow?.fill(0, from, to)
+      }
       if (!fillRows(this.responses, information, from, to, point.state, sums)) {
         tree.push()
         tree.total()
@@ -217,6 +220,7 @@ export async function polished(
     return { point: current, iterations, end: "singular", decrement: Number.NaN, step: new Float64Array(current.gamma.length) }
   let step = factor.solve(current.score)
   let decrement = dot(step, current.score)
+  let left = false
   // A perfect fit has no dispersion to measure by: its steps end where rounding does.
   for (let k = 0; k < 30 && decrement > noMoreToGain * phi(current); k++) {
     const { gamma, gammaLow } = current
@@ -225,7 +229,10 @@ export async function polished(
       other.gamma[j] = high
       other.gammaLow[j] = low
     }
-    if (!(await equations.fill(other, information, true))) break
+    if (!(await equations.fill(other, information, true))) {
+      left = true
+      break
+    }
     const nextFactor = Factor.of(other.gram)
     if (nextFactor === null) break
     const nextStep = nextFactor.solve(other.score)
@@ -238,7 +245,8 @@ export async function polished(
     iterations++
     if (gain > 0.25) break
   }
-  return { point: current, iterations, end: "arrived", decrement, step }
+  // Where the next step would leave the possible means and the score has not vanished, the maximum is not inside.
+  return { point: current, iterations, end: left && decrement > 1e-12 * phi(current) ? "stuck" : "arrived", decrement, step }
 }
 
 /** η of the rows from … to: offset, columns, cells. */
@@ -308,7 +316,14 @@ export function exactCoefficients(basis: Basis, point: { readonly gamma: Float64
   return beta
 }
 
-function exactEta(basis: Basis, beta: Float64Array, offset: Float64Array | null, from: number, to: number, eta: Float64Array): void {
+function exactEta(
+  basis: Basis,
+  beta: Float64Array,
+  offset: Float64Array | null,
+  from: number,
+  to: number,
+  { eta, etaLow }: RowState,
+): void {
   const written = basis.written as readonly Float64Array[]
   const { column } = basis.change
   const sum = new WideSum()
@@ -320,7 +335,8 @@ function exactEta(basis: Basis, beta: Float64Array, offset: Float64Array | null,
       sum.addProduct(x, beta[2 * j] as number)
       sum.add(x * (beta[2 * j + 1] as number))
     }
-    eta[i] = sum.high + sum.low
+    eta[i] = sum.high
+    if (etaLow) etaLow[i] = sum.low
   }
 }
 

@@ -96,7 +96,7 @@ export function problemOf(set: ReferenceSet, model: ReferenceModel): Problem | n
       intercept = true
       continue
     }
-    const values = Float64Array.from({ length: rows }, (_, i) => valueOf(expr, set.data, i))
+    const values = Float64Array.from({ length: rows }, (_, i) => expressionValue(expr, set.data, i))
     variables[says] = { type: "number", values }
     terms.push({ says, pieces: [{ variable: says, as: "itself", setting: null }] })
   }
@@ -112,7 +112,9 @@ export function problemOf(set: ReferenceSet, model: ReferenceModel): Problem | n
     repeat: null,
     precision: model.weights === undefined ? null : column(model.weights),
     offset:
-      model.offset === undefined ? null : Float64Array.from({ length: rows }, (_, i) => valueOf(model.offset as Expression, set.data, i)),
+      model.offset === undefined
+        ? null
+        : Float64Array.from({ length: rows }, (_, i) => expressionValue(model.offset as Expression, set.data, i)),
     exposure: null,
     cluster: null,
     dispersion:
@@ -123,10 +125,10 @@ export function problemOf(set: ReferenceSet, model: ReferenceModel): Problem | n
 }
 
 /** The value of a nested expression in one row. */
-function valueOf(expression: Expression, data: ReferenceSet["data"], row: number): number {
+function expressionValue(expression: Expression, data: ReferenceSet["data"], row: number): number {
   const [what, ...args] = expression
   const text = (k: number): string => args[k] as string
-  const value = (k: number): number => valueOf(args[k] as Expression, data, row)
+  const value = (k: number): number => expressionValue(args[k] as Expression, data, row)
   switch (what) {
     case "num":
       return Number(text(0))

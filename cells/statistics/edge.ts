@@ -1,0 +1,321 @@
+// Maxima on the edge of the possible means: some rows have a mean at the end of its range, which only a row that agrees with that end can have, and the
+// likelihood would still rise beyond. Found by Newton's method with those rows held at the edge, verified by the multipliers of the rows
+// (Karush-Kuhn-Tucker); what is not verified is not called a maximum.
+
+import { cholesky, type Gram } from "./gram.ts"
+import { directionOf } from "./recession.ts"
+import type { Responses } from "./rows.ts"
+import { dot, Equations, type Point } from "./scoring.ts"
+
+export type Edge = {
+  readonly point: Point
+  /** Rows at the edge and their multipliers: ∇ℓ = Σ λ·n, n = ±x pointing out of the range. */
+  readonly active: readonly { readonly row: number; readonly multiplier: number }[]
+  readonly iterations: number
+}
+
+/** Most columns for which the edge is searched: it takes a dense system of them. */
+const mostColumns = 400
+
+/** A row this near to the edge, as a share of the spread of η, is tried at the edge. */
+const nearEdge = 1e-3
+
+/**
+ * The maximum with some rows at the edge, from where an ordinary search got stuck; null where none is verified.
+ * @param stuck  the last point inside
+ */
+export async function edgeMaximum(equations: Equations, stuck: Point): Promise<Edge | null> {
+  const { responses, basis } = equations
+  const { low, high, rows, a } = responses
+  if (basis.size > mostColumns || (!Number.isFinite(low) && !Number.isFinite(high))) return null
+  const spread = spreadOf(stuck.state.eta)
+  const active = new Map<number, number>()
+  for (let i = 0; i < rows; i++) {
+    if ((a[i] as number) === 0) continue
+    const eta = stuck.state.eta[i] as number
+    const end = eta - low < high - eta ? low : high
+    if (Math.abs(eta - end) <= nearEdge * spread && agrees(responses, i, end)) active.set(i, end)
+  }
+  let gamma = stuck.gamma.slice()
+  for (let round = 0; round < 60; round++) {
+    const found = await heldMaximum(equations, gamma, active)
+    if (!found) return null
+    const { point, multipliers, iterations, blocked } = found
+    gamma = point.gamma.slice()
+    if (blocked !== null) {
+      if (!agrees(responses, blocked.row, blocked.end)) return null
+      active.set(blocked.row, blocked.end)
+      continue
+    }
+    // The row that pulls inside the most is let go.
+    let worst: number | null = null
+    for (const [row, lambda] of multipliers)
+      if (lambda < -1e-9 && (worst === null || lambda < (multipliers.get(worst) as number))) worst = row
+    if (worst === null) {
+      if (multipliers.size === 0) return null
+      return { point, active: [...multipliers].map(([row, multiplier]) => ({ row, multiplier })), iterations }
+    }
+    active.delete(worst)
+    if (active.size === 0) return null
+  }
+  return null
+}
+
+/** Whether a row has a finite deviance with its mean at this end. */
+const agrees = ({ family, link, y, scale }: Responses, row: number, end: number): boolean => {
+  const mu = (scale ? (scale[row] as number) : 1) * link.mean(end)
+  const response = y[row] as number
+  return (
+    Number.isFinite(family.unitDeviance(response, mu, 1 - mu)) &&
+    Math.abs(response - mu) < 1e-12 &&
+    family.name !== "gamma" &&
+    family.name !== "normal"
+  )
+}
+
+type Held = {
+  readonly point: Point
+  readonly multipliers: Map<number, number>
+  readonly iterations: number
+  /** A row that came to the edge on the way. */
+  readonly blocked: { readonly row: number; readonly end: number } | null
+}
+
+async function heldMaximum(equations: Equations, from: Float64Array, active: ReadonlyMap<number, number>): Promise<Held | null> {
+  const { basis, responses, pace } = equations
+  const p = basis.size
+  const held = [...active.keys()]
+  // Rows held add a constant to ℓ, so they take no part in the climbing.
+  const masked: Responses = { ...responses, a: responses.a.map((own, i) => (active.has(i) ? 0 : own)) }
+  const inner = new Equations(basis, masked, pace)
+  const x = held.map((row) => rowOf(equations, row))
+  const target = held.map((row) => (active.get(row) as number) - (responses.offset ? (responses.offset[row] as number) : 0))
+  const point = inner.point()
+  point.gamma.set(from)
+  const trial = inner.point()
+  // Onto the edge, and from then on along it.
+  for (let round = 0; round < 3; round++) {
+    const off = x.map((row, k) => (target[k] as number) - dot(row, point.gamma))
+    const step = constrainedStep(identityOf(p), new Float64Array(p), x, off)
+    if (!step) return null
+    for (let j = 0; j < p; j++) point.gamma[j] = (point.gamma[j] as number) + (step.delta[j] as number)
+  }
+  const blockedAtStart = await firstOutside(inner, from, point.gamma)
+  if (blockedAtStart) return { point, multipliers: new Map(), iterations: 0, blocked: blockedAtStart }
+  if (!(await inner.fill(point, "observed"))) return null
+  let information: "observed" | "expected" = "observed"
+  for (let iterations = 1; iterations <= 80; iterations++) {
+    const none = new Array<number>(x.length).fill(0)
+    let step = constrainedStep(fullOf(point.gram, x), point.score, x, none)
+    if (!step && information === "observed") {
+      information = "expected"
+      if (!(await inner.fill(point, "expected"))) return null
+      step = constrainedStep(fullOf(point.gram, x), point.score, x, none)
+    }
+    if (!step) return null
+    const gain = dot(step.delta, point.score)
+    if (gain < 1e-22 * (1 + Math.abs(point.deviance))) {
+      const multipliers = new Map<number, number>()
+      held.forEach((row, k) => {
+        // λ on −∇ of the others, and the row's own slope, both along the normal that points out.
+        const end = active.get(row) as number
+        const out = end === responses.high ? 1 : -1
+        multipliers.set(row, out * ((step?.lambda[k] as number) + ownSlope(responses, row, end)))
+      })
+      for (const [row, end] of active) {
+        point.state.eta[row] = end
+        point.state.mu[row] = (responses.scale ? (responses.scale[row] as number) : 1) * responses.link.mean(end)
+      }
+      return { point, multipliers, iterations, blocked: null }
+    }
+    let share = 1
+    let blocked: { row: number; end: number } | null = null
+    let taken = false
+    for (let halving = 0; halving < 50; halving++) {
+      for (let j = 0; j < p; j++) trial.gamma[j] = (point.gamma[j] as number) + share * (step.delta[j] as number)
+      const outside = await firstOutside(inner, point.gamma, trial.gamma)
+      if (outside) {
+        blocked = outside
+        share = outside.share * 0.999999
+        if (share < 1e-8) break
+        for (let j = 0; j < p; j++) trial.gamma[j] = (point.gamma[j] as number) + share * (step.delta[j] as number)
+      }
+      if ((await inner.fill(trial, "observed")) && trial.deviance <= point.deviance + 1e-13 * Math.abs(point.deviance)) {
+        taken = true
+        break
+      }
+      share /= 2
+      blocked = null
+    }
+    if (blocked) return { point: taken ? trial : point, multipliers: new Map(), iterations, blocked }
+    if (!taken) return null
+    point.gamma.set(trial.gamma)
+    if (!(await inner.fill(point, "observed"))) return null
+    information = "observed"
+  }
+  return null
+}
+
+/** The row that first leaves the possible η on the way from one point to the other. */
+async function firstOutside(
+  equations: Equations,
+  from: Float64Array,
+  to: Float64Array,
+): Promise<{ readonly row: number; readonly end: number; readonly share: number } | null> {
+  const { responses } = equations
+  const { low, high, a, offset, rows } = responses
+  const before = directionOf(equations, from)
+  const after = directionOf(equations, to)
+  let first: { row: number; end: number; share: number } | null = null
+  for (let i = 0; i < rows; i++) {
+    if ((a[i] as number) === 0) continue
+    const o = offset ? (offset[i] as number) : 0
+    const start = (before[i] as number) + o
+    const goal = (after[i] as number) + o
+    if (goal > low && goal < high) continue
+    const end = goal <= low ? low : high
+    const share = Math.max(0, Math.min(1, (end - start) / (goal - start)))
+    if (first === null || share < first.share) first = { row: i, end, share }
+  }
+  return first
+}
+
+/** dℓ/dη of one row at an end of its range, where V is 0: by its limit, from just inside. */
+function ownSlope(responses: Responses, row: number, end: number): number {
+  const { family, link, y, a, scale } = responses
+  const times = scale ? (scale[row] as number) : 1
+  const inside = end === responses.high ? end - 1e-9 * Math.max(1, Math.abs(end)) : end + 1e-9 * Math.max(1, Math.abs(end))
+  const mu = times * link.mean(inside)
+  const rest = 1 - mu
+  return ((a[row] as number) * ((y[row] as number) - mu) * times * link.slope(inside)) / family.variance(mu, rest)
+}
+
+/**
+ * The step δ that maximises u'δ − δ'Hδ/2 with Aδ = off, and the multipliers: u − Hδ = A'λ. Rows of A that depend on earlier ones are left out with
+ * multiplier 0.
+ */
+function constrainedStep(
+  H: Float64Array,
+  u: Float64Array,
+  A: readonly Float64Array[],
+  off: readonly number[],
+): { readonly delta: Float64Array; readonly lambda: Float64Array } | null {
+  const p = u.length
+  const scale = Float64Array.from({ length: p }, (_, j) => 1 / Math.sqrt(H[j * p + j] as number))
+  const lower = H.map((h, at) => h * (scale[Math.floor(at / p)] as number) * (scale[at % p] as number))
+  if (!cholesky(lower, p)) return null
+  const solve = (b: Float64Array): Float64Array => {
+    const v = b.map((x, j) => x * (scale[j] as number))
+    for (let i = 0; i < p; i++) {
+      let sum = v[i] as number
+      for (let k = 0; k < i; k++) sum -= (lower[i * p + k] as number) * (v[k] as number)
+      v[i] = sum / (lower[i * p + i] as number)
+    }
+    for (let i = p - 1; i >= 0; i--) {
+      let sum = v[i] as number
+      for (let k = i + 1; k < p; k++) sum -= (lower[k * p + i] as number) * (v[k] as number)
+      v[i] = sum / (lower[i * p + i] as number)
+    }
+    return v.map((x, j) => x * (scale[j] as number))
+  }
+  const free = solve(u)
+  // Gram-Schmidt over the constraints in the metric of H⁻¹, so that repeated rows do no harm.
+  const kept: { readonly at: number; readonly v: Float64Array; readonly row: Float64Array }[] = []
+  A.forEach((row, at) => {
+    const v = solve(row)
+    const own = dot(row, v)
+    const inner = kept.map((other) => dot(other.row, v))
+    const m = kept.length
+    const S = new Float64Array(m * m)
+    kept.forEach((a, i) => {
+      kept.forEach((b, j) => {
+        S[i * m + j] = dot(a.row, b.v)
+      })
+    })
+    const c = m === 0 ? [] : solveDense(S, inner)
+    const left = own - inner.reduce((sum, x, i) => sum + x * (c ? (c[i] as number) : 0), 0)
+    if (c && left > 1e-10 * own) kept.push({ at, v, row })
+  })
+  const m = kept.length
+  const S = new Float64Array(m * m)
+  kept.forEach((a, i) => {
+    kept.forEach((b, j) => {
+      S[i * m + j] = dot(a.row, b.v)
+    })
+  })
+  const right = kept.map(({ row, at }) => dot(row, free) - (off[at] as number))
+  const multipliers = m === 0 ? [] : solveDense(S, right)
+  if (!multipliers) return null
+  const delta = free.slice()
+  const lambda = new Float64Array(A.length)
+  kept.forEach(({ v, at }, i) => {
+    const l = multipliers[i] as number
+    lambda[at] = l
+    for (let j = 0; j < p; j++) delta[j] = (delta[j] as number) - l * (v[j] as number)
+  })
+  return { delta, lambda }
+}
+
+/** Solves a small symmetric positive definite system; null where it is none. */
+function solveDense(S: Float64Array, b: readonly number[]): number[] | null {
+  const m = b.length
+  const scale = Array.from({ length: m }, (_, j) => 1 / Math.sqrt(S[j * m + j] as number))
+  const lower = S.map((s, at) => s * (scale[Math.floor(at / m)] as number) * (scale[at % m] as number))
+  if (!cholesky(lower, m)) return null
+  const x = b.map((v, j) => v * (scale[j] as number))
+  for (let i = 0; i < m; i++) {
+    for (let k = 0; k < i; k++) x[i] = (x[i] as number) - (lower[i * m + k] as number) * (x[k] as number)
+    x[i] = (x[i] as number) / (lower[i * m + i] as number)
+  }
+  for (let i = m - 1; i >= 0; i--) {
+    for (let k = i + 1; k < m; k++) x[i] = (x[i] as number) - (lower[k * m + i] as number) * (x[k] as number)
+    x[i] = (x[i] as number) / (lower[i * m + i] as number)
+  }
+  return x.map((v, j) => v * (scale[j] as number))
+}
+
+/** The weights' matrix with the held rows added: on the edge they change nothing, and with them it is positive definite. */
+function fullOf(gram: Gram, x: readonly Float64Array[]): Float64Array {
+  const full = gram.full()
+  const p = gram.rest + gram.last
+  let trace = 0
+  for (let j = 0; j < p; j++) trace += full[j * p + j] as number
+  for (const row of x) {
+    const size = dot(row, row)
+    for (let i = 0; i < p; i++)
+      for (let j = 0; j < p; j++)
+        full[i * p + j] = (full[i * p + j] as number) + ((trace / p) * (row[i] as number) * (row[j] as number)) / (size || 1)
+  }
+  return full
+}
+
+const identityOf = (p: number): Float64Array => {
+  const out = new Float64Array(p * p)
+  for (let j = 0; j < p; j++) out[j * p + j] = 1
+  return out
+}
+
+/** One row of the basis. */
+export function rowOf({ basis }: Equations, row: number): Float64Array {
+  const out = new Float64Array(basis.size)
+  for (let j = 0; j < basis.plain.length; j++) {
+    const x = basis.plain[j] as Float64Array | null
+    out[j] = x === null ? 1 : (x[row] as number)
+  }
+  for (const block of basis.blocks) {
+    const cell = block.cells[row] as number
+    const times = block.multiplier === null ? 1 : (block.multiplier[row] as number)
+    for (let e = block.starts[cell] as number; e < (block.starts[cell + 1] as number); e++)
+      out[block.column[e] as number] = times * (block.value[e] as number)
+  }
+  return out
+}
+
+const spreadOf = (eta: Float64Array): number => {
+  let [low, high] = [Number.POSITIVE_INFINITY, Number.NEGATIVE_INFINITY]
+  for (const e of eta) {
+    if (e < low) low = e
+    if (e > high) high = e
+  }
+  return Math.max(high - low, 1e-3 * Math.max(Math.abs(low), Math.abs(high)))
+}
