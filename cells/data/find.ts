@@ -30,11 +30,11 @@ export async function found(said: DataSaid, inputs: ReadonlyMap<Name, Input>, wo
   const done = await afterSteps(said, file.table, inputs, work)
   const profiles: Profile[] = []
   for (const [name, column] of done.columns) {
-    profiles.push(profile(name, column))
+    profiles.push(await profile(name, column, () => work.checkpoint()))
     await work.checkpoint()
   }
   const parts: Record<string, Column | RowIdentity> = Object.fromEntries(done.columns)
-  parts[rowsPart] = { sha256, records: done.records }
+  parts[rowsPart] = { file: from.file, sha256, records: done.records }
   const notices: readonly Notice[] = [...file.notices, ...done.notices]
   const finding: DataFinding = {
     columns: [...done.columns.keys()],

@@ -11,32 +11,22 @@ const binCount = 48
 /** The bound of the format for arrays in a summary. */
 const levelsAtMost = 2000
 
-export const profile = (name: Name, column: Column): Profile => {
+/** `pause` is awaited between the passes over the column. */
+export async function profile(name: Name, column: Column, pause: () => Promise<void>): Promise<Profile> {
   if (!("values" in column)) return codedProfile(name, column)
   const { values, type } = column
-  const present = moments(values)
-  const plain = { name, type, missing: values.length - present.count, ...present }
+  const { count, ...of } = await moments(values, pause)
+  const plain = { name, type, missing: values.length - count, ...of, different: null }
   if (type === "truth") {
-    const trues = present.count === 0 ? 0 : Math.round(present.mean * present.count)
-    const levels = { names: ["false", "true"], rows: Float64Array.of(present.count - trues, trues) }
-    return { ...strip(plain), marks: null, bins: null, different: null, levels }
+    const trues = count === 0 ? 0 : Math.round(of.mean * count)
+    return { ...plain, marks: null, bins: null, levels: { names: ["false", "true"], rows: Float64Array.of(count - trues, trues) } }
   }
-  const marks = present.count === 0 ? null : marksOf(values)
-  return {
-    ...strip(plain),
-    marks,
-    bins: marks === null && present.count > 0 ? binsOf(values, present.least, present.greatest) : null,
-    different: null,
-    levels: null,
-  }
+  const marks = count === 0 ? null : marksOf(values)
+  await pause()
+  return { ...plain, marks, bins: marks === null && count > 0 ? binsOf(values, of.least, of.greatest) : null, levels: null }
 }
 
 type Moments = { readonly count: number; readonly least: number; readonly greatest: number; readonly mean: number; readonly sd: number }
-
-const strip = ({
-  count: _,
-  ...rest
-}: Moments & { name: Name; type: Profile["type"]; missing: number }): Omit<Profile, "marks" | "bins" | "different" | "levels"> => rest
 
 const codedProfile = (name: Name, column: CodedColumn): Profile => {
   const rows = new Float64Array(column.levels.length)
@@ -51,7 +41,7 @@ const codedProfile = (name: Name, column: CodedColumn): Profile => {
 }
 
 /** Mean and standard deviation in two passes, both sums compensated (Neumaier 1974). */
-const moments = (values: Float64Array): Moments => {
+const moments = async (values: Float64Array, pause: () => Promise<void>): Promise<Moments> => {
   let count = 0
   let least = Number.POSITIVE_INFINITY
   let greatest = Number.NEGATIVE_INFINITY
@@ -65,6 +55,7 @@ const moments = (values: Float64Array): Moments => {
   }
   if (count === 0) return { count, least: Number.NaN, greatest: Number.NaN, mean: Number.NaN, sd: Number.NaN }
   const mean = sum.total / count
+  await pause()
   const squares = new Sum()
   const differences = new Sum()
   for (const value of values) {

@@ -39,7 +39,7 @@ export async function afterSteps(said: DataSaid, table: FileTable, inputs: Input
   let state: Rows = {
     columns: new Map(table.columns.map(({ name, column }) => [name, column])),
     rows: table.rows,
-    records: Uint32Array.from({ length: table.rows }, (_, i) => i),
+    records: counting(table.rows),
   }
   for (const step of said.steps) {
     await work.checkpoint()
@@ -173,7 +173,7 @@ async function gathered(state: Rows, places: Uint32Array, work: Work): Promise<R
     columns.set(name, gatheredColumn(column, places))
     await work.checkpoint()
   }
-  return { columns, rows: places.length, records: Uint32Array.from(places, (place) => state.records[place] as number) }
+  return { columns, rows: places.length, records: taken(state.records, places) }
 }
 
 const gatheredColumn = (column: Column, places: Uint32Array): Column => {
@@ -255,7 +255,7 @@ async function totals(
     await work.checkpoint()
   }
   columns.set("rows", { type: "count", values: sizes, unit: null, called: null })
-  return { columns, rows: count, records: Uint32Array.from(first, (row) => state.records[row] as number) }
+  return { columns, rows: count, records: taken(state.records, first) }
 }
 
 /** Splits the groups by one more column; groups are numbered by first appearance. Gives how many there are. */
@@ -276,12 +276,27 @@ const regrouped = (groups: Uint32Array, count: number, column: Column): number =
 }
 
 const codesOf = (values: Float64Array): Int32Array => {
-  const codes = new Map<number, number>()
-  return Int32Array.from(values, (value) => {
-    if (Number.isNaN(value)) return -1
-    const known = codes.get(value)
-    if (known !== undefined) return known
-    codes.set(value, codes.size)
-    return codes.size - 1
-  })
+  const known = new Map<number, number>()
+  const codes = new Int32Array(values.length).fill(-1)
+  for (let row = 0; row < values.length; row++) {
+    const value = values[row] as number
+    if (Number.isNaN(value)) continue
+    const code = known.get(value) ?? known.size
+    if (code === known.size) known.set(value, code)
+    codes[row] = code
+  }
+  return codes
+}
+
+// Loops, where `from` with a function would take ten times as long over a million rows.
+const counting = (rows: number): Uint32Array => {
+  const records = new Uint32Array(rows)
+  for (let row = 0; row < rows; row++) records[row] = row
+  return records
+}
+
+const taken = (records: Uint32Array, places: Uint32Array): Uint32Array => {
+  const some = new Uint32Array(places.length)
+  for (let row = 0; row < places.length; row++) some[row] = records[places[row] as number] as number
+  return some
 }

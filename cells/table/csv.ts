@@ -93,10 +93,11 @@ export class Scanner {
     if (!this.begun) {
       const bytes = this.beginning(this.rest)
       this.rest = new Uint8Array(0)
-      if (this.trouble !== null || !this.take(bytes, true)) return
-    } else if (!this.take(new Uint8Array(0), true)) return
+      if (this.trouble !== null || !this.take(bytes, false)) return
+    }
     const cut = this.check.end()
     if (cut !== null) this.trouble = { type: "not-utf-8", bad: cut, record: this.records, field: this.index }
+    else this.take(new Uint8Array(0), true)
   }
 
   private beginning(bytes: Uint8Array): Uint8Array {
