@@ -124,14 +124,14 @@ export class Row extends LitElement {
   }
 
   override render() {
-    const { statement, title, words } = reading(this.cell)
+    const { statement, title } = reading(this.cell)
     const notices = this.desk.notices(this.cell.id)
     const faults = notices.filter(({ level }) => level === "fault")
     const state = this.desk.state(this.cell.id)
     const other = state.status === "waiting" ? this.desk.notebook.cells.find(({ id }) => id === state.for) : undefined
     const waitsFor = other === undefined ? null : { id: other.id, title: reading(other).statement.name ?? reading(other).title }
     const how = standing(state, statement.kind === null && this.cell.text.trim() === "", faults.length, waitsFor?.title ?? "another cell")
-    this.className = `row form-${how.form} kind-${words?.word ?? "none"}${this.editing === null ? "" : " editing"}`
+    this.className = `row form-${how.form} kind-${statement.kind ?? "none"}${this.editing === null ? "" : " editing"}`
     this.setAttribute("role", "group")
     this.setAttribute("aria-label", `${title}: ${how.words}`)
     return html`
