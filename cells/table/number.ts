@@ -111,11 +111,16 @@ export const shapeOf = (bytes: Uint8Array, from: number, to: number, decimal: nu
   return shape
 }
 
-/** Whether a whole number is written that a double cannot hold exactly, so that reading it would change it. */
+/**
+ * Whether a whole number is written that reading would change: a double does not hold it exactly, and it is not the way that double is
+ * written either (50741488950617130 is, though the double is two less: no other text would be written for it).
+ */
 export const isRounded = (bytes: Uint8Array, from: number, to: number, value: number): boolean => {
   if (!(Math.abs(value) >= exactBelow) || !Number.isFinite(value)) return false
   const words = ascii(bytes, from, to)
-  return /^[+-]?\d+$/.test(words) && BigInt(words.replace("+", "")) !== BigInt(value)
+  if (!/^[+-]?\d+$/.test(words)) return false
+  const whole = BigInt(words.replace("+", ""))
+  return whole !== BigInt(value) && String(whole) !== String(value)
 }
 
 /** Whether a number is written with a zero that means nothing as a number, and may mean something as a name. */

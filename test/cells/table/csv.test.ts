@@ -178,7 +178,7 @@ describe("reading separated text by RFC 4180", () => {
         fc.constantFrom(",", ";", "\t", "¦"),
         fc.integer({ min: 1, max: 40 }),
         (records, lineEnd, separator, pieces) => {
-          const whole = records.map((fields) => fields.map((text) => text.toWellFormed().replaceAll("\0", "")))
+          const whole = records.map((fields) => fields.map((text) => text.replaceAll("\0", "")))
           const text = whole.map((fields) => fields.map((one) => `"${one.replaceAll('"', '""')}"`).join(separator)).join(lineEnd)
           expect(scanned(text, separator, pieces).records).toEqual(whole)
         },
