@@ -10,7 +10,7 @@ export type Level = "fault" | "warning" | "remark"
  * heading and otherwise counts clauses from 0; tokens are counted from 0 in the clause, its keyword being token 0 (in the heading:
  * `off`, the kind, the name, the rest). `to` is past the last token; `from === to` points just before token `from`.
  */
-export interface Place {
+export type Place = {
   readonly clause: number
   readonly from: number
   readonly to: number
