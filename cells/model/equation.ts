@@ -1,0 +1,103 @@
+// The equation of a model: g(μ) written out, then the linear predictor, coefficient by coefficient, as a formula and as the same in text.
+
+import type { Formula } from "../figure/formula.ts"
+import { printed } from "../language/expression.ts"
+import { linkFormula } from "../language/vocabulary.ts"
+import type { ModelFinding } from "../model-finding.ts"
+import type { LinkSpec } from "../statistics/problem.ts"
+
+/** Coefficients written out at most; of more, the first and the last stand for all. */
+const mostWritten = 8
+
+export type Equation = { readonly formula: Formula; readonly text: string }
+
+export function equation(found: ModelFinding): Equation {
+  const right = rightSide(found)
+  const text = `${linkFormula(found.link).replaceAll("μ", unitsOfMean(found) ? `(μ/${found.exposure?.name})` : "μ")} = ${right.text}`
+  return { formula: row(leftSide(found), sign("="), right.formula), text }
+}
+
+/** The name of a coefficient, β with its number: `β₁`. */
+export const coefficientName = (index: number): string => `β${[...String(index)].map((digit) => lowered[Number(digit)]).join("")}`
+
+const lowered = "₀₁₂₃₄₅₆₇₈₉"
+
+/** g(μ) as a formula, `mean` in the place of μ. */
+export function linkTree(link: LinkSpec, mean: Formula): Formula {
+  const rest = row(number("1"), sign("−"), mean)
+  switch (link.name) {
+    case "identity":
+      return mean
+    case "log":
+      return called("ln", mean)
+    case "reciprocal":
+      return { type: "fraction", above: number("1"), below: mean }
+    case "square_root":
+      return { type: "root", of: mean }
+    case "power": {
+      const a = link.parameters[0] ?? 1
+      return a === 0 ? called("ln", mean) : { type: "power", base: mean, with: number(String(a).replace("-", "−")) }
+    }
+    case "logit":
+      return called("ln", { type: "fraction", above: mean, below: rest })
+    case "probit":
+      return row({ type: "power", base: name("Φ"), with: number("−1") }, { type: "bracket", of: mean })
+    case "cauchit":
+      return called(
+        "tan",
+        row(name("π"), { type: "bracket", of: row(mean, sign("−"), { type: "fraction", above: number("1"), below: number("2") }) }),
+      )
+    case "cloglog":
+      return called("ln", row(sign("−"), called("ln", rest)))
+    case "loglog":
+      return row(sign("−"), called("ln", row(sign("−"), called("ln", mean))))
+    default:
+      return row(name("g"), { type: "bracket", of: mean })
+  }
+}
+
+/** Whether the mean is linked per unit of the exposure; under cloglog its logarithm is added instead. */
+const unitsOfMean = ({ exposure, problem }: ModelFinding): boolean => exposure !== null && problem.family.name !== "binomial"
+
+function leftSide(found: ModelFinding): Formula {
+  const mu = name("μ")
+  const mean: Formula = unitsOfMean(found) ? { type: "fraction", above: mu, below: word(found.exposure?.name ?? "") } : mu
+  return linkTree(found.problem.link, mean)
+}
+
+function rightSide(found: ModelFinding): Equation {
+  const { fit, offset, exposure } = found
+  const first = fit.coefficients[0]?.of === "intercept" ? 0 : 1
+  const written = fit.coefficients.flatMap(({ of, beta, toward }, j) => (beta === null && toward === null ? [] : [summand(of, j + first)]))
+  const parts: Equation[] =
+    written.length <= mostWritten
+      ? written
+      : [...written.slice(0, mostWritten - 2), { formula: sign("⋯"), text: "⋯" }, written.at(-1) as Equation]
+  if (offset !== null) {
+    const says = printed(offset.expression)
+    parts.push({ formula: word(says), text: says })
+  }
+  if (exposure !== null && !unitsOfMean(found)) parts.push({ formula: called("ln", word(exposure.name)), text: `ln ${exposure.name}` })
+  if (parts.length === 0) return { formula: number("0"), text: "0" }
+  const formulas = parts.flatMap(({ formula }, k) => (k === 0 ? [formula] : [sign("+"), formula]))
+  return { formula: row(...formulas), text: parts.map(({ text }) => text).join(" + ") }
+}
+
+/** One coefficient times its column; a level stands in brackets, being 1 where it holds and 0 elsewhere. */
+function summand(of: string, index: number): Equation {
+  const beta: Formula = { type: "sub", base: name("β"), with: number(String(index)) }
+  if (of === "intercept") return { formula: beta, text: coefficientName(index) }
+  const factors = of.split(" . ")
+  const formulas = factors.map((factor): Formula => (/ is /.test(factor) ? { type: "bracket", of: word(factor) } : word(factor)))
+  return {
+    formula: row(beta, ...formulas.flatMap((formula) => [sign("·"), formula])),
+    text: [coefficientName(index), ...factors.map((factor) => (/ is /.test(factor) ? `[${factor}]` : factor))].join("·"),
+  }
+}
+
+const row = (...of: readonly Formula[]): Formula => ({ type: "row", of })
+const name = (text: string): Formula => ({ type: "name", text })
+const word = (text: string): Formula => ({ type: "word", text })
+const number = (text: string): Formula => ({ type: "number", text })
+const sign = (text: string): Formula => ({ type: "sign", text })
+const called = (text: string, of: Formula): Formula => row(word(text), { type: "bracket", of })

@@ -1,0 +1,17 @@
+// `model`: a generalized linear model of a table, fitted, with errors, tests and a certificate.
+
+import type { Kind } from "../../runtime/kind.ts"
+import type { ModelFinding } from "../model-finding.ts"
+import { found } from "./find.ts"
+import { shown } from "./show.ts"
+import { summary, tried } from "./summary.ts"
+import { type ModelSaid, modelWords } from "./words.ts"
+
+export const model: Kind<ModelSaid, ModelFinding> = {
+  words: modelWords,
+  version: 1,
+  evaluate: found,
+  show: shown,
+  summary,
+  tried,
+}

@@ -1,0 +1,613 @@
+// Every notice `model` can give. Rows are counted for the reader from 1, the row after the header, and named with their file.
+
+import type { Intent, Level, Notice, Place } from "../../runtime/notice.ts"
+import { heading } from "../../runtime/notice.ts"
+import type { Clause } from "../../runtime/statement.ts"
+import type { Name } from "../../runtime/value.ts"
+import { written, writtenCount } from "../figure/number.ts"
+import { saidWith } from "../language/slip.ts"
+
+const notice = (
+  level: Level,
+  code: string,
+  clause: string | null,
+  at: Place,
+  text: string,
+  hint: string | null,
+  mend: Intent | null = null,
+): Notice => ({ level, code: `model/${code}`, clause, at, text, hint, mend })
+
+const fault = (code: string, clause: string | null, at: Place, text: string, hint: string | null, mend: Intent | null = null): Notice =>
+  notice("fault", code, clause, at, text, hint, mend)
+
+/** Names in a row: `a, b and c`. */
+export const list = (words: readonly string[], last: "and" | "or" = "and"): string =>
+  words.length < 2 ? (words[0] ?? "") : `${words.slice(0, -1).join(", ")} ${last} ${words.at(-1)}`
+
+const several = (words: readonly string[], most: number): string =>
+  words.length <= most ? list(words) : `${words.slice(0, most).join(", ")} and ${writtenCount(words.length - most)} more`
+
+export const rows = (count: number): string => (count === 1 ? "1 row" : `${writtenCount(count)} rows`)
+
+/** A level or a text as it stands in a statement. */
+const quoted = (text: string): string => `"${text.replace(/["\\]/g, "\\$&")}"`
+
+/** A click that writes this clause, in place of what it says or new. */
+const writes = (clause: string, says: string): Intent => ({
+  label: `Write ${clause} ${says}`,
+  edits: [{ cell: null, clause, nth: 0, says }],
+})
+
+const takesAway = (clause: string): Intent => ({ label: `Take ${clause} away`, edits: [{ cell: null, clause, nth: 0, says: null }] })
+
+/** A click that puts another word in place of one token; null where the place is more than that. */
+const puts = (clause: Clause | undefined, at: Place, word: string): Intent | null => {
+  if (clause === undefined || at.to - at.from !== 1) return null
+  const says = saidWith(clause, [{ from: at.from, to: at.to, text: word }])
+  return { label: `Write ${word}`, edits: [{ cell: null, clause: clause.keyword, nth: 0, says }] }
+}
+
+/** A place in the data as a person counts: `row 17 of terrace.csv`. */
+export type RowName = (row: number) => string
+
+/** Rows at fault, and the first of them with what it holds. */
+export type RowsAt = { readonly count: number; readonly first: number; readonly value: number }
+
+/** `3 rows have response −1 or below`, said of the rows and the first: `first: row 17 of terrace.csv, with −1`. */
+const rowsSay = (at: RowsAt, name: RowName): string =>
+  at.count === 1
+    ? `${name(at.first)} has ${numberSays(at.value)}`
+    : `${rows(at.count)} do so (first: ${name(at.first)}, with ${numberSays(at.value)})`
+
+const numberSays = (value: number): string => written(value, Math.max(1, Math.min(12, significant(value))))
+const significant = (value: number): number => value.toExponential().split("e")[0]?.replace(/[-.]/g, "").length ?? 1
+
+const capital = (text: string): string => `${text.slice(0, 1).toUpperCase()}${text.slice(1)}`
+
+// The statement as text.
+
+const clauseHints: Readonly<Record<"data" | "response" | "family" | "predictor", string>> = {
+  data: "Add a clause such as data, and the name of a data cell.",
+  response: "Add a clause such as response killed out of n, or response buds.",
+  family: "Add a clause such as family binomial; there are normal, binomial, poisson and gamma.",
+  predictor: "Add a clause such as predictor dose; predictor intercept is the model without predictors.",
+}
+
+export const clauseMissing = (clause: "data" | "response" | "family" | "predictor"): Notice =>
+  fault("clause-missing", null, heading, `This model does not say its ${clause}.`, clauseHints[clause])
+
+export const twoWeights = (at: Place): Notice =>
+  fault(
+    "two-weights",
+    "precision",
+    at,
+    "A row is either repeated or of known precision, and here it is said to be both.",
+    "Keep repeat where a row stands for several alike, and precision where it is one observation known better or worse.",
+    takesAway("precision"),
+  )
+
+export const dispersionNotPositive = (text: string, at: Place): Notice =>
+  fault("dispersion-not-positive", "dispersion", at, `A dispersion is above 0, and ${text} is not.`, "Write one, or a number such as 2.5.")
+
+export const confidenceOutside = (text: string, value: number, at: Place): Notice =>
+  fault(
+    "confidence-outside",
+    "confidence",
+    at,
+    `A level of confidence lies between 0 and 100%, and ${text} does not.`,
+    "Write a level such as confidence 95%.",
+    value >= 50 && value < 100 ? writes("confidence", `${text}%`) : null,
+  )
+
+// Family and link.
+
+export const noSuchFamily = (name: string, near: string | null, known: readonly string[], clause: Clause | undefined, at: Place): Notice =>
+  fault(
+    "no-such-family",
+    "family",
+    at,
+    `There is no family called ${name}.`,
+    near === null ? `The families are ${list(known)}.` : `The nearest name is ${near}.`,
+    near === null ? null : puts(clause, at, near),
+  )
+
+export const noSuchLink = (name: string, near: string | null, known: readonly string[], clause: Clause | undefined, at: Place): Notice =>
+  fault(
+    "no-such-link",
+    "link",
+    at,
+    `There is no link called ${name}.`,
+    near === null ? `The links are ${list(known)}.` : `The nearest name is ${near}.`,
+    near === null ? null : puts(clause, at, near),
+  )
+
+export const notAvailableYet = (clause: "family" | "link", what: string, instead: readonly string[], at: Place): Notice =>
+  fault(
+    "not-available-yet",
+    clause,
+    at,
+    `The ${clause} ${what} is not available yet.`,
+    `It belongs to the language and comes with a later version; until then there are ${list(instead)}.`,
+  )
+
+export const estimateNotYet = (name: string, at: Place): Notice =>
+  fault(
+    "not-available-yet",
+    "link",
+    at,
+    `Estimating the parameter of the link ${name} is not available yet.`,
+    `Write a number, such as ${name}(0.5), or the name of a dial.`,
+  )
+
+/** `wants` are the names of the parameters. */
+export const parametersOff = (clause: "family" | "link", name: string, wants: readonly string[], at: Place): Notice =>
+  fault(
+    "parameters-off",
+    clause,
+    at,
+    wants.length === 0 ? `The ${clause} ${name} has no parameter.` : `The ${clause} ${name} needs its parameter.`,
+    wants.length === 0 ? `Write ${clause} ${name}.` : `Write ${name}(0.5), with the number you mean, or the name of a dial.`,
+    wants.length === 0 ? writes(clause, name) : null,
+  )
+
+export const parameterInfinite = (name: string, at: Place): Notice =>
+  fault("parameter-infinite", "link", at, `The parameter of the link ${name} is a finite number.`, `Write one such as ${name}(0.5).`)
+
+export const linkNotLegal = (link: string, family: string, legal: readonly string[], families: readonly string[], at: Place): Notice =>
+  fault(
+    "link-not-legal",
+    "link",
+    at,
+    `The link ${link} is not defined for every mean that the family ${family} can have.`,
+    `Links for ${family} are ${list(legal)}; ${link} goes with ${list(families)}.`,
+    legal[0] === undefined ? null : writes("link", legal[0]),
+  )
+
+export const linkNotChosen = (link: string, family: string): Notice =>
+  notice(
+    "remark",
+    "link-not-chosen",
+    null,
+    heading,
+    `Nobody chose a link, so the canonical one of ${family} was taken: ${link}.`,
+    "Write it out if it is meant, or compare others on the two scales.",
+    writes("link", link),
+  )
+
+export const notANumber = (name: Name, clause: string, at: Place): Notice =>
+  fault("not-a-number", clause, at, `${name} is not a number here.`, "Name a dial or a value that is a finite number.")
+
+// The table and its columns.
+
+export const notATable = (name: Name, at: Place): Notice =>
+  fault("not-a-table", "data", at, `${name} is not a table.`, "Name a cell that begins with the word data.")
+
+export const noSuchColumn = (
+  name: Name,
+  table: Name,
+  clause: string,
+  at: Place,
+  near: Name | null,
+  columns: readonly Name[],
+  written: Clause | undefined,
+): Notice =>
+  fault(
+    "no-such-column",
+    clause,
+    at,
+    `${table} has no column ${name}.`,
+    near === null ? `Its columns are ${several(columns, 12)}.` : `The nearest of its columns is ${near}.`,
+    near === null ? null : puts(written, at, near),
+  )
+
+export const columnAndCell = (name: Name, table: Name, at: Place): Notice =>
+  fault(
+    "column-and-cell",
+    "offset",
+    at,
+    `${name} is a column of ${table} and the name of a cell, so it cannot be told which is meant.`,
+    "Give one of the two another name.",
+  )
+
+export const textColumn = (name: Name, clause: string, at: Place): Notice =>
+  fault(
+    "text-column",
+    clause,
+    at,
+    `${name} is text, and a text says nothing that can be counted or measured.`,
+    `If its entries are kinds of something, make it a category in the data: column ${name} category.`,
+  )
+
+export const wantsNumber = (name: Name, is: string, what: string, clause: string, at: Place): Notice =>
+  fault("wants-number", clause, at, `${capital(what)} needs a number, and ${name} is a ${is}.`, `Name a column of numbers or counts.`)
+
+export const callOfCategory = (name: Name, is: string, call: string, at: Place): Notice =>
+  fault(
+    "call-of-category",
+    "predictor",
+    at,
+    `${call} makes columns from a number, and ${name} is a ${is}.`,
+    `Write ${name} alone: it enters by differences from its first level.`,
+  )
+
+// The response.
+
+export const needsLevel = (name: Name, is: string, levels: readonly string[], at: Place): Notice =>
+  fault(
+    "needs-level",
+    "response",
+    at,
+    `${name} is a ${is}, and which of its levels counts as success is not said.`,
+    levels.length === 2 ? `Write ${name} is "…", with ${list(levels.map(quoted), "or")}.` : `Write ${name} is "…", with one of its levels.`,
+    levels.length === 2 ? writes("response", `${name} is ${quoted(levels[1] as string)}`) : null,
+  )
+
+export const noSuchLevel = (name: Name, level: string, levels: readonly string[], near: string | null, at: Place): Notice =>
+  fault(
+    "no-such-level",
+    "response",
+    at,
+    `${name} has no level ${quoted(level)}.`,
+    `Its levels are ${several(levels.map(quoted), 8)}.`,
+    near === null ? null : writes("response", `${name} is ${quoted(near)}`),
+  )
+
+export const moreThanTwoLevels = (name: Name, levels: readonly string[], at: Place): Notice =>
+  fault(
+    "more-than-two-levels",
+    "response",
+    at,
+    `${name} has ${levels.length} levels in the rows used (${several(levels.map(quoted), 4)}), and a binomial response has two.`,
+    `Make a truth of it in the data, such as: make is_first = ${name} = ${quoted(levels[0] ?? "")}.`,
+  )
+
+export const levelOfNumber = (name: Name, is: string, at: Place): Notice =>
+  fault(
+    "level-of-number",
+    "response",
+    at,
+    `${name} is a ${is} and has no levels.`,
+    `Write response ${name}, or make a truth of it in the data.`,
+    writes("response", name),
+  )
+
+export const responseNotOfFamily = (name: Name, is: string, family: string, wants: string, at: Place, mend: string | null = null): Notice =>
+  fault(
+    "response-not-of-family",
+    "response",
+    at,
+    `${capital(wants)} is what the family ${family} is for, and ${name} is a ${is}.`,
+    mend === null ? "Name a column of numbers or counts, or choose another family." : `The family ${mend} is for a ${is}.`,
+    mend === null ? null : writes("family", mend),
+  )
+
+export const trialsNotOfFamily = (family: string, at: Place): Notice =>
+  fault(
+    "trials-not-of-family",
+    "response",
+    at,
+    `Successes out of trials have the family binomial, and this one is ${family}.`,
+    "Choose family binomial, or name one column as the response.",
+    writes("family", "binomial"),
+  )
+
+export const levelNotOfFamily = (family: string, at: Place): Notice =>
+  fault(
+    "level-not-of-family",
+    "response",
+    at,
+    `Whether a category has a level is a matter for the family binomial, and this one is ${family}.`,
+    "Choose family binomial, or name a column of numbers as the response.",
+    writes("family", "binomial"),
+  )
+
+export const notZeroOrOne = (name: Name, at: RowsAt, row: RowName, shares: boolean, place: Place): Notice =>
+  fault(
+    "not-zero-or-one",
+    "response",
+    place,
+    `A binomial response without trials is 0 or 1, and not so ${name}: ${rowsSay(at, row)}.`,
+    shares
+      ? `Say successes out of trials, such as: response killed out of n; a share whose trials are not known is family quasi_likelihood(mu*(1 - mu)), which is not available yet.`
+      : `Say the trials, such as: response ${name} out of n.`,
+  )
+
+export const notWhole = (name: Name, at: RowsAt, row: RowName, place: Place): Notice =>
+  fault(
+    "not-whole",
+    "response",
+    place,
+    `${name} counts something, so it is whole: ${rowsSay(at, row)}.`,
+    "Name the column of counts; for shares the counts behind them are wanted.",
+  )
+
+export const countNotWhole = (name: Name, at: RowsAt, row: RowName, place: Place): Notice =>
+  fault(
+    "count-not-whole",
+    "response",
+    place,
+    `The family poisson is for counts, which are whole, and ${name} is not: ${rowsSay(at, row)}.`,
+    "A rate is a count with an exposure clause; other amounts with variance μ are family quasi_likelihood(mu), which is not available yet.",
+  )
+
+export const countNegative = (name: Name, at: RowsAt, row: RowName, place: Place): Notice =>
+  fault(
+    "count-negative",
+    "response",
+    place,
+    `${name} counts something, so it is not below 0: ${rowsSay(at, row)}.`,
+    "If the entry stands for a missing value, say so in the data with a missing clause.",
+  )
+
+export const moreThanTrials = (
+  successes: Name,
+  trials: Name,
+  at: RowsAt & { readonly trials: number },
+  row: RowName,
+  place: Place,
+): Notice =>
+  fault(
+    "more-than-trials",
+    "response",
+    place,
+    at.count === 1
+      ? `${capital(row(at.first))} has ${successes} ${numberSays(at.value)} out of ${trials} ${numberSays(at.trials)}.`
+      : `${rows(at.count)} have more ${successes} than ${trials} (first: ${row(at.first)}, with ${numberSays(at.value)} out of ${numberSays(at.trials)}).`,
+    "There are at most as many successes as trials; the two columns may stand the wrong way round.",
+  )
+
+export const notPositive = (name: Name, family: string, at: RowsAt, row: RowName, place: Place): Notice =>
+  fault(
+    "not-positive",
+    "response",
+    place,
+    `The family ${family} is for amounts above 0, and ${name} is not: ${rowsSay(at, row)}.`,
+    at.value === 0
+      ? "Amounts with exact zeros are family tweedie(p), which is not available yet; rows without an amount can be left out in the data with a where clause."
+      : "If the entry stands for a missing value, say so in the data with a missing clause.",
+  )
+
+// Exposure and weights.
+
+export const exposureNotOfFamily = (family: string, at: Place): Notice =>
+  fault(
+    "exposure-not-of-family",
+    "exposure",
+    at,
+    `A mean per unit of exposure is for means above 0, and those of the family ${family} can be below.`,
+    "Take the exposure away, or divide the response by it in the data.",
+    takesAway("exposure"),
+  )
+
+export const exposureNotOfLink = (link: string, at: Place): Notice =>
+  fault(
+    "exposure-not-of-link",
+    "exposure",
+    at,
+    `Under the link ${link} a binomial mean has no value per unit of exposure.`,
+    "With cloglog it has: log of the exposure is then added to the linear predictor.",
+    writes("link", "cloglog"),
+  )
+
+export const exposureNotPositive = (name: Name, at: RowsAt, row: RowName, place: Place): Notice =>
+  fault(
+    "exposure-not-positive",
+    "exposure",
+    place,
+    `An exposure is above 0, and ${name} is not: ${rowsSay(at, row)}.`,
+    "Leave rows without exposure out in the data with a where clause.",
+  )
+
+export const weightNegative = (clause: "repeat" | "precision", name: Name, at: RowsAt, row: RowName, place: Place): Notice =>
+  fault(
+    "weight-negative",
+    clause,
+    place,
+    `${clause === "repeat" ? "A row is not repeated less than 0 times" : "A precision is not below 0"}: ${rowsSay(at, row)}.`,
+    `Look at the column ${name} in the data.`,
+  )
+
+export const repeatNotWhole = (name: Name, at: RowsAt, row: RowName, place: Place): Notice =>
+  fault(
+    "repeat-not-whole",
+    "repeat",
+    place,
+    `A row is repeated a whole number of times, and ${name} is not whole: ${rowsSay(at, row)}.`,
+    "For weights that are not counts, precision is meant.",
+    { label: "Write precision instead", edits: [{ cell: null, clause: "repeat", nth: 0, says: name, keyword: "precision" }] },
+  )
+
+export const precisionCounts = (family: string, name: Name, at: Place): Notice =>
+  notice(
+    "remark",
+    "precision-counts",
+    "precision",
+    at,
+    `The dispersion of ${family} is one, so ${name} counts absolutely: doubled, it halves every variance.`,
+    null,
+  )
+
+export const exposureAsAmount = (exposure: Name, response: Name, at: Place): Notice =>
+  notice(
+    "remark",
+    "exposure-as-amount",
+    "exposure",
+    at,
+    `Fitted with the whole of ${response}, whose variance goes with the square of ${exposure}.`,
+    `That is another model than ${response} per unit of ${exposure} with precision ${exposure}, whose variance goes with ${exposure} itself.`,
+  )
+
+// Offset.
+
+export const offsetWantsNumber = (is: string, at: Place): Notice =>
+  fault("offset-wants-number", "offset", at, `An offset is a number, and this is a ${is}.`, "Write an expression whose value is a number.")
+
+export const offsetLost = (count: number, at: Place): Notice =>
+  notice(
+    "warning",
+    "offset-lost",
+    "offset",
+    at,
+    `In ${rows(count)} the offset has no finite value although its columns are there; ${count === 1 ? "it is" : "they are"} not used.`,
+    "Look for logarithms of 0 and divisions by 0.",
+  )
+
+export const pieceLost = (says: string, at: RowsAt, row: RowName, place: Place): Notice =>
+  notice(
+    "warning",
+    "piece-lost",
+    "predictor",
+    place,
+    `${says} has no finite value in ${rows(at.count)} (first: ${row(at.first)}, with ${numberSays(at.value)}); ${at.count === 1 ? "it is" : "they are"} not used.`,
+    "Make a column in the data that has a value there, or leave these rows out with a where clause.",
+  )
+
+// The rows used.
+
+export const noRows = (table: Name, unused: readonly { readonly by: string; readonly rows: number }[]): Notice =>
+  fault(
+    "no-rows",
+    null,
+    heading,
+    unused.length === 0
+      ? `${table} has no rows.`
+      : `No row of ${table} has everything the model needs: ${list(unused.map(({ by, rows: count }) => `${by} in ${rows(count)}`))}.`,
+    unused.length === 0 ? "Look at what its where clauses leave." : "Look at these columns in the data.",
+  )
+
+export const levelsDropped = (name: Name, levels: readonly string[], at: Place): Notice =>
+  notice(
+    "remark",
+    "levels-dropped",
+    "predictor",
+    at,
+    levels.length === 1
+      ? `The level ${quoted(levels[0] as string)} of ${name} is in none of the rows used and was left out.`
+      : `${writtenCount(levels.length)} levels of ${name} are in none of the rows used and were left out: ${several(levels.map(quoted), 6)}.`,
+    null,
+  )
+
+export const oneLevel = (name: Name, level: string, at: Place): Notice =>
+  notice(
+    "warning",
+    "one-level",
+    "predictor",
+    at,
+    `${name} is ${quoted(level)} in all rows used, so it says nothing about the response.`,
+    `Take ${name} out of the predictor.`,
+  )
+
+export const constantResponse = (name: string, value: string, at: Place): Notice =>
+  notice(
+    "warning",
+    "constant-response",
+    "response",
+    at,
+    `${name} is ${value} in all rows used, so there is nothing a predictor could explain.`,
+    null,
+  )
+
+// The fit.
+
+const fitHints = {
+  no_start: "Another link may reach the means of these data: log has no such limit, nor have the links onto shares.",
+  gave_up: "Look for a predictor on a very large scale, or for rows that stand far from all others.",
+} as const
+
+export const noFit = (why: "no_start" | "gave_up", detail: string): Notice =>
+  fault(
+    why === "no_start" ? "no-start" : "gave-up",
+    null,
+    heading,
+    why === "no_start" ? `No fit could be begun: ${detail}.` : `The fit was given up: ${detail}.`,
+    fitHints[why],
+  )
+
+/** Some column is a combination of others, so no data could tell their coefficients apart. */
+export const dependentTerm = (term: string, on: readonly string[], at: Place): Notice =>
+  notice(
+    "warning",
+    "dependent-term",
+    "predictor",
+    at,
+    on.length === 0
+      ? `The term ${term} is nought in all rows used, so it says nothing.`
+      : `The term ${term} says nothing that ${several(on, 6)} ${on.length === 1 ? "does" : "do"} not already say.`,
+    on.length === 0 ? `Take ${term} out of the predictor.` : `Take ${term} out of the predictor, or one of the others.`,
+  )
+
+export const moreDependentTerms = (terms: readonly string[], at: Place): Notice =>
+  notice(
+    "warning",
+    "dependent-term",
+    "predictor",
+    at,
+    `Of ${list(terms.slice(0, 6))}${terms.length > 6 ? ` and ${writtenCount(terms.length - 6)} more` : ""} the same is true: others already say what ${
+      terms.length === 1 ? "it says" : "they say"
+    }.`,
+    "Take terms out of the predictor.",
+  )
+
+export const gaveUp = (iterations: number, score: number): Notice =>
+  notice(
+    "warning",
+    "not-arrived",
+    null,
+    heading,
+    `The fit was given up after ${writtenCount(iterations)} steps with a scaled score of ${written(score, 2)}, so these numbers are not those of a maximum.`,
+    fitHints.gave_up,
+  )
+
+export const atBoundary = (): Notice =>
+  notice(
+    "warning",
+    "boundary",
+    null,
+    heading,
+    "The best fit lies where a mean reaches the end of what is possible, so errors in the usual sense do not exist.",
+    "A link that reaches only possible means has no such edge.",
+  )
+
+export const atInfinity = (terms: readonly string[]): Notice =>
+  notice(
+    "warning",
+    "infinite",
+    null,
+    heading,
+    `These data are fitted ever better as ${terms.length === 0 ? "a coefficient grows" : `${list(terms)} ${terms.length === 1 ? "grows" : "grow"}`} without end.`,
+    "Something separates the responses wholly; more data where both occur would settle it.",
+  )
+
+export const severalMaxima = (): Notice =>
+  notice("warning", "several-maxima", null, heading, "The likelihood has more than one maximum; the highest one found is shown.", null)
+
+export const profileNotYet = (at: Place): Notice =>
+  notice(
+    "remark",
+    "profile-not-yet",
+    "interval",
+    at,
+    "Profile intervals are not available yet, so Wald intervals are shown.",
+    "Write interval wald to mean these.",
+    writes("interval", "wald"),
+  )
+
+export const nothingLeft = (): Notice =>
+  notice(
+    "warning",
+    "nothing-left",
+    null,
+    heading,
+    "There are as many coefficients as rows, so nothing is left from which the dispersion could be judged, and errors are not available.",
+    "Take terms out of the predictor, or state the dispersion.",
+  )
+
+export const oneCluster = (name: Name, at: Place): Notice =>
+  notice(
+    "warning",
+    "one-cluster",
+    "standard_errors",
+    at,
+    `${name} is the same in all rows used, so there is one cluster, from which no sandwich errors can be had.`,
+    "Name a column that tells clusters apart.",
+  )

@@ -1,0 +1,146 @@
+// A model finding as blocks: what it comes to in a sentence, the equation, the coefficients, the fit in numbers, and quietly what rows it
+// stands on and what is certified about it.
+
+import type { Block, TableBlock, TableEntry } from "../block.ts"
+import { written, writtenCount, writtenProbability, writtenShare } from "../figure/number.ts"
+import type { ModelFinding } from "../model-finding.ts"
+import type { Coefficient } from "../statistics/fit.ts"
+import { effectSentences } from "./effect.ts"
+import { coefficientName, equation } from "./equation.ts"
+import { list, rows } from "./notices.ts"
+
+export function shown(found: ModelFinding): readonly Block[] {
+  const effects = effectSentences(found)
+  const blocks: Block[] = []
+  if (effects.length > 0) blocks.push({ type: "sentence", text: effects.join(" "), tone: "lead" })
+  return [
+    ...blocks,
+    { type: "formula", ...equation(found) },
+    coefficients(found),
+    { type: "sentence", text: fitSays(found), tone: "plain" },
+    { type: "sentence", text: `${rowsSay(found)} ${certificateSays(found)} ${errorsSay(found)}`, tone: "quiet" },
+  ]
+}
+
+/** Digits of a standard error, and most digits of an estimate. */
+const errorDigits = 3
+const mostDigits = 8
+
+function coefficients(found: ModelFinding): TableBlock {
+  const first = found.fit.coefficients[0]?.of === "intercept" ? 0 : 1
+  const share = writtenShare(found.problem.confidence, Number.isInteger(found.problem.confidence * 100) ? 0 : 1)
+  const law = found.fit.lawDf === null ? "the normal law" : `the t law on ${writtenCount(found.fit.lawDf)} degrees of freedom`
+  return {
+    type: "table",
+    caption: null,
+    columns: [
+      { head: "", says: "The coefficient and the column it belongs to", align: "text" },
+      { head: "estimate", says: null, align: "number" },
+      { head: "standard error", says: null, align: "number" },
+      { head: `${share} interval`, says: `The estimate and so many standard errors to both sides, by ${law} (Wald)`, align: "number" },
+      { head: "ratio", says: "The estimate over its standard error", align: "number" },
+      { head: "p", says: `Two-sided, by ${law}`, align: "number" },
+    ],
+    rows: found.fit.coefficients.map((of, j) => coefficientRow(of, j + first)),
+    folded: false,
+  }
+}
+
+function coefficientRow(of: Coefficient, index: number): readonly TableEntry[] {
+  const head = `${coefficientName(index)} ${of.of}`
+  if (of.beta === null) {
+    const why = of.toward === null ? "not told apart" : of.toward === "infinity" ? "∞" : "−∞"
+    return [head, why, null, null, null, null]
+  }
+  const digits = estimateDigits(of.beta, of.standardError)
+  return [
+    head,
+    { value: of.beta, digits },
+    of.standardError === null ? null : { value: of.standardError, digits: errorDigits },
+    of.low === null || of.high === null ? null : { from: of.low, to: of.high, digits },
+    of.ratio === null ? null : { value: of.ratio, digits: 3 },
+    of.p === null ? null : writtenProbability(of.p),
+  ]
+}
+
+/** An estimate is written to where its standard error has its second digit. */
+function estimateDigits(beta: number, error: number | null): number {
+  if (error === null || !(error > 0) || beta === 0) return 4
+  return Math.max(2, Math.min(mostDigits, 2 + exponentOf(beta) - exponentOf(error)))
+}
+
+const exponentOf = (value: number): number => Number(value.toExponential().split("e")[1])
+
+function fitSays({ fit, problem }: ModelFinding): string {
+  const parts: string[] = []
+  if (fit.deviance !== null) parts.push(`Deviance ${written(fit.deviance, 4)} on ${writtenCount(fit.df)} degrees of freedom`)
+  if (fit.dispersion.by !== "one" && fit.dispersion.value !== null) {
+    const by = { pearson: "by Pearson's X²", deviance: "by the deviance", likelihood: "by maximum likelihood", one: "" }
+    parts.push(
+      `dispersion ${written(fit.dispersion.value, 4)} ${typeof fit.dispersion.by === "number" ? "as stated" : by[fit.dispersion.by]}`,
+    )
+  }
+  if (fit.logLikelihood !== null) parts.push(`log-likelihood ${written(fit.logLikelihood, 5)}`)
+  if (fit.aic !== null) parts.push(`AIC ${written(fit.aic, 5)}`)
+  const sentences = [`${parts.join("; ")}.`]
+  const test = fit.fitTest.find(({ by }) => by === "deviance")
+  if (test !== undefined && problem.trials !== null)
+    sentences.push(`Such a deviance or more would come by chance with p ${pSays(test.p)}, were the model right.`)
+  if (fit.goodnessOfLink !== null)
+    sentences.push(
+      `Beside the predictors, η² has a score of ${written(fit.goodnessOfLink.statistic, 3)} (p ${pSays(fit.goodnessOfLink.p)}): ${linkVerdict(fit.goodnessOfLink.p)}.`,
+    )
+  return sentences.join(" ")
+}
+
+const pSays = (p: number): string => {
+  const says = writtenProbability(p)
+  return /^[a-z]/.test(says) ? says : `= ${says}`
+}
+
+/** Where the data begin to speak against the link. */
+const doubtful = 0.05
+
+const linkVerdict = (p: number): string =>
+  p < doubtful ? "these data speak against the link, or for curvature" : "no sign against the link"
+
+function rowsSay({ fit, unused, problem }: ModelFinding): string {
+  const counted = problem.repeat === null ? "" : `, standing for n = ${writtenCount(fit.n)}`
+  const used = `${rows(fit.rows)} used${counted}`
+  if (unused.length === 0) return `${used}.`
+  return `${used}; not used: ${list(unused.map(({ by, rows: count }) => `${rows(count)} where ${by}`))}.`
+}
+
+function certificateSays({ fit }: ModelFinding): string {
+  const { certificate } = fit
+  const steps = `${writtenCount(certificate.iterations)} ${certificate.iterations === 1 ? "step" : "steps"}`
+  switch (certificate.class) {
+    case "interior":
+      return certificate.global
+        ? `The maximum of the likelihood, reached in ${steps}; there is no other.`
+        : `A maximum of the likelihood, reached in ${steps}; with this family and link there may be others.`
+    case "unidentified":
+      return `The maximum of the likelihood, reached in ${steps}; not every coefficient can be told apart.`
+    case "boundary":
+      return `The best fit at the edge of the possible means, reached in ${steps}.`
+    case "infinite":
+      return `The likelihood grows without end; what is shown is its limit, after ${steps}.`
+    case "several_maxima":
+      return `The highest of several maxima, reached in ${steps}.`
+    case "gave_up":
+      return `No maximum: given up after ${steps}.`
+  }
+}
+
+function errorsSay({ problem, fit }: ModelFinding): string {
+  switch (problem.standardErrors) {
+    case "expected":
+      return "Standard errors from the expected information."
+    case "observed":
+      return "Standard errors from the observed information."
+    case "sandwich":
+      return fit.clusters === null
+        ? "Sandwich standard errors by row."
+        : `Sandwich standard errors by ${writtenCount(fit.clusters)} clusters.`
+  }
+}

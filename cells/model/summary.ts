@@ -1,0 +1,94 @@
+// A model finding as the file and `--json` hold it: the members of the format, no more. Numbers in full; null is "not available", and an
+// infinity is a word, since JSON has no number for it.
+
+import type { Json } from "../../runtime/value.ts"
+import type { ModelFinding } from "../model-finding.ts"
+import type { Coefficient, Fit } from "../statistics/fit.ts"
+
+/** Covariances of more coefficients than this would be most of the file. */
+const mostCovariances = 100
+
+export function summary(found: ModelFinding): Json {
+  const { fit, problem } = found
+  return {
+    rows: fit.rows,
+    n: fit.n,
+    rank: fit.rank,
+    parameters_counted: fit.parametersCounted,
+    family: problem.family.name,
+    link: found.link,
+    parameters: [],
+    coefficients: fit.coefficients.map(coefficient),
+    covariance: covariance(fit),
+    fit: { deviance: number(fit.deviance), df: fit.df, log_likelihood: number(fit.logLikelihood) },
+    intercept_only: fit.interceptOnly === null ? null : { deviance: number(fit.interceptOnly.deviance), df: fit.interceptOnly.df },
+    criteria: { aic: number(fit.aic), bic: number(fit.bic) },
+    pearson: number(fit.pearson),
+    fit_test: fit.fitTest.map(({ by, df, p }) => ({ by, df, p: number(p) })),
+    dispersion: { value: number(fit.dispersion.value), by: typeof fit.dispersion.by === "number" ? "number" : fit.dispersion.by },
+    certificate: {
+      class: fit.certificate.class,
+      global: fit.certificate.global,
+      iterations: fit.certificate.iterations,
+      scaled_score: number(fit.certificate.scaledScore),
+      condition: number(fit.certificate.condition),
+      evidence: fit.certificate.evidence,
+    },
+    standard_errors: { by: problem.standardErrors, clusters: fit.clusters },
+    goodness_of_link:
+      fit.goodnessOfLink === null
+        ? null
+        : {
+            by: "score of eta squared",
+            statistic: number(fit.goodnessOfLink.statistic),
+            df: fit.goodnessOfLink.df,
+            p: number(fit.goodnessOfLink.p),
+          },
+    mean_range: { possible: fit.meanRange.possible.map(number), fitted: fit.meanRange.fitted.map(number), leaves_at: [] },
+  }
+}
+
+/** What the trail notes of a fit that was shown. */
+export function tried(found: ModelFinding): readonly Json[] {
+  const { fit, problem } = found
+  return [
+    {
+      family: problem.family.name,
+      link: found.link,
+      predictor: predictorSays(found),
+      n: fit.n,
+      deviance: number(fit.deviance),
+      df: fit.df,
+      aic: number(fit.aic),
+    },
+  ]
+}
+
+/** The predictor as its clause would say it, terms written out. */
+export const predictorSays = ({ problem }: ModelFinding): string => {
+  const terms = problem.terms.map(({ says }) => says).join(" + ")
+  return terms === "" ? "intercept" : problem.intercept ? terms : `${terms} - intercept`
+}
+
+function coefficient(of: Coefficient): Json {
+  return {
+    of: of.of,
+    beta: number(of.beta),
+    toward: of.toward,
+    standard_error: number(of.standardError),
+    wald: { ratio: number(of.ratio), p: number(of.p) },
+    interval: of.low === null || of.high === null ? null : [number(of.low), number(of.high)],
+    interval_by: "wald",
+  }
+}
+
+/** The lower triangle by rows; null where there are too many coefficients, and where there are no errors at all. */
+function covariance({ covariance: lower, coefficients }: Fit): Json {
+  if (coefficients.length > mostCovariances || lower.every(Number.isNaN)) return null
+  return coefficients.map((_, row) =>
+    Array.from({ length: row + 1 }, (_, column) => number(lower[(row * (row + 1)) / 2 + column] as number)),
+  )
+}
+
+const number = (value: number | null): Json =>
+  value === null || Number.isNaN(value) ? null : value === Infinity ? "infinity" : value === -Infinity ? "-infinity" : value
