@@ -573,6 +573,8 @@ export function createEngine(options: EngineOptions): Engine {
         if (!standsStill(reader)) differ.push(reader)
       } else {
         reader.blockers.delete(entry)
+        // It may have been made ready on published parts, which is to be decided anew now that more is known.
+        reader.prepared = null
         if (reader.blockers.size === 0 || isBad) enqueue(reader)
       }
     }
