@@ -18,7 +18,11 @@ export const unknownClause = (at: Place, kind: string, keyword: string, near: st
     "clause/unknown",
     at,
     `A ${kind} has no clause ${keyword}.`,
-    near === null ? `Its clauses are ${listed(known, "and")}.` : `The nearest of its clauses is ${near}.`,
+    near !== null
+      ? `The nearest of its clauses is ${near}.`
+      : known.length === 0
+        ? `A ${kind} is said on its heading line alone.`
+        : `Its clauses are ${listed(known, "and")}.`,
   )
 
 export const clauseTwice = (at: Place, keyword: string): Slip =>
