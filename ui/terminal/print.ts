@@ -4,7 +4,7 @@
 import type { Block, DialBlock, ScalesBlock, ScalesCandidate, ScalesCurve, TableBlock, TableEntry, Tape } from "../../cells/block.ts"
 import type { CellId } from "../../runtime/document.ts"
 import type { Shown } from "../../runtime/evaluator.ts"
-import { absent, written, writtenCount, writtenFixed, writtenRange } from "../drawing/number.ts"
+import { absent, decimalsOf, written, writtenCount, writtenFixed, writtenRange, writtenShare } from "../drawing/number.ts"
 import type { Finding, PlacedNotice } from "./findings.ts"
 import { type Column, textTable } from "./text-table.ts"
 
@@ -33,10 +33,7 @@ export function blockLines(block: Block, width: number): readonly string[] {
     case "figure":
       return wrapped(block.text, width)
     case "prose":
-      return block.markdown
-        .trim()
-        .split("\n")
-        .flatMap((line) => wrapped(line, width))
+      return paragraphs(block.markdown).flatMap((line) => wrapped(line, width))
     case "table":
       return tableLines(block)
     case "tapes":
@@ -59,7 +56,10 @@ function cellText(finding: Finding, printing: Printing): string {
   const lines: string[] = []
   const show = (shown: Shown | null): void => {
     // Only blocks of cells/block.ts come from our kinds; the runtime knows them by less.
-    for (const block of (shown?.blocks ?? []) as readonly Block[]) lines.push(...blockLines(block, inside), "")
+    for (const block of (shown?.blocks ?? []) as readonly Block[]) {
+      const said = blockLines(block, inside)
+      if (said.length > 0) lines.push(...said, "")
+    }
   }
   let status = ""
   switch (state.status) {
@@ -112,7 +112,8 @@ function noticeLines(notice: PlacedNotice, title: string, cell: CellId, { width,
 
 function tableLines(table: TableBlock): readonly string[] {
   const caption = table.caption === null ? [] : [table.caption]
-  if (table.folded) return [`${table.caption ?? "A table"}: ${writtenCount(table.rows.length)} rows, not shown here.`]
+  // It repeats in full what is shown beside it; who asks for it here asks for `--json`.
+  if (table.folded) return []
   const shown = table.rows.length > mostRows ? table.rows.slice(0, mostRows - 1) : table.rows
   const columns = table.columns.map(
     ({ head, align }, i): Column => ({ head, align, entries: shown.map((row) => entryText(row[i] ?? null)) }),
@@ -142,10 +143,12 @@ function tapeLines(tape: Tape, width: number): readonly string[] {
 
 function scalesLines(block: ScalesBlock, width: number): readonly string[] {
   const chosen = block.candidates.find((candidate) => candidate.chosen) ?? block.candidates[0]
-  const held = block.held === null ? [] : wrapped(block.held, width)
+  const held = block.held === null || block.summary.includes(block.held) ? [] : wrapped(block.held, width)
   const curves = chosen === undefined ? [] : chosen.curves.flatMap((curve) => [...curveLines(block, chosen, curve), ""])
   const strip = block.candidates.length < 2 ? [] : [...stripLines(block.candidates), ""]
-  return [...wrapped(block.summary, width), ...held, "", ...curves, ...strip].filter((line, i, all) => line !== "" || all[i - 1] !== "")
+  const lines = [...wrapped(block.summary, width), ...held, "", ...curves, ...strip]
+  while (lines.at(-1) === "") lines.pop()
+  return lines
 }
 
 function curveLines(block: ScalesBlock, candidate: ScalesCandidate, curve: ScalesCurve): readonly string[] {
@@ -162,7 +165,7 @@ function curveLines(block: ScalesBlock, candidate: ScalesCandidate, curve: Scale
     entries: picks.map((i) => (Number.isNaN(low[i] ?? Number.NaN) ? absent : writtenRange(low[i] ?? Number.NaN, high[i] ?? Number.NaN, 4))),
   })
   const outside = picks.map((i) => (curve.inside[i] === 0 ? "outside the data" : ""))
-  const percent = `${written(confidence * 100, 3).replace(/\.?0+$/, "")}%`
+  const share = writtenShare(confidence, decimalsOf(confidence * 100))
   const x: Column =
     across.levels === null
       ? column(across.name, curve.x)
@@ -174,9 +177,9 @@ function curveLines(block: ScalesBlock, candidate: ScalesCandidate, curve: Scale
     ...textTable([
       x,
       column("μ", curve.mu),
-      range(`${percent} of μ`, curve.muLow, curve.muHigh),
+      range(`${share} of μ`, curve.muLow, curve.muHigh),
       column("η", curve.eta),
-      range(`${percent} of η`, curve.etaLow, curve.etaHigh),
+      range(`${share} of η`, curve.etaLow, curve.etaHigh),
       ...(outside.some((word) => word !== "") ? [{ head: "", align: "text" as const, entries: outside }] : []),
     ]),
   ]
@@ -200,6 +203,25 @@ function dialLine({ name, range, choices, value }: DialBlock): string {
   if (range === null) return `${name} = ${value} (of ${(choices ?? []).join(", ")})`
   const at = (number: number): string => writtenFixed(number, range.digits)
   return `${name} = ${typeof value === "number" ? at(value) : value} (from ${at(range.from)} to ${at(range.to)} in steps of ${at(range.step)})`
+}
+
+/** CommonMark text with the lines of each paragraph joined, since they were broken for another width; all else line by line. */
+function paragraphs(markdown: string): readonly string[] {
+  const lines: string[] = []
+  let fenced = false
+  let open = false
+  for (const line of markdown.trim().split("\n")) {
+    const fence = /^\s*(```|~~~)/.test(line)
+    if (fence) fenced = !fenced
+    const alone = fenced || fence || /^\s*(#|>|\||$)/.test(line) || (!open && /^ {4}/.test(line))
+    const begins = /^\s*([-*+]|\d+[.)])\s/.test(line)
+    const last = lines.at(-1)
+    if (!alone && !begins && open && last !== undefined) lines[lines.length - 1] = `${last} ${line.trim()}`
+    else lines.push(line)
+    // Two spaces or a backslash at its end break a line on purpose.
+    open = !alone && !/( {2}|\\)$/.test(line)
+  }
+  return lines
 }
 
 /** A text broken between words into lines of at most so many signs; a longer word stands alone. */

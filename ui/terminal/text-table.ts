@@ -24,12 +24,25 @@ export function textTable(columns: readonly Column[]): readonly string[] {
 
 const gap = "   "
 
-/** Numbers on their points; what is no single number (an interval, a word) stands at the right end. */
+/** Numbers on their points, intervals with both ends on theirs; what is neither (a word, a power of ten) stands at the right end. */
 function numbers(entries: readonly string[]): readonly string[] {
-  const single = entries.map((entry) => /^[−+]?[\d\u202f]+(\.\d+)?$/u.test(entry))
-  const aligned = pointAligned(entries.filter((_, i) => single[i]))
-  let taken = 0
-  return entries.map((entry, i) => (single[i] ? (aligned[taken++] ?? entry) : entry))
+  const aligned = aligning(entries.filter(isNumber), pointAligned)
+  const intervals = aligning(entries.filter(isInterval), (all) => {
+    const ends = all.map((entry) => entry.split(" to "))
+    const [low, high] = [pointAligned(ends.map(([from = ""]) => from)), pointAligned(ends.map(([, to = ""]) => to))]
+    return all.map((_, i) => `${low[i]} to ${high[i]}`)
+  })
+  return entries.map((entry) => (isNumber(entry) ? aligned() : isInterval(entry) ? intervals() : entry))
 }
+
+/** Aligns some of the entries and hands them out in order. */
+function aligning(some: readonly string[], align: (all: readonly string[]) => readonly string[]): () => string {
+  const aligned = align(some)
+  let taken = 0
+  return () => aligned[taken++] ?? ""
+}
+
+const isNumber = (entry: string): boolean => /^[−+]?[\d\u202f]+(\.\d+)?$/u.test(entry)
+const isInterval = (entry: string): boolean => entry.split(" to ").length === 2 && entry.split(" to ").every(isNumber)
 
 const signs = (text: string): number => [...text].length

@@ -45,13 +45,13 @@ describe("blocks as text", () => {
     ])
   })
 
-  it("shows no more rows of a table than a screen holds, and names one that is folded", () => {
+  it("shows no more rows of a table than a screen holds, and leaves out one that is folded", () => {
     const rows = Array.from({ length: 100 }, (_, i) => [`row ${i}`])
     const block: Block = { type: "table", caption: "Rows", columns: [{ head: "row", says: null, align: "text" }], rows, folded: false }
     const lines = blockLines(block, 80)
     expect(lines).toHaveLength(2 + 39 + 1)
     expect(lines.at(-1)).toBe("and 61 more rows")
-    expect(blockLines({ ...block, folded: true }, 80)).toEqual(["Rows: 100 rows, not shown here."])
+    expect(blockLines({ ...block, folded: true }, 80)).toEqual([])
   })
 
   it("prints a column of data in words", () => {
@@ -143,18 +143,17 @@ describe("blocks as text", () => {
       "Held: night at 3.",
       "",
       "killed under logit, η = ln(μ/(1 − μ))",
-      "  dose        μ           95% of μ        η           95% of η",
+      "  dose        μ          95\u202f% of μ        η          95\u202f% of η",
       " 0       0        0.0000 to 0.5000   −5.000   −6.000 to −4.000",
     ])
     expect(lines[6]).toContain("1.300")
     expect(lines[6]).not.toContain("outside")
     expect(lines.filter((line) => line.endsWith("outside the data"))).toHaveLength(4)
-    expect(lines.slice(-5)).toEqual([
+    expect(lines.slice(-4)).toEqual([
       "link     ΔAIC",
       "logit     0     the model's own",
       "probit   12.3",
       "log         —   no start was found",
-      "",
     ])
   })
 
@@ -163,6 +162,13 @@ describe("blocks as text", () => {
     expect(blockLines({ type: "formula", formula: { type: "row", of: [] }, text: "ln μ = β₀" }, 80)).toEqual(["ln μ = β₀"])
     expect(blockLines({ type: "figure", figure: { panels: [] }, text: "It bends." }, 80)).toEqual(["It bends."])
     expect(blockLines({ type: "prose", markdown: "# A\n\n- b\n" }, 80)).toEqual(["# A", "", "- b"])
+  })
+
+  it("joins the lines of a paragraph, and leaves lists, titles and code as they are", () => {
+    const markdown = "# A\n\nOne\ntwo.\n\n- b\n  more\n- c\n\n```\nx\ny\n```\nBroken  \nhere."
+    expect(blockLines({ type: "prose", markdown }, 80)).toEqual([
+      ...["# A", "", "One two.", "", "- b more", "- c", "", "```", "x", "y", "```", "Broken  ", "here."],
+    ])
   })
 
   it("breaks lines between words and keeps the long ones", () => {
