@@ -88,7 +88,7 @@ function changed(found: ModelFinding, verb: Verb, { beta, low, high }: Coefficie
 }
 
 /** A factor beyond this is no longer something one can picture. */
-const largestLogFactor = 3
+const largestLogFactor = 4
 
 /**
  * A step along a column in which its effect can be pictured: one where that is a step within the data and neither huge nor tiny in effect,

@@ -66,7 +66,7 @@ function coefficientRow(of: Coefficient, index: number): readonly TableEntry[] {
 /** An estimate is written to where its standard error has its second digit. */
 function estimateDigits(beta: number, error: number | null): number {
   if (error === null || !(error > 0) || beta === 0) return 4
-  return Math.max(2, Math.min(mostDigits, 2 + exponentOf(beta) - exponentOf(error)))
+  return Math.max(3, Math.min(mostDigits, 2 + exponentOf(beta) - exponentOf(error)))
 }
 
 const exponentOf = (value: number): number => Number(value.toExponential().split("e")[1])
