@@ -213,7 +213,7 @@ function paragraphs(markdown: string): readonly string[] {
   for (const line of markdown.trim().split("\n")) {
     const fence = /^\s*(```|~~~)/.test(line)
     if (fence) fenced = !fenced
-    const alone = fenced || fence || /^\s*(#|>|\||$)/.test(line) || (!open && /^ {4}/.test(line))
+    const alone: boolean = fenced || fence || /^\s*(#|>|\||$)/.test(line) || (!open && /^ {4}/.test(line))
     const begins = /^\s*([-*+]|\d+[.)])\s/.test(line)
     const last = lines.at(-1)
     if (!alone && !begins && open && last !== undefined) lines[lines.length - 1] = `${last} ${line.trim()}`
