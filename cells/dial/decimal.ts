@@ -16,11 +16,11 @@ export function decimalFrom(text: string): Decimal | null {
   if (shift > mostDigits || whole.length - shift + fraction.length > 2 * mostDigits || whole.length + fraction.length > 2 * mostDigits)
     return null
   const units = BigInt(sign + whole + fraction)
-  return shift >= 0 ? { units, digits: shift } : { units: units * 10n ** BigInt(-shift), digits: 0 }
+  return shift >= 0 ? { units, digits: shift } : { units: units * tenTo(-shift), digits: 0 }
 }
 
 /** The same number with more digits. */
-export const withDigits = (of: Decimal, digits: number): Decimal => ({ units: of.units * 10n ** BigInt(digits - of.digits), digits })
+export const withDigits = (of: Decimal, digits: number): Decimal => ({ units: of.units * tenTo(digits - of.digits), digits })
 
 /** As a clause says it: all its digits, and no sign before a zero. */
 export function decimalText({ units, digits }: Decimal): string {
@@ -31,3 +31,6 @@ export function decimalText({ units, digits }: Decimal): string {
 
 /** The double nearest to it. */
 export const numberOf = (of: Decimal): number => Number(decimalText(of))
+
+/** 10^digits, for digits ≥ 0. */
+export const tenTo = (digits: number): bigint => BigInt(`1${"0".repeat(digits)}`)

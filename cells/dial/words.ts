@@ -6,7 +6,7 @@ import { nearest } from "../../runtime/nearest.ts"
 import type { Notice, Place } from "../../runtime/notice.ts"
 import type { Name } from "../../runtime/value.ts"
 import { type Filled, type Matched, readClauses } from "../language/form.ts"
-import { type Decimal, decimalFrom, decimalText, numberOf, withDigits } from "./decimal.ts"
+import { type Decimal, decimalFrom, decimalText, numberOf, tenTo, withDigits } from "./decimal.ts"
 import * as say from "./notices.ts"
 
 export type DialSaid = {
@@ -154,7 +154,7 @@ function startStep(start: Matched | null, { low, one, steps, common }: Steps, te
     return null
   }
   const digits = Math.max(common, given.decimal.digits)
-  const scale = 10n ** BigInt(digits - common)
+  const scale = tenTo(digits - common)
   const beyond = withDigits(given.decimal, digits).units - low * scale
   const length = one * scale
   const k = beyond / length
@@ -174,7 +174,7 @@ function exact(filled: Filled | undefined): { readonly text: string; readonly nu
 
 /** A decimal whose last digits are zeros, without them. */
 const shortened = ({ units, digits }: Decimal, wanted: number): Decimal => ({
-  units: units / 10n ** BigInt(digits - wanted),
+  units: units / tenTo(digits - wanted),
   digits: wanted,
 })
 

@@ -18,12 +18,12 @@ import { type Allowed, expressionFrom, numberFrom, textFrom } from "./expression
 import { type Item, parsedForms, writtenForms } from "./form-pattern.ts"
 import {
   clauseTwice,
-  fractionAt,
   hugeNumber,
   moreInHeading,
   nameMissing,
   nearWord,
   notAvailableYet,
+  numberSlipAt,
   openText,
   reservedName,
   unexpected,
@@ -83,7 +83,7 @@ export function match(
 /**
  * Reads all clauses of a statement by the words of its kind. Gives the faults every kind shares: an unknown clause (with the nearest
  * keyword and a mend), a clause said twice, a clause not available yet, tokens after the name in the heading, a missing name. What may
- * follow the name is said by `words.heading`; it comes as a clause with the kind's word for a keyword and −1 for a place.
+ * follow the name is said by `words.heading`; it comes as a clause with the start of the heading for a keyword and −1 for a place.
  */
 export function readClauses(
   statement: Statement,
@@ -132,7 +132,7 @@ function readHeading(statement: Statement, words: AnyWords): { readonly matched:
     notices.push(noticeFrom(reservedName({ clause: -1, from: first - 1, to: first }, name, "heading"), null, 0))
   if (words.heading !== undefined) {
     if (name === null && rest.length > 0) notices.push(noticeFrom(nameMissing(words.word), null, 0))
-    const { matched, slips } = read(words.word, rest, -1, first, words.heading)
+    const { matched, slips } = read(`${words.word} ${name ?? "NAME"}`, rest, -1, first, words.heading)
     return { matched, notices: [...notices, ...slips.map((slip) => noticeFrom(slip, null, 0))] }
   }
   const [more] = rest
@@ -163,7 +163,7 @@ function read(
 
   const matcher = new Matcher(tokens, clause, first)
   for (const [form, items] of forms.entries()) {
-    const found = matcher.run(items, 0, { at: 0, slots: null, words: null }, (state) => matcher.ended(state))
+    const found = matcher.fitted(items, form)
     if (found === null) continue
     const inOrder: { readonly label: string; readonly filled: Filled }[] = []
     for (let slot = found.slots; slot !== null; slot = slot.before) inOrder.push(slot)
@@ -204,6 +204,9 @@ class Matcher {
   /** Words of the forms that would fit at the farthest token, for the nearest. */
   private fitting: string[] = []
   private inner: readonly Slip[] | null = null
+  /** Which forms fit as far as the farthest token. */
+  private reaching = new Set<number>()
+  private form = 0
 
   constructor(tokens: readonly Token[], clause: number, first: number) {
     this.tokens = tokens
@@ -211,7 +214,13 @@ class Matcher {
     this.first = first
   }
 
-  run(items: readonly Item[], index: number, state: Reached, then: Then): Reached | null {
+  /** The way the tokens fit one form to their end; null where they do not. */
+  fitted(items: readonly Item[], form: number): Reached | null {
+    this.form = form
+    return this.run(items, 0, { at: 0, slots: null, words: null }, (state) => this.ended(state))
+  }
+
+  private run(items: readonly Item[], index: number, state: Reached, then: Then): Reached | null {
     const item = items[index]
     if (item === undefined) return then(state)
     const next: Then = (reached) => this.run(items, index + 1, reached, then)
@@ -251,20 +260,21 @@ class Matcher {
     }
   }
 
-  ended(state: Reached): Reached | null {
-    return state.at >= this.tokens.length ? state : this.off(state.at, "the end of the clause", [])
-  }
-
   slips(keyword: string, written: readonly string[]): readonly Slip[] {
     if (this.inner !== null) return this.inner
     const at = this.place(this.farthest, Math.min(this.farthest + 1, this.tokens.length))
     const found = this.tokens[this.farthest]
-    const fraction = this.fraction()
-    if (fraction !== null) return [fraction]
-    const after = this.tokens[this.farthest - 1]?.text ?? null
-    const slip = unexpected(at, keyword, after, found?.text ?? null, [...new Set(this.expected)], written)
+    const number = this.numberSlip()
+    if (number !== null) return [number]
+    const after = this.tokens[this.farthest - 1] ?? null
+    const forms = written.filter((_, form) => this.reaching.has(form))
+    const slip = unexpected(at, keyword, after, found ?? null, [...new Set(this.expected)], forms)
     const near = found?.type === "word" ? nearest(textOf(found), this.fitting) : null
     return [near === null ? slip : nearWord(slip, at, near)]
+  }
+
+  private ended(state: Reached): Reached | null {
+    return state.at >= this.tokens.length ? state : this.off(state.at, "the end of the clause", [])
   }
 
   private slot(item: Extract<Item, { type: "slot" }>, at: number): { readonly filled: Filled; readonly end: number } | null {
@@ -417,9 +427,11 @@ class Matcher {
       this.farthest = at
       this.expected = []
       this.fitting = []
+      this.reaching = new Set()
       this.inner = null
     }
     if (at === this.farthest) {
+      this.reaching.add(this.form)
       this.expected.push(expected)
       this.fitting.push(...words)
     }
@@ -438,9 +450,9 @@ class Matcher {
     return null
   }
 
-  private fraction(): Slip | null {
+  private numberSlip(): Slip | null {
     const source = sourceOf(this.tokens, this.clause, this.first)
-    return fractionAt(source, this.farthest) ?? fractionAt(source, this.farthest + 1)
+    return numberSlipAt(source, this.farthest) ?? numberSlipAt(source, this.farthest + 1)
   }
 
   private place(from: number, to: number): Place {

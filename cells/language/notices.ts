@@ -3,7 +3,7 @@
 
 import type { Place } from "../../runtime/notice.ts"
 import type { Token } from "../../runtime/statement.ts"
-import type { FunctionWords } from "./functions.ts"
+import { type FunctionWords, functions } from "./functions.ts"
 import type { Put, Slip } from "./slip.ts"
 import { placeAt, type Source } from "./source.ts"
 
@@ -41,19 +41,19 @@ export const notAvailableYet = (at: Place, what: string): Slip =>
     "It belongs to the language and comes with a later version; until then this cell needs to do without it.",
   )
 
-/** `after` is the text of the token before the place, `found` that at it; null for the keyword and for the end of the clause. */
+/** `after` is the token before the place, `found` that at it; null for the keyword and for the end of the clause. */
 export const unexpected = (
   at: Place,
   keyword: string,
-  after: string | null,
-  found: string | null,
+  after: Token | null,
+  found: Token | null,
   expected: readonly string[],
   written: readonly string[],
 ): Slip => {
   const text =
     found === null
-      ? `The clause ${keyword} ends too soon${after === null ? "" : `, after ${after}`}.`
-      : `After ${after ?? keyword}, ${found} does not fit.`
+      ? `The clause ${keyword} ends too soon${after === null ? "" : `, after ${quoted(after)}`}.`
+      : `After ${after === null ? keyword : quoted(after)}, ${quoted(found)} does not fit.`
   const hint = `What fits here is ${listed(expected, "or")}; the clause is written ${listed(written.slice(0, 3), "or")}.`
   return fault("clause/unexpected", at, text, hint)
 }
@@ -153,8 +153,8 @@ export function brokenPlace(source: Source, index: number): Slip {
   const here = source.first + index
   if (token === undefined) return endsTooSoon(source, at, before)
 
-  const fraction = fractionAt(source, index)
-  if (fraction !== null) return fraction
+  const number = numberSlipAt(source, index)
+  if (number !== null) return number
   const pair = foreignSigns.find(({ tokens }) => {
     const [first, second] = tokens
     return second === undefined
@@ -178,7 +178,7 @@ export function brokenPlace(source: Source, index: number): Slip {
       },
     )
   }
-  if (comparisons.has(token.text)) {
+  if (comparisons.has(token.text) && !wantsValue(before)) {
     const chain = chainedComparison(source, index)
     if (chain !== null) return chain
   }
@@ -202,6 +202,13 @@ export function brokenPlace(source: Source, index: number): Slip {
         label: `Write ${before.text}*${token.text}`,
         puts: [{ from: here - 1, to: here + 1, text: `${before.text}*${token.text}` }],
       },
+    )
+  if (before?.type === "word" && functions.has(before.text) && token.text !== "(")
+    return fault(
+      "expression/call-brackets",
+      at,
+      `${before.text} is a function, and what it takes stands in brackets.`,
+      `It is written ${functions.get(before.text)?.form}.`,
     )
   return fault(
     "expression/unexpected",
@@ -345,7 +352,20 @@ const fault = (code: string, at: Place, text: string, hint: string | null, mend:
   mend,
 })
 
-const quoted = (token: Token): string => (token.type === "text" ? `the text ${token.text}` : token.text)
+/** A token as it stands in a sentence: a sign by name, since `after 1, , does not fit` is hard to read. */
+const quoted = (token: Token): string =>
+  token.type === "text"
+    ? `the text ${token.text}`
+    : token.type === "symbol"
+      ? (signNames[token.text] ?? `the sign ${token.text}`)
+      : token.text
+
+const signNames: Readonly<Record<string, string>> = {
+  ",": "the comma",
+  ".": "the point",
+  "(": "the opening bracket",
+  ")": "the closing bracket",
+}
 
 const reservedHints: Readonly<Record<string, string>> = {
   mu: "mu stands for the mean in a link and in quasi_likelihood(…) only.",
@@ -399,6 +419,7 @@ const predictorHints: Readonly<Record<string, string>> = {
 /** Pairs of tokens (or one) that mean something elsewhere, with what they are called here. */
 const foreignSigns: readonly { readonly tokens: readonly [string, string?]; readonly write: string }[] = [
   { tokens: ["=", "="], write: "=" },
+  { tokens: ["!=", "="], write: "!=" },
   { tokens: ["<", ">"], write: "!=" },
   { tokens: ["=", ">"], write: ">=" },
   { tokens: ["=", "<"], write: "<=" },
@@ -409,8 +430,45 @@ const foreignSigns: readonly { readonly tokens: readonly [string, string?]; read
 
 const comparisons: ReadonlySet<string> = new Set(["=", "!=", "<", "<=", ">", ">="])
 
-/** `.5` and `1.`: a point that lacks a digit on one side, where the place is about it. */
-export function fractionAt(source: Source, index: number): Slip | null {
+/** What is wrong with a number at this token: `.5` and `1.`, a decimal comma, a blank between its digits; null where nothing is. */
+export function numberSlipAt(source: Source, index: number): Slip | null {
+  const token = source.tokens[index]
+  const before = source.tokens[index - 1]
+  const after = source.tokens[index + 1]
+  const here = source.first + index
+  if (token?.text === "," && before?.type === "number" && after?.type === "number" && before.to === token.from && token.to === after.from) {
+    const right = `${before.text}.${after.text}`
+    const place = { clause: source.clause, from: here - 1, to: here + 2 }
+    return fault(
+      "number/decimal-comma",
+      place,
+      `The number ${before.text},${after.text} is written with a comma.`,
+      `It is written ${right}.`,
+      {
+        label: `Write ${right}`,
+        puts: [{ from: place.from, to: place.to, text: right }],
+      },
+    )
+  }
+  if (token?.type === "number" && before?.type === "number" && /^\d{3}$/.test(token.text) && /^\d{1,3}$/.test(before.text)) {
+    const right = before.text + token.text
+    const place = { clause: source.clause, from: here - 1, to: here + 1 }
+    return fault(
+      "number/blank",
+      place,
+      `The number ${before.text} ${token.text} has a blank between its digits.`,
+      `It is written ${right}.`,
+      {
+        label: `Write ${right}`,
+        puts: [{ from: place.from, to: place.to, text: right }],
+      },
+    )
+  }
+  return fractionAt(source, index)
+}
+
+/** A point that lacks a digit on one side, where the place is about it. */
+function fractionAt(source: Source, index: number): Slip | null {
   const point = source.tokens[index]
   if (point?.text !== ".") return null
   const before = source.tokens[index - 1]
