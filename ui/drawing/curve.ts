@@ -1,6 +1,6 @@
 // Curves and bands as paths, cut to a frame by arithmetic: a line that leaves is cut where it crosses the edge, a gap (NaN) ends it.
 
-import { tenth } from "./scene.ts"
+import { placeText, tenth } from "./scene.ts"
 
 export interface Point {
   readonly x: number
@@ -35,8 +35,8 @@ export function linePath(points: readonly Point[], top: number, bottom: number):
         continue
       }
       const [from, to] = piece
-      if (pen === null || pen.x !== from.x || pen.y !== from.y) d += `M${tenth(from.x)} ${tenth(from.y)}`
-      d += `L${tenth(to.x)} ${tenth(to.y)}`
+      if (pen === null || pen.x !== from.x || pen.y !== from.y) d += `M${placeText(from.x, from.y)}`
+      d += `L${placeText(to.x, to.y)}`
       pen = to
     }
   }
@@ -59,8 +59,8 @@ export function bandPath(x: readonly number[], low: readonly number[], high: rea
       close()
       continue
     }
-    upper += `${upper === "" ? "M" : "L"}${tenth(at)} ${tenth(Math.min(bottom, Math.max(top, b)))}`
-    lower.push(`${tenth(at)} ${tenth(Math.min(bottom, Math.max(top, a)))}`)
+    upper += `${upper === "" ? "M" : "L"}${placeText(at, Math.min(bottom, Math.max(top, b)))}`
+    lower.push(placeText(at, Math.min(bottom, Math.max(top, a))))
   }
   close()
   return d
@@ -84,7 +84,7 @@ export const shapeOf = (series: number): Shape => SHAPES[series % SHAPES.length]
 
 /** The outline of a shape with about the area of a circle of that radius. */
 export function shapePath(shape: Shape, x: number, y: number, r: number): string {
-  const at = (dx: number, dy: number): string => `${tenth(x + dx * r)} ${tenth(y + dy * r)}`
+  const at = (dx: number, dy: number): string => placeText(x + dx * r, y + dy * r)
   switch (shape) {
     case "circle":
       return `M${at(-1, 0)}a${tenth(r)} ${tenth(r)} 0 1 0 ${tenth(2 * r)} 0a${tenth(r)} ${tenth(r)} 0 1 0 ${tenth(-2 * r)} 0Z`
@@ -104,3 +104,32 @@ export function shapePath(shape: Shape, x: number, y: number, r: number): string
     }
   }
 }
+
+/** Radii that dots come in: half pixels, since nobody sees less. */
+const DOT_STEP = 0.5
+
+/**
+ * Many dots as a few paths: strokes without length and with round ends, so that a dot costs two numbers. Each size is dealt out over
+ * several paths, because only between paths do dots that lie on each other darken.
+ */
+export class Dots {
+  readonly #paths = new Map<string, string>()
+  #count = 0
+
+  add(x: number, y: number, r: number): void {
+    const size = Math.max(1, Math.min(DOT_SIZES, Math.round((2 * r) / DOT_STEP)))
+    const key = `${size} ${this.#count++ % 4}`
+    this.#paths.set(key, `${this.#paths.get(key) ?? ""}M${placeText(x, y)}h0`)
+  }
+
+  /** Every path with the role word that gives its dots their size. */
+  paths(): readonly { readonly key: string; readonly role: string; readonly d: string }[] {
+    return [...this.#paths].map(([key, d]) => ({ key, role: `dots dot-${key.split(" ")[0]}`, d }))
+  }
+}
+
+/** How many sizes of dots there are. */
+export const DOT_SIZES = 24
+
+/** The width of a dot by its size. */
+export const dotWidth = (size: number): number => size * DOT_STEP

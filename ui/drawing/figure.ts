@@ -3,7 +3,7 @@
 
 import type { Axis, Figure, Mark, Panel } from "../../cells/figure/figure.ts"
 import { footTicks, levelTicks, linearScale, type Scale, sideTicks, type Tick } from "./axis.ts"
-import { bandPath, linePath, shapeOf, shapePath } from "./curve.ts"
+import { bandPath, Dots, linePath, type Shape, shapeOf, shapePath } from "./curve.ts"
 import { type Box, fitted, type Scene, type SceneMark, tenth, textWidth } from "./scene.ts"
 
 const TICK_SIZE = 11.5
@@ -36,36 +36,53 @@ export function figureScene(figure: Figure, width: number): Scene {
   }
 }
 
-function seriesOf(figure: Figure): readonly string[] {
-  return [...new Set(figure.panels.flatMap((panel) => panel.marks.map((mark) => mark.series)))]
+interface Series {
+  readonly name: string
+  /** The shape of its points; null where it has lines, bands or bars only. */
+  readonly shape: Shape | null
 }
 
-function keyMarks(series: readonly string[], width: number): { readonly marks: readonly SceneMark[]; readonly height: number } {
+/** All series in order of appearance; shapes are dealt out to those that have points. */
+function seriesOf(figure: Figure): readonly Series[] {
+  const marks = figure.panels.flatMap((panel) => panel.marks)
+  const names = [...new Set(marks.map((mark) => mark.series))]
+  let shapes = 0
+  return names.map((name) => {
+    const hasPoints = marks.some((mark) => mark.series === name && mark.type === "points")
+    return { name, shape: hasPoints ? shapeOf(shapes++) : null }
+  })
+}
+
+function keyMarks(series: readonly Series[], width: number): { readonly marks: readonly SceneMark[]; readonly height: number } {
   const marks: SceneMark[] = []
   let x = 6
   let y = 12
-  series.forEach((name, i) => {
-    const text = fitted(name, TICK_SIZE, width - 30)
-    const needs = textWidth(text, TICK_SIZE) + 30
+  for (const [i, one] of series.entries()) {
+    const text = fitted(one.name, TICK_SIZE, width - 30)
+    const needs = textWidth(text, TICK_SIZE) + 34
     if (x > 6 && x + needs > width) {
       x = 6
       y += 18
     }
-    marks.push({ type: "path", key: `key-shape-${i}`, role: `point of-series series-${i % 6}`, d: shapePath(shapeOf(i), x, y - 4, 4) })
-    marks.push({ type: "text", key: `key-${i}`, role: "ink", x: x + 10, y, size: TICK_SIZE, anchor: "start", text })
+    marks.push(
+      one.shape === null
+        ? { type: "path", key: `key-${i}`, role: `curve chosen series-${i % 6}`, d: `M${tenth(x - 5)} ${y - 4}h14` }
+        : { type: "path", key: `key-${i}`, role: `point of-series series-${i % 6}`, d: shapePath(one.shape, x + 2, y - 4, 4) },
+    )
+    marks.push({ type: "text", key: `key-text-${i}`, role: "ink", x: tenth(x + 14), y, size: TICK_SIZE, anchor: "start", text })
     x += needs
-  })
+  }
   return { marks, height: y + 10 }
 }
 
 const axisLabel = (axis: Axis): string => (axis.unit === null ? axis.label : `${axis.label} (${axis.unit})`)
 
-function panelGroup(panel: Panel, key: string, box: Box, height: number, series: readonly string[]): SceneMark {
+function panelGroup(panel: Panel, key: string, box: Box, height: number, series: readonly Series[]): SceneMark {
   const top = box.top + 26
   const bottom = top + height
   const rough = ticksUp(panel.y, linearScale(...axisRange(panel.y), bottom, top))
   const left = box.left + Math.ceil(Math.max(18, ...rough.map((tick) => textWidth(tick.text, TICK_SIZE)))) + 12
-  const frame = { left, top, right: box.right - 2, bottom }
+  const frame = { left, top, right: box.right - 8, bottom }
   const x = linearScale(...axisRange(panel.x), frame.left, frame.right)
   const y = linearScale(...axisRange(panel.y), frame.bottom, frame.top)
   const head = panel.title === null ? axisLabel(panel.y) : `${panel.title}: ${axisLabel(panel.y)}`
@@ -87,7 +104,17 @@ function panelGroup(panel: Panel, key: string, box: Box, height: number, series:
     marks.push({ type: "path", key: "zero", role: "guide", d: `M${tenth(frame.left)} ${tenth(y.place(0))}H${tenth(frame.right)}` })
   }
   panel.marks.forEach((mark, i) => {
-    marks.push(...markMarks(mark, `mark-${i}`, series.indexOf(mark.series), x, y, frame))
+    marks.push(
+      ...markMarks(
+        mark,
+        `mark-${i}`,
+        series.findIndex((one) => one.name === mark.series),
+        series,
+        x,
+        y,
+        frame,
+      ),
+    )
   })
   marks.push(
     {
@@ -154,11 +181,11 @@ function tickMarks(xTicks: readonly Tick[], yTicks: readonly Tick[], frame: Box)
   return [{ type: "path", key: "ticks", role: "tick", d }, ...marks]
 }
 
-function markMarks(mark: Mark, key: string, series: number, x: Scale, y: Scale, frame: Box): readonly SceneMark[] {
+function markMarks(mark: Mark, key: string, series: number, all: readonly Series[], x: Scale, y: Scale, frame: Box): readonly SceneMark[] {
   const role = `series-${series % 6}`
   switch (mark.type) {
     case "points":
-      return pointsOf(mark, key, series, x, y, frame)
+      return pointsOf(mark, key, all[series]?.shape ?? "circle", all.length === 1 ? "" : ` of-series ${role}`, x, y, frame)
     case "line": {
       const points = Array.from(mark.x, (at, i) => ({ x: x.place(at), y: y.place(mark.y[i] as number) }))
       return [{ type: "path", key, role: `curve chosen ${role}`, d: linePath(points, frame.top, frame.bottom) }]
@@ -193,27 +220,26 @@ const edgeOr = (y: Scale, value: number, frame: Box): number => {
 function pointsOf(
   mark: Extract<Mark, { type: "points" }>,
   key: string,
-  series: number,
+  shape: Shape,
+  role: string,
   x: Scale,
   y: Scale,
   frame: Box,
 ): readonly SceneMark[] {
   const n = mark.x.length
-  const role = series === 0 ? "" : ` of-series series-${series % 6}`
   const greatest = mark.size === null ? 1 : mark.size.reduce((most, size) => Math.max(most, size), 0)
   const scale = n > 2000 ? 0.4 : n > 400 ? 0.5 : n > 60 ? 0.7 : 1
   const marks: SceneMark[] = []
-  const dense = ["", "", "", ""]
+  const dots = new Dots()
   for (let i = 0; i < n; i += 1) {
     const [atX, atY] = [x.place(mark.x[i] as number), y.place(mark.y[i] as number)]
     if (!Number.isFinite(atX) || !Number.isFinite(atY) || atY < frame.top - 1 || atY > frame.bottom + 1) continue
     const share = mark.size === null || greatest === 0 ? 0.8 : Math.sqrt((mark.size[i] as number) / greatest)
-    const d = shapePath(shapeOf(Math.max(0, series)), atX, atY, Math.max(1.3, 5 * share * scale))
-    if (n > MANY) dense[i % dense.length] += d
-    else marks.push({ type: "path", key: `${key}-${i}`, role: `point${role}`, d })
+    const r = Math.max(1.3, 5 * share * scale)
+    // A cloud of many points tells its series by colour alone; the key and the text say which is which.
+    if (n > MANY) dots.add(atX, atY, r)
+    else marks.push({ type: "path", key: `${key}-${i}`, role: `point${role}`, d: shapePath(shape, atX, atY, r) })
   }
-  dense.forEach((d, i) => {
-    if (d !== "") marks.push({ type: "path", key: `${key}-many-${i}`, role: `point many${role}`, d })
-  })
+  for (const one of dots.paths()) marks.push({ type: "path", key: `${key}-many-${one.key}`, role: `${one.role}${role}`, d: one.d })
   return marks
 }

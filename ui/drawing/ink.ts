@@ -1,12 +1,15 @@
 // How the roles of a scene look, as rules over custom properties: one sheet for the page and the report, in light, dark and print. The
 // properties themselves (--paper, --ink, --soft, --line, --tint, --accent, --link-1 … --link-8) come from whoever shows the scene.
 
+import { DOT_SIZES, dotWidth } from "./curve.ts"
 import { allDashes, dashRole } from "./link-ink.ts"
 
 const dashes = allDashes
   .filter((dash) => dash !== "")
   .map((dash) => `.${dashRole(dash)} { stroke-dasharray: ${dash}; }`)
   .join("\n")
+
+const dots = Array.from({ length: DOT_SIZES }, (_, i) => `.dot-${i + 1} { stroke-width: ${dotWidth(i + 1)}; }`).join("\n")
 
 const links = [1, 2, 3, 4, 5, 6, 7, 8].map((colour) => `.link-${colour} { --link: var(--link-${colour}); }`).join("\n")
 
@@ -42,6 +45,9 @@ ${links}
 .scene .fitted { fill: var(--link); stroke: var(--link); }
 .scene .point { fill: var(--paper); stroke: var(--ink); stroke-width: 1.4; }
 .scene .point.many { fill: var(--ink); fill-opacity: 0.34; stroke: none; }
+.scene .dots { stroke: var(--ink); stroke-opacity: 0.3; stroke-linecap: round; }
+.scene .dots.held-back { stroke-opacity: 0.2; }
+.scene .dots.of-series, .scene .dots.ghost { stroke: var(--link); }
 .scene .point.ghost { fill: none; stroke: var(--link); stroke-width: 1.2; }
 .scene .point.off { fill: var(--soft); stroke: none; }
 .scene .bars { fill: var(--tint); stroke: var(--rule); stroke-width: 1; }
@@ -75,6 +81,7 @@ ${links}
 .scene .bar.level-1, .scene .bar.level-2, .scene .bar.level-3, .scene .bar.level-4, .scene .bar.level-5 {
   stroke: color-mix(in oklab, var(--ink) var(--mix), var(--link));
 }
+${dots}
 .dash-none { stroke-dasharray: none; }
 ${dashes}
 .scene .solid { stroke-dasharray: none; }

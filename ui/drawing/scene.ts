@@ -46,6 +46,22 @@ export const boxesMeet = (a: Box, b: Box): boolean => a.left < b.right && b.left
 /** A tenth of a pixel is finer than any screen shows, and keeps paths short. */
 export const tenth = (pixels: number): number => Math.round(pixels * 10) / 10
 
+/** Texts of tenths of a pixel, made when first asked for: writing out doubles is most of what long paths cost. */
+const tenthTexts: string[] = []
+
+/** A place in a path: both coordinates to a tenth of a pixel. */
+export const placeText = (x: number, y: number): string => `${tenthText(x)} ${tenthText(y)}`
+
+function tenthText(pixels: number): string {
+  const tenths = Math.round(pixels * 10)
+  if (!(tenths >= 0 && tenths < 50_000)) return String(tenths / 10)
+  const known = tenthTexts[tenths]
+  if (known !== undefined) return known
+  const text = String(tenths / 10)
+  tenthTexts[tenths] = text
+  return text
+}
+
 /**
  * How wide a text is likely to be, in pixels: a bound for the system faces in use, since a scene is made without a page to measure on.
  * A browser test holds it against what is drawn.
@@ -59,7 +75,7 @@ export function textWidth(text: string, size: number): number {
 function signWidth(sign: string): number {
   if (/[ilj.,;:'|!\u202f ]/.test(sign)) return 0.36
   if (/[ftr()[\]/ -]/.test(sign)) return 0.42
-  if (/[mwMW−+=×→—%@]/.test(sign)) return 0.92
+  if (/[mwMW−+=×→—%@…]/.test(sign)) return sign === "…" ? 1.02 : 0.99
   if (/[A-Z]/.test(sign)) return 0.72
   return 0.645
 }

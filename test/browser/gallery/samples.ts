@@ -161,7 +161,7 @@ export function candidateOf(
 
 const beetles = published.datasets.find((set) => set.id === "beetles")
 const beetleColumn = (name: "dose" | "n" | "y"): readonly number[] =>
-  (beetles?.data as unknown as Record<string, string[]>)[name]?.map(Number) ?? []
+  (beetles?.data as unknown as Record<string, string[]> | undefined)?.[name]?.map(Number) ?? []
 
 /** Bliss's beetles under five links, from the reference fits. */
 export function beetleScales(chosen = "cloglog", range: readonly [number, number] = [1.65, 1.94]): ScalesBlock {
@@ -386,7 +386,7 @@ export const tableSample: TableBlock = {
     ],
     [
       "dose",
-      { value: 22.041169820757543, digits: 5 },
+      { value: 22.04116982075754, digits: 5 },
       { value: 1.7994, digits: 4 },
       { from: 18.5145, to: 25.568, digits: 4 },
       { value: 0.0042, digits: 2 },

@@ -50,13 +50,20 @@ export function waysOf(layout: ScalesLayout): Ways {
       }
 }
 
+/** A layout is asked again for every move of a pointer. */
+const remembered = new WeakMap<ScalesLayout, readonly LabelledLine[]>()
+
 /** The lines that have numbers, as many as stand clear of each other. */
 export function labelled(layout: ScalesLayout): readonly LabelledLine[] {
+  const known = remembered.get(layout)
+  if (known !== undefined) return known
   const { bridge, subject } = layout
   const { runs, low, high } = waysOf(layout)
   const falling = falls(subject.bridge)
   const most = runs === "across" ? (falling ? 5 : 7) : falling ? 6 : Math.max(5, Math.floor((high - low) / 28))
-  return labelledLines(subject.bridge, { mu: bridge.mu, eta: bridge.eta, runs }, most)
+  const lines = labelledLines(subject.bridge, { mu: bridge.mu, eta: bridge.eta, runs }, most)
+  remembered.set(layout, lines)
+  return lines
 }
 
 export function bridgeMarks(block: ScalesBlock, layout: ScalesLayout, ghost: ScalesCandidate | null): readonly SceneMark[] {

@@ -40,9 +40,24 @@ export function falls(pairs: Pairs): boolean {
  * g at one mean, looked up between the pairs: by the cubic through the four nearest, since pairs are few and links bend. NaN outside.
  */
 export function etaAt(pairs: Pairs, mu: number): number {
-  const { mu: means, eta: etas } = pairs
+  const low = pairBelow(pairs, mu)
+  if (low === null) return Number.NaN
+  for (const i of [low, low + 1]) if (pairs.mu[i] === mu) return pairs.eta[i] as number
+  return throughPairs(pairs, mu, low - 1)
+}
+
+/** How far two look-ups from different neighbours differ: where it is more than is shown, the pairs are too few to say. */
+function doubtAt(pairs: Pairs, mu: number): number {
+  const low = pairBelow(pairs, mu)
+  if (low === null) return Number.POSITIVE_INFINITY
+  if (pairs.mu[low] === mu || pairs.mu[low + 1] === mu) return 0
+  return Math.abs(throughPairs(pairs, mu, low - 2) - throughPairs(pairs, mu, low))
+}
+
+/** The index of the last pair that is not above a mean, with one more pair after it; null outside. */
+function pairBelow({ mu: means }: Pairs, mu: number): number | null {
   const n = means.length
-  if (n === 0 || mu < (means[0] ?? 0) || mu > (means[n - 1] ?? 0)) return Number.NaN
+  if (n < 2 || !(mu >= (means[0] as number) && mu <= (means[n - 1] as number))) return null
   let low = 0
   let high = n - 1
   while (high - low > 1) {
@@ -50,8 +65,13 @@ export function etaAt(pairs: Pairs, mu: number): number {
     if ((means[middle] as number) <= mu) low = middle
     else high = middle
   }
-  for (const i of [low, high]) if (means[i] === mu) return etas[i] as number
-  const first = Math.max(0, Math.min(n - 4, low - 1))
+  return low
+}
+
+/** The cubic through four pairs in a row, at a mean. */
+function throughPairs({ mu: means, eta: etas }: Pairs, mu: number, from: number): number {
+  const n = means.length
+  const first = Math.max(0, Math.min(n - 4, from))
   const last = Math.min(n - 1, first + 3)
   let sum = 0
   for (let i = first; i <= last; i += 1) {
@@ -76,12 +96,16 @@ export function bridgeHairs(pairs: Pairs, edges: BridgeEdges, apart: number): re
   return kept
 }
 
+/** In pixels of clear room, less what an unround number costs. */
+const LEAST_WORTH = -10
+
 /** The labelled lines, at most `most`, in order of μ. */
 export function labelledLines(pairs: Pairs, edges: BridgeEdges, most: number): readonly LabelledLine[] {
   const etaDecimals = decimalsForExtent(edges.eta.to - edges.eta.from)
   const offered = roundMeans(Math.max(edges.mu.from, pairs.mu[0] ?? 0), Math.min(edges.mu.to, pairs.mu.at(-1) ?? 0)).flatMap((mean) => {
     const line = lineAt(mean.mu, etaAt(pairs, mean.mu), edges)
-    return line === null ? [] : [{ ...line, cost: mean.cost, muText: mean.text, etaText: writtenFixed(line.eta, etaDecimals) }]
+    const sure = doubtAt(pairs, mean.mu) < 0.25 * Number(`1e-${etaDecimals}`)
+    return line === null || !sure ? [] : [{ ...line, cost: mean.cost, muText: mean.text, etaText: writtenFixed(line.eta, etaDecimals) }]
   })
   const roomy = offered.filter(
     (line) => withinEdge(line.from, line.muText, edges.mu, edges.runs) && withinEdge(line.to, line.etaText, edges.eta, edges.runs),
@@ -111,7 +135,8 @@ export function labelledLines(pairs: Pairs, edges: BridgeEdges, most: number): r
         best = line
       }
     }
-    if (best === null) break
+    // Rather fewer numbers than odd ones squeezed in.
+    if (best === null || (bestWorth < LEAST_WORTH && kept.length >= 3)) break
     left.delete(best)
     const { cost: _, ...line } = best
     kept.push(line)

@@ -2,7 +2,7 @@
 // over them, and the points last.
 
 import type { ScalesBlock, ScalesCandidate, ScalesCurve, ScalesPoints } from "../../../cells/block.ts"
-import { bandPath, linePath, type Point, type Shape, shapeOf, shapePath } from "../curve.ts"
+import { bandPath, Dots, linePath, type Point, type Shape, shapeOf, shapePath } from "../curve.ts"
 import { linkRole } from "../link-ink.ts"
 import { type Box, boxesMeet, fitted, type SceneMark, tenth, textWidth } from "../scene.ts"
 import { type PanelLayout, type ScalesLayout, TICK_SIZE } from "./layout.ts"
@@ -156,7 +156,8 @@ export function pointMarks(
   for (const value of size) greatest = Math.max(greatest, value)
   const scale = n > 400 ? 0.36 : n > 60 ? 0.6 : 1
   const marks: SceneMark[] = []
-  const dense = ["", "", "", ""]
+  const dots = new Dots()
+  const outlines = ["", "", "", ""]
   let off = ""
   const many = n > MANY
   for (let i = 0; i < n; i += 1) {
@@ -170,12 +171,16 @@ export function pointMarks(
     }
     const share = greatest > 0 ? Math.sqrt((size[i] as number) / greatest) : 1
     const r = Math.max(n > 60 ? 1.3 : 2.1, largest * share * scale)
-    if (many) dense[i % dense.length] += shapePath(shape, x, y, r)
+    if (many && shape === "circle") dots.add(x, y, r)
+    else if (many) outlines[i % outlines.length] += shapePath(shape, x, y, r)
     else if (shape === "circle")
       marks.push({ type: "circle", key: `${key}-${i}`, role: `point ${role}`, x: tenth(x), y: tenth(y), r: tenth(r) })
     else marks.push(...path(`${key}-${i}`, `point ${role}`, shapePath(shape, x, y, r)))
   }
-  const gathered = many ? dense.flatMap((d, i) => path(`${key}-many-${i}`, `point many ${role}`, d)) : []
+  const gathered = [
+    ...dots.paths().flatMap((one) => path(`${key}-many-${one.key}`, `${one.role} ${role}`, one.d)),
+    ...outlines.flatMap((d, i) => path(`${key}-many-${i}`, `point many ${role}`, d)),
+  ]
   return [...marks, ...gathered, ...path(`${key}-off`, "point off", off)]
 }
 

@@ -10,17 +10,33 @@ import type { PanelLayout, ScalesLayout } from "./layout.ts"
 import { path } from "./pieces.ts"
 import { onSubjectScale } from "./preview.ts"
 
+/** How the places of one level are shared out: the room of a curve, the step between neighbours, and who else stands there. */
+function shares(
+  block: ScalesBlock,
+  layout: ScalesLayout,
+  which: Which,
+): { readonly room: number; readonly step: number; readonly others: readonly ScalesCandidate[] } {
+  const { subject } = layout
+  const { x } = layout[which]
+  const comparable = (which === "mean" || block.aligned) && block.split === null
+  const others = comparable ? block.candidates.filter((other) => other !== subject && other.curves.length > 0) : []
+  const room = ((x.place(1) - x.place(0)) * 0.86) / Math.max(1, subject.curves.length)
+  return { room, step: Math.min(13, room / (3 + others.length)), others }
+}
+
+/** How far from the middle of its level the fitted mean of a curve is drawn. */
+export function fittedShift(block: ScalesBlock, layout: ScalesLayout, which: Which, curve: number): number {
+  if (block.across.levels === null) return 0
+  const { room, step } = shares(block, layout, which)
+  return (curve - (layout.subject.curves.length - 1) / 2) * room + step / 2
+}
+
 export function levelMarks(block: ScalesBlock, layout: ScalesLayout, ghost: ScalesCandidate | null, which: Which): readonly SceneMark[] {
   const { subject } = layout
   const panel = layout[which]
-  const band = panel.x.place(1) - panel.x.place(0)
-  const groups = Math.max(1, subject.curves.length)
-  const room = (band * 0.86) / groups
-  const others =
-    (which === "mean" || block.aligned) && block.split === null
-      ? block.candidates.filter((other) => other !== subject && other !== ghost)
-      : []
-  const step = Math.min(13, room / (3 + others.length))
+  const { room, step, others: all } = shares(block, layout, which)
+  const others = all.filter((other) => other !== ghost)
+  const groups = subject.curves.length
   const marks: SceneMark[] = []
   subject.curves.forEach((curve, g) => {
     const centre = (g - (groups - 1) / 2) * room

@@ -6,6 +6,7 @@ import { type Box, type SceneMark, tenth, textWidth } from "../scene.ts"
 import { falls, joinArea, joinPath } from "./bridge.ts"
 import { labelled, waysOf } from "./bridge-marks.ts"
 import { type PanelLayout, type ScalesLayout, TICK_SIZE } from "./layout.ts"
+import { fittedShift } from "./levels.ts"
 import { label, rect } from "./pieces.ts"
 import { onSubjectScale } from "./preview.ts"
 import { type Pointing, readingOf } from "./reading.ts"
@@ -26,17 +27,19 @@ export function pointerMarks(
     return mu === undefined || eta === undefined || texts === null ? [] : litJoin(layout, mu, moved(eta), texts)
   }
   const curve = of.curves[pointing.curve]
-  return curve === undefined || texts === null ? [] : curvePointer(layout, curve, pointing.at, moved, texts)
+  return curve === undefined || texts === null ? [] : curvePointer(block, layout, pointing, curve, moved, texts)
 }
 
 function curvePointer(
+  block: ScalesBlock,
   layout: ScalesLayout,
+  pointing: Extract<Pointing, { type: "curve" }>,
   curve: ScalesCurve,
-  i: number,
   moved: (eta: number) => number,
   texts: readonly [string, string],
 ): readonly SceneMark[] {
   const { mean, predictor } = layout
+  const i = pointing.at
   const x = curve.x[i] as number
   const mu = curve.mu[i] as number
   const eta = moved(curve.eta[i] as number)
@@ -44,11 +47,17 @@ function curvePointer(
   const etaEnds = [moved(curve.etaLow[i] as number), moved(curve.etaHigh[i] as number)] as const
   const beside = layout.arrangement === "beside"
   const marks: SceneMark[] = []
-  for (const [key, panel] of [["mean", mean] as const, ["predictor", predictor] as const]) {
-    const at = tenth(panel.x.place(x))
-    marks.push({ type: "path", key: `pointer-${key}`, role: "pointer", d: `M${at} ${tenth(panel.frame.top)}V${tenth(panel.frame.bottom)}` })
+  const at = (which: "mean" | "predictor"): number => tenth(layout[which].x.place(x) + fittedShift(block, layout, which, pointing.curve))
+  for (const key of ["mean", "predictor"] as const) {
+    const panel = layout[key]
+    marks.push({
+      type: "path",
+      key: `pointer-${key}`,
+      role: "pointer",
+      d: `M${at(key)} ${tenth(panel.frame.top)}V${tenth(panel.frame.bottom)}`,
+    })
   }
-  marks.push(...intervalMark("mean", mean, x, muEnds), ...intervalMark("predictor", predictor, x, etaEnds))
+  marks.push(...intervalMark("mean", mean, at("mean"), muEnds), ...intervalMark("predictor", predictor, at("predictor"), etaEnds))
   const meanY = mean.y.place(mu)
   const etaY = predictor.y.place(eta)
   const muShown = inside(mean.frame, meanY)
@@ -56,14 +65,14 @@ function curvePointer(
   marks.push(...litArea(layout, muEnds, etaEnds))
   if (muShown && etaShown) marks.push(...litJoin(layout, mu, eta, texts))
   if (muShown) {
-    const from = tenth(mean.x.place(x))
+    const from = at("mean")
     const to = tenth(beside ? mean.frame.right : mean.frame.left)
     marks.push({ type: "path", key: "lit-mean", role: "lit", d: `M${from} ${tenth(meanY)}H${to}` })
     marks.push({ type: "circle", key: "lit-mean-point", role: "lit-point", x: from, y: tenth(meanY), r: 4.5 })
   }
   if (etaShown) {
     const from = tenth(predictor.frame.left)
-    const to = tenth(predictor.x.place(x))
+    const to = at("predictor")
     marks.push({ type: "path", key: "lit-predictor", role: "lit", d: `M${from} ${tenth(etaY)}H${to}` })
     marks.push({ type: "circle", key: "lit-predictor-point", role: "lit-point", x: to, y: tenth(etaY), r: 4.5 })
   }
@@ -72,12 +81,11 @@ function curvePointer(
 
 const inside = (frame: Box, y: number): boolean => Number.isFinite(y) && y >= frame.top - 0.5 && y <= frame.bottom + 0.5
 
-function intervalMark(key: string, panel: PanelLayout, x: number, ends: readonly [number, number]): readonly SceneMark[] {
+function intervalMark(key: string, panel: PanelLayout, at: number, ends: readonly [number, number]): readonly SceneMark[] {
   if (Number.isNaN(ends[0]) || Number.isNaN(ends[1])) return []
   const places = ends.map((end) =>
     clamped(panel.y.place(end), panel.frame.top, panel.frame.bottom, end > 0 === panel.y.end < panel.y.start),
   )
-  const at = tenth(panel.x.place(x))
   return [
     {
       type: "path",

@@ -370,11 +370,13 @@ export class ScalesElement extends LitElement {
       this.#unpoint()
       return
     }
-    const subject = this.#subject(block, layout)
+    const { subject } = layout
     const length = subject.curves[0]?.x.length ?? 0
     const step = readingStep(event.key, length)
     if (step === null) return
     event.preventDefault()
+    // A pointer left resting on the strip does not decide what is read by key.
+    this.preview = null
     this.pointing = steppedReading(subject, this.pointing, step)
     const reading = this.pointing === null ? null : readingOf(block, layout, subject, this.pointing)
     if (reading !== null) this.dispatchEvent(new SayEvent(readingSentence(block, subject, reading)))

@@ -105,7 +105,7 @@ export class TapesElement extends LitElement {
       }
       @container (max-width: 560px) {
         ul {
-          grid-template-columns: max-content 1fr max-content;
+          grid-template-columns: fit-content(52%) minmax(0, 1fr) fit-content(40%);
         }
         li {
           padding: 6px 0;
