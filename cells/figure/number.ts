@@ -21,14 +21,14 @@ export function written(value: number, digits: number): string {
   if (value === 0) return "0"
   if (!Number.isFinite(value)) return value > 0 ? "∞" : `${MINUS}∞`
   const exponent = exponentOf(value, digits)
-  if (exponent < LEAST_EXPONENT || Math.abs(value) >= LARGEST_WHOLE) return asPower(value, digits)
+  if (exponent < LEAST_EXPONENT || Math.abs(value) >= LARGEST_WHOLE) return writtenAsPower(value, digits)
   return writtenFixed(value, Math.max(0, digits - 1 - exponent))
 }
 
 /** A number with so many decimals: for numbers that share a scale, such as the ticks of an axis. */
 export function writtenFixed(value: number, decimals: number): string {
   if (!Number.isFinite(value)) return written(value, 1)
-  if (Math.abs(value) >= LARGEST_WHOLE) return asPower(value, 4)
+  if (Math.abs(value) >= LARGEST_WHOLE) return writtenAsPower(value, 4)
   const text = value.toFixed(Math.min(100, decimals))
   const [whole = "", fraction] = text.replace("-", "").split(".")
   const isZero = !/[1-9]/.test(text)
@@ -96,7 +96,8 @@ function sharedDecimals(values: readonly number[], digits: number): number | nul
 
 const fixedOrEnd = (value: number, decimals: number): string => (Number.isFinite(value) ? writtenFixed(value, decimals) : written(value, 1))
 
-function asPower(value: number, digits: number): string {
+/** A number as a power of ten, to so many significant digits: 1.2 × 10⁷. */
+export function writtenAsPower(value: number, digits: number): string {
   const [mantissa = "", power = "0"] = value.toExponential(Math.max(0, digits - 1)).split("e")
   return `${mantissa.replace("-", MINUS)} × 10${raised(Number(power))}`
 }
