@@ -87,8 +87,9 @@ function changed(found: ModelFinding, verb: Verb, { beta, low, high }: Coefficie
   return verb.multiplies ? `multiplies ${verb.what} ${written(value, 3)}${interval}` : `adds ${written(value, 3)} ${verb.what}${interval}`
 }
 
-/** A factor beyond this is no longer something one can picture. */
+/** The logarithm of a factor beyond these is no longer something one can picture. */
 const largestLogFactor = 4
+const leastLogFactor = 0.05
 
 /**
  * A step along a column in which its effect can be pictured: one where that is a step within the data and neither huge nor tiny in effect,
@@ -106,7 +107,8 @@ function stepOf(values: Float64Array, beta: number, multiplies: boolean): number
   let step = 1
   if (!(range > 0)) return step
   for (let k = 0; k < 300 && !fits(step); k++) step = powerOfTen(-1 - k)
-  for (let k = 0; k < 300 && multiplies && step * size < 0.01 && fits(powerOfTen(k + 1)) && step >= 1; k++) step = powerOfTen(k + 1)
+  for (let k = 0; k < 300 && multiplies && step * size < leastLogFactor && fits(powerOfTen(k + 1)) && step >= 1; k++)
+    step = powerOfTen(k + 1)
   return step
 }
 

@@ -62,8 +62,7 @@ export async function found(said: ModelSaid, inputs: Inputs, work: Work): Promis
   await work.checkpoint()
 
   const kept = keptRows(choice.used, rows)
-  const only = (values: Float64Array | null): Float64Array | null =>
-    values === null ? null : Float64Array.from(kept, (row) => values[row] as number)
+  const only = (values: Float64Array | null): Float64Array | null => (values === null ? null : numbersAt(values, kept))
   const variables: Record<Name, Variable> = {}
   for (const { name, at } of variablesOf(predictor)) variables[name] = variableOf(name, predictors.get(name) as Column, kept, at, notice)
   const problem: Problem = {
@@ -318,27 +317,26 @@ function keptRows(used: Uint8Array, count: number): Uint32Array {
   return kept
 }
 
-/** A column over the rows used. Levels that are in none of them are left out, which is said where a person listed or saw them. */
+/** The values in the rows kept: the same array where all are, so that a column is held once. */
+function numbersAt(values: Float64Array, kept: Uint32Array): Float64Array {
+  if (kept.length === values.length) return values
+  const some = new Float64Array(kept.length)
+  for (let i = 0; i < kept.length; i++) some[i] = values[kept[i] as number] as number
+  return some
+}
+
+function codesAt(codes: Int32Array | Float64Array, kept: Uint32Array): Int32Array {
+  if (codes instanceof Int32Array && kept.length === codes.length) return codes
+  const some = new Int32Array(kept.length)
+  for (let i = 0; i < kept.length; i++) some[i] = codes[kept[i] as number] as number
+  return some
+}
+
+/** A column over the rows used. Levels that are in none of them are left out, and said. */
 function variableOf(name: Name, column: Column, kept: Uint32Array, at: Place, notice: Say): Variable {
-  if (column.type === "truth")
-    return factorOf(
-      name,
-      Int32Array.from(kept, (row) => column.values[row] as number),
-      ["false", "true"],
-      "corner",
-      at,
-      notice,
-    )
-  if ("codes" in column)
-    return factorOf(
-      name,
-      Int32Array.from(kept, (row) => column.codes[row] as number),
-      column.levels,
-      column.coding,
-      at,
-      notice,
-    )
-  return { type: "number", values: Float64Array.from(kept, (row) => column.values[row] as number) }
+  if (column.type === "truth") return factorOf(name, codesAt(column.values, kept), ["false", "true"], "corner", at, notice)
+  if ("codes" in column) return factorOf(name, codesAt(column.codes, kept), column.levels, column.coding, at, notice)
+  return { type: "number", values: numbersAt(column.values, kept) }
 }
 
 function factorOf(
@@ -459,13 +457,8 @@ function offsetFinding(offset: OffsetHere, table: TableHere, kept: Uint32Array):
     const column = table.columns.get(name) as Column
     variables[name] =
       "codes" in column
-        ? {
-            type: "factor",
-            codes: Int32Array.from(kept, (row) => column.codes[row] as number),
-            levels: column.levels,
-            coding: column.coding,
-          }
-        : { type: "number", values: Float64Array.from(kept, (row) => column.values[row] as number) }
+        ? { type: "factor", codes: codesAt(column.codes, kept), levels: column.levels, coding: column.coding }
+        : { type: "number", values: numbersAt(column.values, kept) }
   }
   return { expression: offset.said.expression, variables, numbers: offset.numbers }
 }

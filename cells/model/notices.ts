@@ -53,11 +53,11 @@ export type RowName = (row: number) => string
 /** Rows at fault, and the first of them with what it holds. */
 export type RowsAt = { readonly count: number; readonly first: number; readonly value: number }
 
-/** `3 rows have response −1 or below`, said of the rows and the first: `first: row 17 of terrace.csv, with −1`. */
-const rowsSay = (at: RowsAt, name: RowName): string =>
+/** `buds is −1 in row 12 of terrace.csv`, or `buds is below 0 in 3 rows (first: row 12 of terrace.csv, with −1)`. */
+const isIn = (name: string, otherwise: string, at: RowsAt, row: RowName): string =>
   at.count === 1
-    ? `${name(at.first)} has ${numberSays(at.value)}`
-    : `${rows(at.count)} do so (first: ${name(at.first)}, with ${numberSays(at.value)})`
+    ? `${name} is ${numberSays(at.value)} in ${row(at.first)}`
+    : `${name} is ${otherwise} in ${rows(at.count)} (first: ${row(at.first)}, with ${numberSays(at.value)})`
 
 const numberSays = (value: number): string => written(value, Math.max(1, Math.min(12, significant(value))))
 const significant = (value: number): number => value.toExponential().split("e")[0]?.replace(/[-.]/g, "").length ?? 1
@@ -306,7 +306,7 @@ export const notZeroOrOne = (name: Name, at: RowsAt, row: RowName, shares: boole
     "not-zero-or-one",
     "response",
     place,
-    `A binomial response without trials is 0 or 1, and not so ${name}: ${rowsSay(at, row)}.`,
+    `A binomial response without trials is 0 or 1, but ${isIn(name, "neither", at, row)}.`,
     shares
       ? `Say successes out of trials, such as: response killed out of n; a share whose trials are not known is family quasi_likelihood(mu*(1 - mu)), which is not available yet.`
       : `Say the trials, such as: response ${name} out of n.`,
@@ -317,7 +317,7 @@ export const notWhole = (name: Name, at: RowsAt, row: RowName, place: Place): No
     "not-whole",
     "response",
     place,
-    `${name} counts something, so it is whole: ${rowsSay(at, row)}.`,
+    `${name} counts something, but ${isIn("it", "not whole", at, row)}.`,
     "Name the column of counts; for shares the counts behind them are wanted.",
   )
 
@@ -326,7 +326,7 @@ export const countNotWhole = (name: Name, at: RowsAt, row: RowName, place: Place
     "count-not-whole",
     "response",
     place,
-    `The family poisson is for counts, which are whole, and ${name} is not: ${rowsSay(at, row)}.`,
+    `The family poisson is for counts, but ${isIn(name, "not whole", at, row)}.`,
     "A rate is a count with an exposure clause; other amounts with variance μ are family quasi_likelihood(mu), which is not available yet.",
   )
 
@@ -335,7 +335,7 @@ export const countNegative = (name: Name, at: RowsAt, row: RowName, place: Place
     "count-negative",
     "response",
     place,
-    `${name} counts something, so it is not below 0: ${rowsSay(at, row)}.`,
+    `${name} counts something, but ${isIn("it", "below 0", at, row)}.`,
     "If the entry stands for a missing value, say so in the data with a missing clause.",
   )
 
@@ -361,7 +361,7 @@ export const notPositive = (name: Name, family: string, at: RowsAt, row: RowName
     "not-positive",
     "response",
     place,
-    `The family ${family} is for amounts above 0, and ${name} is not: ${rowsSay(at, row)}.`,
+    `The family ${family} is for amounts above 0, but ${isIn(name, "0 or below", at, row)}.`,
     at.value === 0
       ? "Amounts with exact zeros are family tweedie(p), which is not available yet; rows without an amount can be left out in the data with a where clause."
       : "If the entry stands for a missing value, say so in the data with a missing clause.",
@@ -394,7 +394,7 @@ export const exposureNotPositive = (name: Name, at: RowsAt, row: RowName, place:
     "exposure-not-positive",
     "exposure",
     place,
-    `An exposure is above 0, and ${name} is not: ${rowsSay(at, row)}.`,
+    `An exposure is above 0, but ${isIn(name, "0 or below", at, row)}.`,
     "Leave rows without exposure out in the data with a where clause.",
   )
 
@@ -403,7 +403,7 @@ export const weightNegative = (clause: "repeat" | "precision", name: Name, at: R
     "weight-negative",
     clause,
     place,
-    `${clause === "repeat" ? "A row is not repeated less than 0 times" : "A precision is not below 0"}: ${rowsSay(at, row)}.`,
+    `A ${clause} is not below 0, but ${isIn(name, "below 0", at, row)}.`,
     `Look at the column ${name} in the data.`,
   )
 
@@ -412,7 +412,7 @@ export const repeatNotWhole = (name: Name, at: RowsAt, row: RowName, place: Plac
     "repeat-not-whole",
     "repeat",
     place,
-    `A row is repeated a whole number of times, and ${name} is not whole: ${rowsSay(at, row)}.`,
+    `A row is repeated a whole number of times, but ${isIn(name, "not whole", at, row)}.`,
     "For weights that are not counts, precision is meant.",
     { label: "Write precision instead", edits: [{ cell: null, clause: "repeat", nth: 0, says: name, keyword: "precision" }] },
   )

@@ -25,7 +25,7 @@ export function responseOf(said: ResponseSaid, family: string, table: TableHere,
   if (said.type === "successes") return shares(said.successes, said.trials, table, fault)
   const column = table.columns.get(said.column.name)
   if (column === undefined) return null
-  if (said.type === "level") return levelReached(said.column, said.level, column, table, fault)
+  if (said.type === "level") return levelReached(said, column, table, fault)
   return family === "binomial" ? zeroOrOne(said.column, column, table, fault) : amounts(said.column, family, column, table, fault)
 }
 
@@ -63,7 +63,13 @@ function shares(successes: Named, trials: Named, table: TableHere, fault: (notic
   }
 }
 
-function levelReached(of: Named, level: string, column: Column, table: TableHere, fault: (notice: Notice) => void): Response | null {
+function levelReached(
+  said: Extract<ResponseSaid, { type: "level" }>,
+  column: Column,
+  table: TableHere,
+  fault: (notice: Notice) => void,
+): Response | null {
+  const { column: of, level } = said
   const levels = "codes" in column ? column.levels : column.type === "truth" ? ["false", "true"] : null
   if (levels === null) {
     fault(say.levelOfNumber(of.name, typeSays(column), of.at))
@@ -75,7 +81,7 @@ function levelReached(of: Named, level: string, column: Column, table: TableHere
   }
   const wanted = levels.indexOf(level)
   if (wanted < 0) {
-    fault(say.noSuchLevel(of.name, level, levels, nearest(level, levels), of.at))
+    fault(say.noSuchLevel(of.name, level, levels, nearest(level, levels), said.at))
     return null
   }
   const codeIn = (row: number): number => ("codes" in column ? (column.codes[row] as number) : (column.values[row] as number))
