@@ -927,10 +927,12 @@ const fileOf = ({ enclosures }: Notebook, wanted: string): string | null => encl
 /** Whether nothing in the graph has changed that this cell could tell. A name that is missing can tell every other name, by the nearest. */
 function standsAsBefore(reading: Reading, before: Graph, now: Graph): boolean {
   const { id } = reading.cell
-  const alikeIn = (field: "makers" | "inputs" | "cycles", of: string): boolean => listsAlike(before[field].get(of), now[field].get(of))
+  const alikeIn = (field: "makers" | "inputs", of: string): boolean => listsAlike(before[field].get(of), now[field].get(of))
+  const [roundBefore, roundNow] = [before.cycles.get(id), now.cycles.get(id)]
   return (
     alikeIn("inputs", id) &&
-    alikeIn("cycles", id) &&
+    roundBefore?.cells === roundNow?.cells &&
+    listsAlike(roundBefore?.names, roundNow?.names) &&
     (reading.defines === null || alikeIn("makers", reading.defines)) &&
     reading.uses.every(({ name }) => alikeIn("makers", name) && before.asleep.get(name) === now.asleep.get(name)) &&
     missingUses(reading, now).length === 0

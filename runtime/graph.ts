@@ -16,9 +16,17 @@ export interface Graph {
   readonly readers: ReadonlyMap<CellId, readonly CellId[]>
   /** Greater than the rank of everything the cell reads (of what stands outside its cycle, for a cell in one). */
   readonly rank: ReadonlyMap<CellId, number>
-  /** For a cell that waits for itself: the names round, its own first. */
-  readonly cycles: ReadonlyMap<CellId, readonly Name[]>
+  readonly cycles: ReadonlyMap<CellId, Round>
 }
+
+/** The way round from a cell to itself: its own name first; of a long one only its own, the next and the last. */
+export interface Round {
+  readonly names: readonly Name[]
+  readonly cells: number
+}
+
+/** A round of more cells is told by its ends: nobody reads twenty names, and a ring of all cells would hold each name as often. */
+const longestTold = 8
 
 /**
  * The graph of these readings; the former one where nothing in it has changed. `changed` are the readings that differ from those the
@@ -184,16 +192,18 @@ function ranks(inputs: Arrows, readers: Arrows, tangles: Tangles): ReadonlyMap<C
 }
 
 /** For each cell in a cycle the shortest way round from it to itself. Cells go by name, so that no order of cells decides which is named. */
-function cycles(inputs: Arrows, tangles: Tangles, readings: ReadonlyMap<CellId, Reading>): ReadonlyMap<CellId, readonly Name[]> {
-  const found = new Map<CellId, readonly Name[]>()
+function cycles(inputs: Arrows, tangles: Tangles, readings: ReadonlyMap<CellId, Reading>): ReadonlyMap<CellId, Round> {
+  const found = new Map<CellId, Round>()
   const nameOf = (id: CellId): Name => readings.get(id)?.defines ?? id
   const members = [...tangles.keys()].sort((a, b) => (nameOf(a) < nameOf(b) || (nameOf(a) === nameOf(b) && a < b) ? -1 : 1))
   for (const start of members) {
     if (found.has(start)) continue
     const round = shortestRound(start, inputs, tangles.get(start) as ReadonlySet<CellId>)
     const names = round.map(nameOf)
+    const cells = names.length
     round.forEach((id, i) => {
-      if (!found.has(id)) found.set(id, [...names.slice(i), ...names.slice(0, i)])
+      const told = cells > longestTold ? [0, 1, cells - 1] : names.keys()
+      if (!found.has(id)) found.set(id, { names: Array.from(told, (step) => names[(i + step) % cells] as Name), cells })
     })
   }
   return found

@@ -17,8 +17,8 @@ export function membershipFaults(reading: Reading, graph: Graph): readonly Notic
   if (defines !== null && makers > 1) faults.push(doubledName(defines, makers, nameAt(statement)))
   const round = graph.cycles.get(cell.id)
   if (round !== undefined) {
-    const next = round[1 % round.length]
-    faults.push(cycle(round, uses.find(({ name }) => name === next)?.at ?? nameAt(statement)))
+    const next = round.names[1 % round.names.length]
+    faults.push(cycle(round.names, round.cells, uses.find(({ name }) => name === next)?.at ?? nameAt(statement)))
   }
   for (const { name, at } of missingUses(reading, graph)) faults.push(missing(reading, graph, name, at))
   return faults.map((fault) => ({ ...fault, clause: statement.clauses[fault.at.clause]?.keyword ?? null }))

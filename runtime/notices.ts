@@ -95,9 +95,9 @@ export const missingCell = (name: string, near: string | null, at: Place, mend: 
     mend,
   )
 
-/** The names in order, the cell's own first: each waits for the next, and the last for the first. */
-export const cycle = (names: readonly string[], at: Place): Notice =>
-  fault("cell/cycle", waitingRound(names), hintForRound(names.length), at)
+/** The names in order, the cell's own first: each waits for the next, and the last for the first. Of many `cells` there are three names. */
+export const cycle = (names: readonly string[], cells: number, at: Place): Notice =>
+  fault("cell/cycle", waitingRound(names, cells), hintForRound(cells), at)
 
 /** No enclosure of that name: said where the kind has not said so itself. */
 export const missingFile = (name: string, at: Place): Notice =>
@@ -108,20 +108,17 @@ export const missingFile = (name: string, at: Place): Notice =>
     at,
   )
 
-const manyNames = 8
-
 const hintForRound = (cells: number): string => {
   if (cells === 1) return "A cell cannot use its own name."
   return cells === 2 ? "One of them has to do without the other." : "One of them has to do without the next."
 }
 
-function waitingRound(names: readonly string[]): string {
+function waitingRound(names: readonly string[], cells: number): string {
   const [first = "", second = ""] = names
-  if (names.length === 1) return `${first} waits for itself.`
-  if (names.length === 2) return `${first} and ${second} wait for each other.`
-  if (names.length > manyNames) {
-    const between = names.length - 3
-    return `${first} waits for ${second}, and so on through ${between} more cells to ${names.at(-1)}, which waits for ${first}.`
+  if (cells === 1) return `${first} waits for itself.`
+  if (cells === 2) return `${first} and ${second} wait for each other.`
+  if (names.length < cells) {
+    return `${first} waits for ${second}, and so on through ${cells - 3} more cells to ${names.at(-1)}, which waits for ${first}.`
   }
   const steps = names.map((name, i) => {
     const next = names[(i + 1) % names.length]
