@@ -89,7 +89,7 @@ export async function found(said: ModelSaid, inputs: Inputs, work: Work): Promis
     notice(noFitNotice(fitted, table, choice.unused))
     return nothing()
   }
-  fitNotices(said, fitted.fit, notice)
+  fitNotices(said, problem, fitted.fit, (row) => table.rowName(kept[row] as number), notice)
   const finding: ModelFinding = {
     problem,
     fit: fitted.fit,
@@ -419,7 +419,7 @@ function noFitNotice(fitted: Extract<Fitted, { ok: false }>, table: TableHere, u
 const namedDependences = 4
 
 /** What was hard about the fit. */
-function fitNotices(said: ModelSaid, of: Fit, notice: Say): void {
+function fitNotices(said: ModelSaid, problem: Problem, of: Fit, rowName: say.RowName, notice: Say): void {
   const { certificate } = of
   const at: Place = { clause: said.predictorAt, from: 0, to: 1 }
   const dependent = certificate.evidence?.dependent ?? []
@@ -440,8 +440,18 @@ function fitNotices(said: ModelSaid, of: Fit, notice: Say): void {
       ),
     )
   if (certificate.class === "gave_up") notice(say.gaveUp(certificate.iterations, certificate.scaledScore))
-  if (certificate.class === "boundary") notice(say.atBoundary())
-  if (certificate.class === "infinite") notice(say.atInfinity(of.coefficients.filter(({ toward }) => toward !== null).map((one) => one.of)))
+  if (certificate.class === "boundary") {
+    notice(
+      say.atBoundary(
+        (certificate.evidence?.edge ?? []).map(({ row }) => row),
+        rowName,
+      ),
+    )
+  }
+  if (certificate.class === "infinite") {
+    const moved = of.coefficients.flatMap(({ of: term, toward }) => (toward === null ? [] : [{ of: term, toward }]))
+    notice(say.atInfinity(moved, problem.family.name))
+  }
   if (certificate.class === "several_maxima") notice(say.severalMaxima())
   if (of.df === 0 && of.dispersion.estimated && of.dispersion.value === null) notice(say.nothingLeft())
   if (of.clusters === 1 && said.cluster !== null) notice(say.oneCluster(said.cluster.name, said.cluster.at))

@@ -558,24 +558,40 @@ export const gaveUp = (iterations: number, score: number): Notice =>
     fitHints.gave_up,
   )
 
-export const atBoundary = (): Notice =>
+/** `edge` are the rows whose mean is at the end of its range. */
+export const atBoundary = (edge: readonly number[], row: RowName): Notice =>
   notice(
     "warning",
     "boundary",
-    null,
+    "link",
     heading,
-    "The best fit lies where a mean reaches the end of what is possible, so errors in the usual sense do not exist.",
+    edge[0] === undefined
+      ? "The best fit lies where a mean reaches the end of what is possible, so errors in the usual sense do not exist."
+      : `The best fit lies where the mean of ${edge.length === 1 ? row(edge[0]) : `${rows(edge.length)} (first: ${row(edge[0])})`} reaches the end of what is possible, so errors in the usual sense do not exist.`,
     "A link that reaches only possible means has no such edge.",
   )
 
-export const atInfinity = (terms: readonly string[]): Notice =>
+const infiniteHints: Readonly<Record<string, string>> = {
+  binomial: "Something separates successes from failures wholly; only data where both occur could say how much.",
+  poisson: "Where these predictors differ there is no count above 0; only data where there are some could say how much.",
+}
+
+/** `terms` with where each goes. */
+export const atInfinity = (terms: readonly { readonly of: string; readonly toward: "infinity" | "-infinity" }[], family: string): Notice =>
   notice(
     "warning",
     "infinite",
-    null,
+    "predictor",
     heading,
-    `These data are fitted ever better as ${terms.length === 0 ? "a coefficient grows" : `${list(terms)} ${terms.length === 1 ? "grows" : "grow"}`} without end.`,
-    "Something separates the responses wholly; more data where both occur would settle it.",
+    `The fit gets ever better as ${
+      terms.length === 0
+        ? "a coefficient goes to infinity"
+        : several(
+            terms.map(({ of, toward }) => `${of} goes to ${toward === "infinity" ? "∞" : "−∞"}`),
+            6,
+          )
+    }; what is shown is the limit.`,
+    infiniteHints[family] ?? "The means run to the end of what the link can reach; another link may have them within.",
   )
 
 export const severalMaxima = (): Notice =>

@@ -7,6 +7,8 @@ import type { Coefficient, Fit } from "../statistics/fit.ts"
 
 /** Covariances of more coefficients than this would be most of the file. */
 const mostCovariances = 100
+/** Arrays in a summary are no longer than this. */
+const mostRows = 2000
 
 export function summary(found: ModelFinding): Json {
   const { fit, problem } = found
@@ -32,7 +34,7 @@ export function summary(found: ModelFinding): Json {
       iterations: fit.certificate.iterations,
       scaled_score: number(fit.certificate.scaledScore),
       condition: number(fit.certificate.condition),
-      evidence: fit.certificate.evidence,
+      evidence: evidence(found),
     },
     standard_errors: { by: problem.standardErrors, clusters: fit.clusters },
     goodness_of_link:
@@ -68,6 +70,29 @@ export function tried(found: ModelFinding): readonly Json[] {
 export const predictorSays = ({ problem }: ModelFinding): string => {
   const terms = problem.terms.map(({ says }) => says).join(" + ")
   return terms === "" ? "intercept" : problem.intercept ? terms : `${terms} - intercept`
+}
+
+/** Rows at the edge by their number in the file, the first being 1, as every notice counts them. */
+function evidence({ fit, records }: ModelFinding): Json {
+  const shown = fit.certificate.evidence
+  if (shown === null) return null
+  const part = ({ column, times }: { readonly column: string; readonly times: number }): Json => ({ column, times: number(times) })
+  const { stopped } = shown
+  return {
+    dependent: shown.dependent.map(({ column, on }) => ({ column, on: on.map(part) })),
+    directions: shown.directions.map((direction) => direction.map(part)),
+    edge: shown.edge.slice(0, mostRows).map(({ row, multiplier }) => ({ row: (records[row] ?? 0) + 1, multiplier: number(multiplier) })),
+    maxima: shown.maxima.map(number),
+    stopped:
+      stopped === null
+        ? null
+        : {
+            because: stopped.because,
+            steps: stopped.steps,
+            deviance: number(stopped.deviance),
+            decrement: number(stopped.decrement),
+          },
+  }
 }
 
 function coefficient(of: Coefficient): Json {

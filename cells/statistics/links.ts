@@ -98,7 +98,13 @@ const reciprocal: Link = {
   curvature: (eta) => 2 / (eta * eta * eta),
 }
 
-const reciprocalBelow: Link = { ...reciprocal, range: negative, reach: negative }
+/** The same for negative means: towards 0 from below, η goes to −∞. */
+const reciprocalBelow: Link = {
+  ...reciprocal,
+  range: negative,
+  reach: negative,
+  eta: (mu) => (mu === 0 ? -Infinity : 1 / mu),
+}
 
 /** η = √μ. */
 const squareRoot: Link = {

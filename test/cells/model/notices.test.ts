@@ -373,6 +373,26 @@ describe("warnings and remarks", () => {
     expect(outcome.found?.unused).toEqual([{ by: "the offset is missing", rows: 2 }])
   })
 
+  it("says which coefficients run to infinity, and why", async () => {
+    const apart = await finding("response y\nfamily binomial\nlink logit\npredictor x", { x: number(1, 2, 3, 4), y: truth(0, 0, 1, 1) })
+    expect(told(apart)).toEqual([
+      "warning infinite: The fit gets ever better as intercept goes to −∞ and x goes to ∞; what is shown is the limit.",
+    ])
+    expect(apart.notices[0]?.hint).toBe(
+      "Something separates successes from failures wholly; only data where both occur could say how much.",
+    )
+  })
+
+  it("names a row whose mean is at the end of what is possible", async () => {
+    const edge = await finding("response y\nfamily poisson\nlink identity\npredictor x", {
+      x: number(1, 2, 3, 4, 5, 6),
+      y: count(9, 3, 1, 0, 0, 0),
+    })
+    expect(told(edge)).toEqual([
+      "warning boundary: The best fit lies where the mean of row 15 of terrace.csv reaches the end of what is possible, so errors in the usual sense do not exist.",
+    ])
+  })
+
   it("says that nothing is left for the dispersion", async () => {
     const outcome = await finding("response y\nfamily normal\nlink identity\npredictor x + power(x, 2)", {
       x: number(1, 2, 3),

@@ -106,6 +106,11 @@ describe("links", () => {
     }
   })
 
+  it("the reciprocal of negative means goes to −∞ towards 0, that of positive ones to ∞", () => {
+    const spec = { name: "reciprocal", parameters: [] }
+    expect([linkOf(spec, -1).eta(0), linkOf(spec, 1).eta(0)]).toEqual([-Infinity, Infinity])
+  })
+
   it("says which names are links, and takes no other", () => {
     expect([isLinkName("cloglog"), isLinkName("toString"), isLinkName("stukel")]).toEqual([true, false, false])
     expect(() => linkOf({ name: "power", parameters: [] })).toThrow(RangeError)
