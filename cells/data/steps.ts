@@ -9,6 +9,7 @@ import { evaluated } from "../language/evaluate.ts"
 import { namesIn, type Scalar, type Vector } from "../language/expression.ts"
 import { faultFrom, saidWith } from "../language/slip.ts"
 import type { Column } from "../table/column.ts"
+import { inBlocks, type Pause } from "./blocks.ts"
 import { edit } from "./clauses.ts"
 import type { Dropped } from "./finding.ts"
 import * as say from "./notices.ts"
@@ -33,6 +34,7 @@ export type Done = Rows & {
 type Inputs = ReadonlyMap<Name, Input>
 
 export async function afterSteps(said: DataSaid, table: FileTable, inputs: Inputs, work: Work): Promise<Done> {
+  const pause: Pause = () => work.checkpoint()
   const notices: Notice[] = []
   const dropped: Dropped[] = []
   const unread = new Set(table.unread)
@@ -59,14 +61,14 @@ export async function afterSteps(said: DataSaid, table: FileTable, inputs: Input
     const by = `where ${saidWith(step.clause, [])}`
     const before = state.rows
     const { kept, unknown } = keptRows(truths)
-    state = await gathered(state, kept, work)
+    state = await gathered(state, kept, pause)
     if (kept.length < before) dropped.push({ by, rows: before - kept.length, unknown })
     else dropped.push({ by, rows: 0, unknown: 0 })
     if (state.rows === 0 && before > 0) notices.push(say.nothingKept(saidWith(step.clause, []), step.at))
   }
   const kept = state.rows
   if (said.total === null) return { ...state, kept, dropped, total: null, notices }
-  const totalled = await totals(said.total, said, state, unread, work, notices)
+  const totalled = await totals(said.total, said, state, unread, pause, notices)
   return { ...(totalled ?? state), kept, dropped, total: totalled === null ? null : said.total.says, notices }
 }
 
@@ -166,24 +168,25 @@ const keptRows = (truths: Float64Array): { readonly kept: Uint32Array; readonly 
 }
 
 /** The rows with these places, in their order. */
-async function gathered(state: Rows, places: Uint32Array, work: Work): Promise<Rows> {
+async function gathered(state: Rows, places: Uint32Array, pause: Pause): Promise<Rows> {
   if (places.length === state.rows) return state
   const columns = new Map<Name, Column>()
-  for (const [name, column] of state.columns) {
-    columns.set(name, gatheredColumn(column, places))
-    await work.checkpoint()
-  }
+  for (const [name, column] of state.columns) columns.set(name, await gatheredColumn(column, places, pause))
   return { columns, rows: places.length, records: taken(state.records, places) }
 }
 
-const gatheredColumn = (column: Column, places: Uint32Array): Column => {
+async function gatheredColumn(column: Column, places: Uint32Array, pause: Pause): Promise<Column> {
   if ("codes" in column) {
     const codes = new Int32Array(places.length)
-    for (let row = 0; row < places.length; row++) codes[row] = column.codes[places[row] as number] as number
+    await inBlocks(places.length, pause, (from, to) => {
+      for (let row = from; row < to; row++) codes[row] = column.codes[places[row] as number] as number
+    })
     return { ...column, codes }
   }
   const values = new Float64Array(places.length)
-  for (let row = 0; row < places.length; row++) values[row] = column.values[places[row] as number] as number
+  await inBlocks(places.length, pause, (from, to) => {
+    for (let row = from; row < to; row++) values[row] = column.values[places[row] as number] as number
+  })
   return { ...column, values }
 }
 
@@ -196,7 +199,7 @@ async function totals(
   said: DataSaid,
   state: Rows,
   unread: ReadonlySet<Name>,
-  work: Work,
+  pause: Pause,
   notices: Notice[],
 ): Promise<Rows | null> {
   const before = notices.length
@@ -215,8 +218,7 @@ async function totals(
   const groups = new Uint32Array(state.rows)
   let count = Math.min(1, state.rows)
   for (const { name } of total.by) {
-    count = regrouped(groups, count, state.columns.get(name) as Column)
-    await work.checkpoint()
+    count = await regrouped(groups, count, state.columns.get(name) as Column, pause)
   }
   const first = new Uint32Array(count)
   const sizes = new Float64Array(count)
@@ -226,17 +228,19 @@ async function totals(
     sizes[group] = (sizes[group] as number) + 1
   }
   const columns = new Map<Name, Column>()
-  for (const { name } of total.by) columns.set(name, gatheredColumn(state.columns.get(name) as Column, first))
+  for (const { name } of total.by) columns.set(name, await gatheredColumn(state.columns.get(name) as Column, first, pause))
   for (const { name, at } of total.columns) {
     const column = state.columns.get(name) as Column & { readonly values: Float64Array }
     const sums = Array.from({ length: count }, () => new Sum())
     const missing = new Uint32Array(count)
-    for (let row = 0; row < state.rows; row++) {
-      const value = column.values[row] as number
-      const group = groups[row] as number
-      if (Number.isNaN(value)) missing[group] = (missing[group] as number) + 1
-      else (sums[group] as Sum).add(value)
-    }
+    await inBlocks(state.rows, pause, (from, to) => {
+      for (let row = from; row < to; row++) {
+        const value = column.values[row] as number
+        const group = groups[row] as number
+        if (Number.isNaN(value)) missing[group] = (missing[group] as number) + 1
+        else (sums[group] as Sum).add(value)
+      }
+    })
     const values = Float64Array.from(sums, (sum, group) => ((missing[group] as number) > 0 ? Number.NaN : sum.total))
     const lost = missing.reduce((groupsLost, rows) => groupsLost + (rows > 0 ? 1 : 0), 0)
     if (lost > 0) {
@@ -252,39 +256,40 @@ async function totals(
       )
     }
     columns.set(name, { type: column.type === "number" ? "number" : "count", values, unit: column.unit, called: column.called })
-    await work.checkpoint()
   }
   columns.set("rows", { type: "count", values: sizes, unit: null, called: null })
   return { columns, rows: count, records: taken(state.records, first) }
 }
 
 /** Splits the groups by one more column; groups are numbered by first appearance. Gives how many there are. */
-const regrouped = (groups: Uint32Array, count: number, column: Column): number => {
-  const codes = "codes" in column ? column.codes : codesOf(column.values)
+async function regrouped(groups: Uint32Array, count: number, column: Column, pause: Pause): Promise<number> {
+  const codes = "codes" in column ? column.codes : await codesOf(column.values, pause)
   const numbers = new Map<number, number>()
-  for (let row = 0; row < groups.length; row++) {
-    // Groups and codes are both below 2^32 ÷ 8 here, so the pair is one exact number.
-    const pair = ((codes[row] as number) + 1) * count + (groups[row] as number)
-    let number = numbers.get(pair)
-    if (number === undefined) {
-      number = numbers.size
-      numbers.set(pair, number)
+  await inBlocks(groups.length, pause, (from, to) => {
+    for (let row = from; row < to; row++) {
+      // Groups and codes are both fewer than rows, of which a file of 512 MiB has less than 2^26: so the pair is one exact number.
+      const pair = ((codes[row] as number) + 1) * count + (groups[row] as number)
+      const number = numbers.get(pair) ?? numbers.size
+      if (number === numbers.size) numbers.set(pair, number)
+      groups[row] = number
     }
-    groups[row] = number
-  }
+  })
   return numbers.size
 }
 
-const codesOf = (values: Float64Array): Int32Array => {
+/** A number for each different value, −1 for a missing one. */
+async function codesOf(values: Float64Array, pause: Pause): Promise<Int32Array> {
   const known = new Map<number, number>()
   const codes = new Int32Array(values.length).fill(-1)
-  for (let row = 0; row < values.length; row++) {
-    const value = values[row] as number
-    if (Number.isNaN(value)) continue
-    const code = known.get(value) ?? known.size
-    if (code === known.size) known.set(value, code)
-    codes[row] = code
-  }
+  await inBlocks(values.length, pause, (from, to) => {
+    for (let row = from; row < to; row++) {
+      const value = values[row] as number
+      if (Number.isNaN(value)) continue
+      const code = known.get(value) ?? known.size
+      if (code === known.size) known.set(value, code)
+      codes[row] = code
+    }
+  })
   return codes
 }
 
