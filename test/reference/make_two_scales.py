@@ -252,8 +252,9 @@ def case(rnd, family, link, variant):
         ends = [e - c * error, e + c * error]
         out = (link in ("square_root", "reciprocal") or link.startswith("power")) and ends[0] <= 0
         out = out or family == "binomial" and link in ("identity", "log") and not all(0 < mean(end) < 1 for end in ends)
+        out = out or not possible(family, link, e, mean(e))
         bounds = None if out else sorted(mean(end) for end in ends)
-        curve.append({"x": said(at_x), "eta": said(e), "mu": said(mean(e)), "bounds": None if bounds is None else [said(b) for b in bounds]})
+        curve.append({"x": said(at_x), "eta": said(e), "mu": said(mean(e)) if possible(family, link, e, mean(e)) else None, "bounds": None if bounds is None else [said(b) for b in bounds]})
     points = None
     if grouped or family != "binomial":
         points = []
