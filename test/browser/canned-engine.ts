@@ -78,6 +78,10 @@ export class CannedEngine implements Engine {
     return Promise.resolve()
   }
 
+  get reached(): ReadonlySet<string> {
+    return new Set(this.notebook.enclosures.map(({ sha256 }) => sha256))
+  }
+
   subscribe(listen: (event: EngineEvent) => void): () => void {
     this.#listeners.add(listen)
     return () => this.#listeners.delete(listen)

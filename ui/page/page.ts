@@ -189,9 +189,12 @@ export class Page extends LitElement {
     await this.#list()
     const last = kept(lastOpen)
     const known = this.books.find(({ id }) => id === last) ?? this.books[0]
-    if (known !== undefined && (await this.#take(known.id))) return
-    const [first] = this.samples
-    await this.#put(first === undefined ? await blankBook() : await bookOfSample(first))
+    if (known === undefined || !(await this.#take(known.id))) {
+      const [first] = this.samples
+      await this.#put(first === undefined ? await blankBook() : await bookOfSample(first))
+    }
+    // Bytes that nothing reaches any more go; undo begins anew with each load, so now is the time.
+    if (this.desk !== null) await this.#shelf?.sweep(this.desk.engine.reached)
   }
 
   async #list(): Promise<void> {

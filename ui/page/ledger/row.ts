@@ -6,6 +6,7 @@ import { createRef, ref } from "lit/directives/ref.js"
 import { repeat } from "lit/directives/repeat.js"
 import type { Block } from "../../../cells/block.ts"
 import type { Cell, CellId } from "../../../runtime/document.ts"
+import type { Shown } from "../../../runtime/evaluator.ts"
 import type { Notice } from "../../../runtime/notice.ts"
 import { textRange } from "../../../runtime/place.ts"
 import type { Desk } from "../desk.ts"
@@ -68,10 +69,13 @@ export class Row extends LitElement {
   declare gutter: number
   /** No key was struck for a moment: what is wrong may be put into words. */
   declare still: boolean
-  declare failure: string | null
+  /** A finding that could not be drawn, and why. */
+  declare failure: { readonly shown: Shown | null; readonly why: string } | null
 
   #unwatch: (() => void) | null = null
   #watched: CellId | null = null
+  /** What is being drawn. */
+  #shown: Shown | null = null
   #timer: ReturnType<typeof setTimeout> | undefined
   readonly #editor = createRef<HTMLElementTagNameMap["etamu-editor"]>()
   readonly #size = new ResizeObserver(() => this.#measure())
@@ -117,6 +121,7 @@ export class Row extends LitElement {
     const statement = this.querySelector(".statement")
     if (statement !== null) this.#size.observe(statement)
     this.#measure()
+    void this.#watchDrawing()
     if (changed.has("editing") && this.editing !== null) {
       const { at, offer } = this.editing
       this.#editor.value?.take(at, offer)
@@ -219,8 +224,7 @@ export class Row extends LitElement {
     const remarks = beside.filter(({ level }) => level === "remark")
     const list = (of: readonly Notice[]) =>
       of.length === 0 ? nothing : html`<ul class="notices">${of.map((notice) => this.#notice(notice))}</ul>`
-    if (this.failure !== null)
-      return html`<p class="drawing-failed" role="alert">This finding could not be drawn: ${this.failure} That is a fault of the program; the statement is untouched.</p>`
+    this.#shown = how.shown
     const blocks = (how.shown?.blocks ?? []) as readonly Block[]
     return html`
       ${how.stale ? nothing : list(warnings)}
@@ -229,8 +233,28 @@ export class Row extends LitElement {
         (block, i) => `${i} ${block.type}`,
         (block) => html`<etamu-block .block=${block} .cell=${this.cell.id} .stale=${how.stale}></etamu-block>`,
       )}</div>
+      ${
+        this.failure === null || this.failure.shown !== how.shown
+          ? nothing
+          : html`<p class="drawing-failed" role="alert">Not all of this finding could be drawn: ${this.failure.why}. That is a fault of
+            the program; the statement is untouched.</p>`
+      }
       ${how.stale ? nothing : list(remarks)}
     `
+  }
+
+  /** A drawing that fails is said where it would stand, and goes no further. */
+  async #watchDrawing(): Promise<void> {
+    const shown = this.#shown
+    if (this.failure !== null && this.failure.shown === shown) return
+    try {
+      for (const block of this.querySelectorAll("etamu-block")) {
+        await block.updateComplete
+        for (const drawing of block.shadowRoot?.children ?? []) if (drawing instanceof LitElement) await drawing.updateComplete
+      }
+    } catch (error) {
+      this.failure = { shown, why: error instanceof Error ? error.message : String(error) }
+    }
   }
 
   /** Files that the statement names and the notebook does not hold: asked for by name. */
@@ -286,11 +310,12 @@ export class Row extends LitElement {
 
   /** Where the lines of the statement stand, for the gap in the hairline and the knots of the threads. */
   #measure(): void {
-    const top = this.getBoundingClientRect().top
+    const { top, height } = this.getBoundingClientRect()
     const half = 10.5
     this.gutter = this.querySelector(".gutter")?.clientWidth ?? 60
     const lines = this.#editor.value?.lines ?? [...this.querySelectorAll(".statement .line")]
-    const tops = lines.map((line) => Math.round(line.getBoundingClientRect().top - top + half))
+    // The text of a note may run on below the row, where it is not seen: its knots stay in the row.
+    const tops = lines.map((line) => Math.min(Math.round(line.getBoundingClientRect().top - top + half), Math.round(height) - 14))
     if (tops.length !== this.tops.length || tops.some((each, i) => each !== this.tops[i])) this.tops = tops
   }
 
@@ -336,6 +361,9 @@ export class Row extends LitElement {
 
 /** What is about the cell as a whole is said in words and underlines nothing. */
 const inPlace = ({ clause, level }: Notice): boolean => clause !== null || level === "fault"
+
+// Where lines stand is known only once they are drawn: the hairline's gap and the threads' knots need a second draw.
+Row.disableWarning?.("change-in-update")
 
 if (ink.styleSheet !== undefined) document.adoptedStyleSheets = [...document.adoptedStyleSheets, ink.styleSheet]
 

@@ -7,12 +7,14 @@ import {
   type Completion,
   type CompletionContext,
   type CompletionResult,
+  closeCompletion,
+  completionKeymap,
   completionStatus,
   startCompletion,
 } from "@codemirror/autocomplete"
 import { defaultKeymap, insertNewline } from "@codemirror/commands"
 import { type Diagnostic, lintKeymap, setDiagnostics } from "@codemirror/lint"
-import { Annotation, EditorSelection, EditorState, type Range, StateField } from "@codemirror/state"
+import { Annotation, EditorSelection, EditorState, Prec, type Range, StateField } from "@codemirror/state"
 import { Decoration, type DecorationSet, EditorView, keymap } from "@codemirror/view"
 import type { Intent, Notice } from "../../../runtime/notice.ts"
 import { textRange } from "../../../runtime/place.ts"
@@ -155,21 +157,32 @@ export class StatementEditor extends HTMLElement {
       })),
       autocompletion({
         override: [(context) => this.#complete(context)],
+        defaultKeymap: false,
         icons: false,
         closeOnBlur: true,
         optionClass: (option) => `sort-${option.type ?? ""}`,
         activateOnCompletion: (option) => (option as Completion & { more?: boolean }).more === true,
       }),
+      Prec.highest(keymap.of(completionKeymap.filter(({ key }) => key !== "Escape"))),
       keymap.of([
         { key: "Tab", run: acceptCompletion },
         { key: "Enter", run: newClause },
         { key: "Shift-Enter", run: insertNewline },
         { key: "ArrowUp", run: (view) => this.#leaveAt(view, "above") },
         { key: "ArrowDown", run: (view) => this.#leaveAt(view, "below") },
-        { key: "Escape", run: () => this.dispatchEvent(new LeaveEvent("stay")) },
+        { key: "Escape", run: (view) => this.#escape(view) },
+        // The notebook has the only history: the page hears these keys too, and the browser's own undo is kept out.
+        ...["Mod-z", "Mod-y", "Mod-Shift-z"].map((key) => ({ key, run: () => true })),
         ...lintKeymap.filter(({ key }) => key === "F8"),
         ...defaultKeymap.filter(({ key }) => key !== "Escape"),
       ]),
+      EditorView.domEventHandlers({
+        beforeinput: (event) => {
+          if (event.inputType !== "historyUndo" && event.inputType !== "historyRedo") return false
+          event.preventDefault()
+          return true
+        },
+      }),
       EditorView.contentAttributes.of({ spellcheck: "false", autocapitalize: "off", autocorrect: "off" }),
       EditorView.updateListener.of((update) => {
         if (!update.docChanged) return
@@ -177,6 +190,13 @@ export class StatementEditor extends HTMLElement {
         if (!update.transactions.some((each) => each.annotation(outside) === true)) this.dispatchEvent(new TextEvent(this.#text))
       }),
     ]
+  }
+
+  /** Puts the list of completions away where one is open, else leaves. */
+  #escape(view: EditorView): boolean {
+    if (completionStatus(view.state) === "active") return closeCompletion(view)
+    closeCompletion(view)
+    return this.dispatchEvent(new LeaveEvent("stay"))
   }
 
   /** Out of the first line upwards, and out of the last downwards, the arrow goes on to the neighbour. */
@@ -214,7 +234,6 @@ export class StatementEditor extends HTMLElement {
 /** A line feed, and under the heading the two blanks by which a clause stands in. */
 function newClause(view: EditorView): boolean {
   const { state } = view
-  if (completionStatus(state) === "active") return false
   const { statement } = readingOf(state.doc.toString())
   const { from } = state.selection.main
   const inNote = statement.kind === "note"
