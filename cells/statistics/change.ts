@@ -125,18 +125,90 @@ export function designCovariance(basis: Basis, columns: number, C: Float64Array)
   return lowerTriangle(full, columns)
 }
 
-/** X'u from Z'u, over the columns of the basis in its order. */
-export function designScore(basis: Basis, score: Float64Array): Float64Array {
-  const { size } = basis
-  const N = changeMatrix(basis)
+/** N·x, x in the order of the basis' columns. */
+export function intoBasis(basis: Basis, x: Float64Array): Float64Array {
+  const { change, size } = basis
   const out = new Float64Array(size)
-  for (let j = 0; j < size; j++) {
-    let sum = 0
+  if (change.type === "orthogonal") {
     for (let i = 0; i < size; i++) {
-      const n = N[i * size + j] as number
-      if (n !== 0) sum += n * (score[i] as number)
+      let sum = 0
+      for (let j = i; j < size; j++) sum += (change.high[i * size + j] as number) * (x[j] as number)
+      out[i] = sum
     }
-    out[j] = sum
+    return out
+  }
+  const place = placesOf(change.column)
+  for (let j = 0; j < size; j++) {
+    out[j] = (out[j] as number) + (x[j] as number) * (change.scale[j] as number)
+    const on = change.carrier[j] as number
+    if (on < 0) continue
+    const at = place.get(on) as number
+    out[at] = (out[at] as number) + (x[j] as number) * (change.centre[j] as number) * (change.scale[at] as number)
+  }
+  return out
+}
+
+/** N⁻¹·z, in the order of the basis' columns. */
+export function outOfBasis(basis: Basis, z: Float64Array): Float64Array {
+  const { change, size } = basis
+  if (change.type === "orthogonal") {
+    const exact = exactCoefficients(basis, { gamma: z, gammaLow: new Float64Array(size) })
+    return Float64Array.from({ length: size }, (_, j) => exact[2 * j] as number)
+  }
+  const out = new Float64Array(size)
+  const place = placesOf(change.column)
+  for (let j = 0; j < size; j++) {
+    const own = (z[j] as number) / (change.scale[j] as number)
+    out[j] = (out[j] as number) + own
+    const on = change.carrier[j] as number
+    if (on < 0) continue
+    const at = place.get(on) as number
+    out[at] = (out[at] as number) - (change.centre[j] as number) * own
+  }
+  return out
+}
+
+/** N'·u: X'u from Z'u, in the order of the basis' columns. */
+export function designScore(basis: Basis, score: Float64Array): Float64Array {
+  const { change, size } = basis
+  const out = new Float64Array(size)
+  if (change.type === "orthogonal") {
+    for (let j = 0; j < size; j++) {
+      let sum = 0
+      for (let i = 0; i <= j; i++) sum += (change.high[i * size + j] as number) * (score[i] as number)
+      out[j] = sum
+    }
+    return out
+  }
+  const place = placesOf(change.column)
+  for (let j = 0; j < size; j++) {
+    const on = change.carrier[j] as number
+    const carried =
+      on < 0
+        ? 0
+        : (change.centre[j] as number) * (change.scale[place.get(on) as number] as number) * (score[place.get(on) as number] as number)
+    out[j] = (change.scale[j] as number) * (score[j] as number) + carried
+  }
+  return out
+}
+
+/** N'⁻¹·u: Z'u from X'u, in the order of the basis' columns. */
+export function outOfScore(basis: Basis, score: Float64Array): Float64Array {
+  const { change, size } = basis
+  const out = new Float64Array(size)
+  if (change.type === "orthogonal") {
+    for (let j = 0; j < size; j++) {
+      let sum = score[j] as number
+      for (let i = 0; i < j; i++) sum -= (change.high[i * size + j] as number) * (out[i] as number)
+      out[j] = sum / (change.high[j * size + j] as number)
+    }
+    return out
+  }
+  const place = placesOf(change.column)
+  for (let j = 0; j < size; j++) {
+    const on = change.carrier[j] as number
+    const carried = on < 0 ? 0 : (change.centre[j] as number) * (score[place.get(on) as number] as number)
+    out[j] = ((score[j] as number) - carried) / (change.scale[j] as number)
   }
   return out
 }

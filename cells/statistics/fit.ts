@@ -13,7 +13,7 @@ import { nullModel } from "./null-model.ts"
 import type { Problem } from "./problem.ts"
 import type { Recipe } from "./recipe.ts"
 import { type Responses, responsesOf } from "./rows.ts"
-import { Equations, type Maximum, maximum, Pace, type Point, polished } from "./scoring.ts"
+import { Equations, type Maximum, maximum, Pace, type Point, polished, sameWeights } from "./scoring.ts"
 import { linkedLeastSquares, startingPoint } from "./start.ts"
 
 export type { Recipe } from "./recipe.ts"
@@ -211,10 +211,13 @@ function provisionalDispersion(problem: Problem, responses: Responses): (rank: n
   return (rank) => (point) => point.pearson / Math.max(1, n - rank)
 }
 
-/** The same maximum in a basis orthonormal under its own weights, where the weights have made the columns nearly dependent. */
+/**
+ * A maximum inside, its point filled with expected weights; in a basis orthonormal under its own weights, where these have made the columns
+ * nearly dependent.
+ */
 async function sharpened(climb: Climb, phi: (point: Point) => number): Promise<Climb> {
   const { design, equations, found } = climb
-  await equations.fill(found.point, "expected", true)
+  if (!sameWeights(equations)) await equations.fill(found.point, "expected", true)
   const inflation = Factor.of(found.point.gram)?.inflation() ?? Number.POSITIVE_INFINITY
   if (inflation < mostInflation) return climb
   const basis = reweightedBasis(design, equations.basis, found.point.state.weight)
@@ -225,7 +228,9 @@ async function sharpened(climb: Climb, phi: (point: Point) => number): Promise<C
   point.gamma.set(basisCoefficients(basis, beta))
   if (!(await next.fill(point, "expected", true))) return climb
   const again = await polished(next, point, next.point(), phi, found.iterations)
-  return again.end === "arrived" ? { ...climb, equations: next, found: again } : climb
+  if (again.end !== "arrived") return climb
+  await next.fill(again.point, "expected", true)
+  return { ...climb, equations: next, found: again }
 }
 
 const named = (dependences: readonly Dependence[], design: Design): DependentTerms["dependent"] =>

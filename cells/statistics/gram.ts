@@ -75,6 +75,29 @@ export function addRows(
   for (let low = from; low < to; low += blockRows) addBlock(layout, low, Math.min(to, low + blockRows), w, s, sums, scratch)
 }
 
+/** Adds the rows from … to of Σ s·x alone. */
+export function addScores(layout: Layout, from: number, to: number, s: Float64Array, sums: Float64Array): void {
+  const { plain, blocks } = layout.shape
+  for (let low = from; low < to; low += blockRows) {
+    const high = Math.min(to, low + blockRows)
+    for (let i = 0; i < plain.length; i++) {
+      const x = plain[i] as Float64Array | null
+      let sum = 0
+      if (x === null) for (let row = low; row < high; row++) sum += s[row] as number
+      else for (let row = low; row < high; row++) sum += (s[row] as number) * (x[row] as number)
+      sums[i] = (sums[i] as number) + sum
+    }
+    for (let b = 0; b < blocks.length; b++) {
+      const { cells, multiplier } = blocks[b] as Cells
+      const { score } = layout.blocksAt[b] as { score: number }
+      for (let row = low; row < high; row++) {
+        const at = score + (cells[row] as number)
+        sums[at] = (sums[at] as number) + (multiplier === null ? (s[row] as number) : (s[row] as number) * (multiplier[row] as number))
+      }
+    }
+  }
+}
+
 function addBlock(
   layout: Layout,
   from: number,
@@ -197,6 +220,16 @@ export function rangeSums(layout: Layout, w: Float64Array, s: Float64Array): Flo
   return tree.total().slice()
 }
 
+/** X's alone, over the basis. */
+export function scoreSums(layout: Layout, s: Float64Array): Float64Array {
+  const tree = new SumTree(layout.length)
+  for (let chunk = 0; chunk < layout.chunks; chunk++) {
+    addScores(layout, layout.chunkStart(chunk), layout.chunkStart(chunk + 1), s, tree.next())
+    tree.push()
+  }
+  return scoreOf(layout, tree.total())
+}
+
 /** Adds arrays as the leaves of a binary tree, in their order: 64 leaves need 7 arrays. */
 export class SumTree {
   private readonly levels: Float64Array[] = []
@@ -264,6 +297,12 @@ export class Gram {
   }
   diagonalAt(j: number): number {
     return j < this.rest ? (this.matrix[j * this.rest + j] as number) : (this.diagonal[j - this.rest] as number)
+  }
+  at(i: number, j: number): number {
+    if (i < j) return this.at(j, i)
+    if (i < this.rest) return this.matrix[i * this.rest + j] as number
+    if (j < this.rest) return this.cross[(i - this.rest) * this.rest + j] as number
+    return i === j ? (this.diagonal[i - this.rest] as number) : 0
   }
   /** Written out by rows. */
   full(): Float64Array {

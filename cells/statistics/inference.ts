@@ -1,10 +1,11 @@
 // From a maximum to findings: dispersion, errors, tests, criteria, certificate. Every definition is that of the conventions (README.md);
 // nothing here climbs.
 
-import { changeMatrix, designCoefficients, designCovariance, designScore } from "./change.ts"
+import { changeMatrix, designCoefficients, designCovariance, designScore, intoBasis, outOfBasis, outOfScore } from "./change.ts"
 import { isConcave } from "./concavity.ts"
 import { dispersionByLikelihood, dispersionRule } from "./dispersion.ts"
 import { log } from "./elementary.ts"
+import type { Family } from "./family.ts"
 import type { Certificate, Coefficient, DependentTerms, Evidence, Fit, Frame } from "./fit.ts"
 import { cholesky, Factor, type Gram } from "./gram.ts"
 import type { Climb, Limit } from "./limits.ts"
@@ -44,7 +45,7 @@ export async function findings(given: Findings): Promise<Fit> {
   // Likelihood and errors come from the rows whose means stay: all of them, unless coefficients run to infinity.
   const rest = limit.type === "infinite" ? limit.rest : climb
   const point = limit.type === "edge" ? limit.edge.point : (rest?.found.point ?? null)
-  if (rest && point && limit.type !== "edge") await rest.equations.fill(point, "expected", true)
+  if (rest && point && (limit.type === "infinite" || limit.type === "gave_up")) await rest.equations.fill(point, "expected", true)
   const means = wholeMeans(given, point)
   const moved = limit.type === "infinite" ? movedRows(climb, limit.rows, means.mu) : { deviance: 0, pearson: 0 }
   const perfect = !family.discrete && isPerfect(responses, means.mu)
@@ -70,6 +71,7 @@ export async function findings(given: Findings): Promise<Fit> {
   const counted = rank + (family.discrete || rule.given !== null ? 0 : 1)
   const criteria = logLikelihood !== null && limit.type !== "gave_up" && !(family.discrete && phi !== 1)
   const measured = rest && point ? rest.equations : null
+  await climb.equations.pace.rest()
 
   return {
     n,
@@ -92,7 +94,7 @@ export async function findings(given: Findings): Promise<Fit> {
       global: (limit.type === "inside" || limit.type === "edge" || limit.type === "infinite") && isConcave(problem.family, problem.link),
       iterations: climb.found.iterations + (limit.type === "infinite" ? (limit.rest?.found.iterations ?? 0) : 0),
       scaledScore: measured && point ? scaledScore(measured, point, phi === null || phi === 0 ? 1 : phi) : 0,
-      condition: measured && point && limit.type !== "edge" ? conditionOf(measured, point.gram) : Number.NaN,
+      condition: measured && point && limit.type !== "edge" ? conditionOf(measured, point, factor) : Number.NaN,
       evidence: evidenceOf(given, dependences),
     },
     goodnessOfLink: certificate === "interior" && factor && phi !== null && phi > 0 ? goodnessOf(climb, factor, phi, constant, df) : null,
@@ -407,14 +409,15 @@ function logLikelihoodOf(climb: Climb, point: Point, phi: number): number | null
   const { family, link, y, rows } = climb.responses
   const { repeat, precision, trials } = climb.problem
   const { eta, mu } = point.state
+  const density = family.name === "gamma" ? gammaDensity(family) : family.logDensity
   let total = 0
   let part = 0
   for (let i = 0; i < rows; i++) {
     const R = repeat ? (repeat[i] as number) : 1
     const w = precision ? (precision[i] as number) : 1
     const m = mu[i] as number
-    const rest = link.complement === null ? 1 - m : link.complement(eta[i] as number)
-    const f = family.logDensity(y[i] as number, m, rest, trials ? (trials[i] as number) : 1, family.discrete ? 1 : phi / w)
+    const rest = link.complement === null || m < 0.5 ? 1 - m : link.complement(eta[i] as number)
+    const f = density(y[i] as number, m, rest, trials ? (trials[i] as number) : 1, family.discrete ? 1 : phi / w)
     part += family.discrete ? R * w * f : R * f
     if (i % 128 === 127) {
       total += part
@@ -423,6 +426,18 @@ function logLikelihoodOf(climb: Climb, point: Point, phi: number): number | null
   }
   total += part
   return Number.isFinite(total) ? total : null
+}
+
+/** The gamma density as C(φ) − log y − u/(2φ), the dear C computed once for each φ in turn: a row at μ = y = 1 has nothing else. */
+function gammaDensity(family: Family): Family["logDensity"] {
+  let [known, constant] = [Number.NaN, Number.NaN]
+  return (y, mu, rest, trials, phi) => {
+    if (phi !== known) {
+      known = phi
+      constant = family.logDensity(1, 1, 0, trials, phi)
+    }
+    return constant - log(y) - family.unitDeviance(y, mu, rest) / (2 * phi)
+  }
 }
 
 /** D and X² on χ²(df), only where φ is fixed and no row is a single trial. */
@@ -452,15 +467,25 @@ function scaledScore(equations: Equations, point: Point, phi: number): number {
   return most
 }
 
-/** I_jj of the design's own columns. */
-function ownInformation(equations: Equations, gram: Gram): Float64Array {
-  const { basis } = equations
+/** I_jj of the design's own columns, in the order of the basis'. */
+function ownInformation({ basis }: Equations, gram: Gram): Float64Array {
   const p = basis.size
-  const N = changeMatrix(basis)
+  const { change } = basis
+  if (change.type === "scaled") {
+    const place = new Map([...change.column].map((at, j) => [at, j]))
+    return Float64Array.from({ length: p }, (_, j) => {
+      const s = change.scale[j] as number
+      const on = change.carrier[j] as number
+      if (on < 0) return s * s * gram.diagonalAt(j)
+      const at = place.get(on) as number
+      const c = (change.centre[j] as number) * (change.scale[at] as number)
+      return s * s * gram.diagonalAt(j) + 2 * s * c * gram.at(j, at) + c * c * gram.diagonalAt(at)
+    })
+  }
   const out = new Float64Array(p)
   const column = new Float64Array(p)
   for (let j = 0; j < p; j++) {
-    for (let i = 0; i < p; i++) column[i] = N[i * p + j] as number
+    for (let i = 0; i < p; i++) column[i] = change.high[i * p + j] as number
     const product = gram.times(column)
     let sum = 0
     for (let i = 0; i < p; i++) sum += (column[i] as number) * (product[i] as number)
@@ -473,10 +498,13 @@ function ownInformation(equations: Equations, gram: Gram): Float64Array {
 const mostForRotations = 80
 
 /** Ratio of the extreme singular values of √W·X, its columns of length one. */
-function conditionOf(equations: Equations, gram: Gram): number {
+function conditionOf(equations: Equations, point: Point, factor: Factor | null): number {
   const { basis } = equations
+  const { gram } = point
   const p = basis.size
   if (p === 0) return 1
+  if (factor === null) return Number.POSITIVE_INFINITY
+  if (p > mostForRotations) return conditionByPowers(equations, gram, factor)
   const lower = gram.full()
   const scale = new Float64Array(p)
   for (let j = 0; j < p; j++) scale[j] = Math.sqrt(lower[j * p + j] as number)
@@ -502,55 +530,29 @@ function conditionOf(equations: Equations, gram: Gram): number {
     const length = Math.sqrt(squares)
     for (let i = 0; i < p; i++) B[i * p + j] = (B[i * p + j] as number) / length
   }
-  if (p > mostForRotations) return conditionByPower(B, p)
   const values = singularValues(B, p)
   return (values[0] as number) / (values[p - 1] as number)
 }
 
-/** The same for many columns, by powers of B'B and of its inverse: three digits, which is what a condition is read to. */
-function conditionByPower(B: Float64Array, p: number): number {
-  const gram = new Float64Array(p * p)
-  for (let k = 0; k < p; k++) {
-    for (let i = 0; i < p; i++) {
-      const b = B[k * p + i] as number
-      if (b === 0) continue
-      for (let j = 0; j <= i; j++) gram[i * p + j] = (gram[i * p + j] as number) + b * (B[k * p + j] as number)
-    }
-  }
-  const most = powerOf(p, (x) => {
-    const out = new Float64Array(p)
-    for (let i = 0; i < p; i++) {
-      for (let j = 0; j <= i; j++) {
-        const g = gram[i * p + j] as number
-        out[i] = (out[i] as number) + g * (x[j] as number)
-        if (j < i) out[j] = (out[j] as number) + g * (x[i] as number)
-      }
-    }
-    return out
-  })
-  const lower = gram.slice()
-  if (!cholesky(lower, p)) return Number.POSITIVE_INFINITY
-  const least = powerOf(p, (x) => {
-    const out = x.slice()
-    for (let i = 0; i < p; i++) {
-      let sum = out[i] as number
-      for (let k = 0; k < i; k++) sum -= (lower[i * p + k] as number) * (out[k] as number)
-      out[i] = sum / (lower[i * p + i] as number)
-    }
-    for (let i = p - 1; i >= 0; i--) {
-      let sum = out[i] as number
-      for (let k = i + 1; k < p; k++) sum -= (lower[k * p + i] as number) * (out[k] as number)
-      out[i] = sum / (lower[i * p + i] as number)
-    }
-    return out
-  })
+/**
+ * The same for many columns, by powers of the scaled information and of its inverse: a few digits, which is what a condition is read to. The
+ * diagonal block of a large factor stays diagonal.
+ */
+function conditionByPowers(equations: Equations, gram: Gram, factor: Factor): number {
+  const { basis } = equations
+  const lengths = ownInformation(equations, gram).map(Math.sqrt)
+  const scaled = (x: Float64Array): Float64Array => x.map((v, j) => v / (lengths[j] as number))
+  const most = largestPower(basis.size, (x) => scaled(designScore(basis, gram.times(intoBasis(basis, scaled(x))))))
+  const unscaled = (x: Float64Array): Float64Array => x.map((v, j) => v * (lengths[j] as number))
+  const least = largestPower(basis.size, (x) => unscaled(outOfBasis(basis, factor.solve(outOfScore(basis, unscaled(x))))))
   return Math.sqrt(most * least)
 }
 
-function powerOf(p: number, times: (x: Float64Array) => Float64Array): number {
+/** The largest eigenvalue of a symmetric operator, by powers of it. */
+function largestPower(p: number, times: (x: Float64Array) => Float64Array): number {
   let x = Float64Array.from({ length: p }, (_, i) => 1 + ((i * 7919) % 101) / 101)
   let size = 0
-  for (let k = 0; k < 60; k++) {
+  for (let k = 0; k < 40; k++) {
     const y = times(x)
     let squares = 0
     for (const v of y) squares += v * v

@@ -2,7 +2,7 @@
 // direction is proposed by where the iterations were going and then verified row by row, so that nothing is called infinite on the strength of large
 // numbers. Albert & Anderson 1984 (shares); Correia, Guimarães & Zylkin 2019 (counts); conventions, certificates.
 
-import { Factor, gramOf, rangeSums, scoreOf } from "./gram.ts"
+import { Factor, gramOf, rangeSums, scoreSums } from "./gram.ts"
 import type { Responses } from "./rows.ts"
 import { cellTerms, type Equations, linearPredictor } from "./scoring.ts"
 
@@ -79,7 +79,7 @@ function heldStill(equations: Equations, gamma: Float64Array, hold: Float64Array
   for (let round = 0; round < 12; round++) {
     const along = directionOf(equations, out)
     const score = along.map((t, i) => ((hold[i] as number) === 1 ? t : 0))
-    const off = factor.solve(scoreOf(basis.layout, rangeSums(basis.layout, new Float64Array(basis.rows), score)))
+    const off = factor.solve(scoreSums(basis.layout, score))
     for (let j = 0; j < out.length; j++) out[j] = (out[j] as number) - (off[j] as number)
   }
   return out

@@ -1,7 +1,7 @@
 // What each row contributes at a linear predictor: mean, score, weight, deviance. The scalar functions are those of link and family; the
 // pairs fitted most have loops of their own, which share one exponential a row, and a test holds them to the scalar functions.
 
-import { exp, expm1, log } from "./elementary.ts"
+import { exp, expm1, log, log1p } from "./elementary.ts"
 import { familyOf } from "./families.ts"
 import type { Family } from "./family.ts"
 import { isCanonical } from "./legal-pairs.ts"
@@ -105,6 +105,7 @@ export function fillRows(of: Responses, information: Information, from: number, 
   if (of.family.name === "binomial" && of.link.name === "logit") return logitRows(of, from, to, state, sums)
   if (of.family.name === "poisson" && of.link.name === "log") return logRows(of, from, to, state, sums)
   if (of.family.name === "binomial" && of.link.name === "cloglog") return cloglogRows(of, information, from, to, state, sums)
+  if (of.family.name === "gamma" && of.link.name === "log") return gammaLogRows(of, information, from, to, state, sums)
   if (of.family.name === "normal" && of.link.name === "identity") return identityRows(of, from, to, state, sums)
   return anyRows(of, information, from, to, state, sums)
 }
@@ -129,12 +130,13 @@ export function anyRows(of: Responses, information: Information, from: number, t
       continue
     }
     const response = y[i] as number
-    const rest = link.complement === null ? 1 - m : link.complement(e)
+    // Below a half the difference is exact enough; above it has lost what the tail needs.
+    const rest = link.complement === null || m < 0.5 ? 1 - m : link.complement(e)
     const d = times * link.slope(e)
     const v = family.variance(m, rest)
     // For a share near 1 the difference is taken between the failures, which have not lost their digits.
     const residual = binomial && response > 0.5 ? rest - (1 - response) : response - m
-    deviance += own * family.unitDeviance(response, m, rest)
+    deviance += own * (binomial ? shareDeviance(response, m, rest) : family.unitDeviance(response, m, rest))
     if (v > 0) {
       const standard = residual / v
       const ratio = d / v
@@ -152,6 +154,13 @@ export function anyRows(of: Responses, information: Information, from: number, t
   sums[0] = (sums[0] as number) + deviance
   sums[1] = (sums[1] as number) + pearson
   return Number.isFinite(deviance)
+}
+
+/** The binomial unit deviance; where all trials went one way it is a single logarithm. */
+function shareDeviance(y: number, mu: number, rest: number): number {
+  if (y === 1) return -2 * (mu < 0.5 ? log(mu) : log1p(-rest))
+  if (y === 0) return -2 * (rest < 0.5 ? log(rest) : log1p(-mu))
+  return 2 * (devianceTerm(y, mu) + devianceTerm(1 - y, rest))
 }
 
 // Loops of their own ---------------------------------------------------------------------------------------------------------------------
@@ -176,7 +185,7 @@ function logitRows(of: Responses, from: number, to: number, state: RowState, sum
     score[i] = own * residual
     weight[i] = own * v
     if (own === 0) continue
-    deviance += own * 2 * (devianceTerm(response, m) + devianceTerm(1 - response, rest))
+    deviance += own * shareDeviance(response, m, rest)
     if (v > 0) pearson += own * residual * (residual / v)
   }
   sums[0] = (sums[0] as number) + deviance
@@ -200,6 +209,29 @@ function logRows(of: Responses, from: number, to: number, state: RowState, sums:
     if (own === 0) continue
     deviance += own * 2 * devianceTerm(response, m)
     if (m > 0) pearson += own * residual * (residual / m)
+  }
+  sums[0] = (sums[0] as number) + deviance
+  sums[1] = (sums[1] as number) + pearson
+  return Number.isFinite(deviance)
+}
+
+function gammaLogRows(of: Responses, information: Information, from: number, to: number, state: RowState, sums: Float64Array): boolean {
+  const { y, a } = of
+  const { eta, mu, score, weight } = state
+  const observed = information === "observed"
+  let deviance = 0
+  let pearson = 0
+  for (let i = from; i < to; i++) {
+    const own = a[i] as number
+    const m = exp(eta[i] as number)
+    mu[i] = m
+    const response = y[i] as number
+    const residual = (response - m) / m
+    score[i] = own * residual
+    weight[i] = observed ? own * (response / m) : own
+    if (own === 0) continue
+    deviance += (own * 2 * devianceTerm(m, response)) / m
+    pearson += own * residual * residual
   }
   sums[0] = (sums[0] as number) + deviance
   sums[1] = (sums[1] as number) + pearson
@@ -232,7 +264,7 @@ function cloglogRows(of: Responses, information: Information, from: number, to: 
     score[i] = own * residual * ratio
     weight[i] = own * w
     if (own === 0) continue
-    deviance += own * 2 * (devianceTerm(response, m) + devianceTerm(1 - response, rest))
+    deviance += own * shareDeviance(response, m, rest)
     if (v > 0) pearson += own * residual * (residual / v)
   }
   sums[0] = (sums[0] as number) + deviance

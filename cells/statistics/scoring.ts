@@ -4,7 +4,7 @@
 
 import type { Basis, Cells } from "./basis.ts"
 import { productError, WideSum } from "./double-double.ts"
-import { addRows, blockRows, Factor, Gram, gramOf, type Layout, rangeSums, SumTree, scoreOf } from "./gram.ts"
+import { addRows, blockRows, Factor, Gram, gramOf, type Layout, rangeSums, SumTree, scoreOf, scoreSums } from "./gram.ts"
 import { fillRows, type Information, type Responses, type RowState, rowState } from "./rows.ts"
 
 /** A point of the parameters with everything a pass over the rows gave. */
@@ -145,7 +145,7 @@ export class Equations {
 
   /** Σ s·x for other scores. */
   scored(score: Float64Array): Float64Array {
-    return scoreOf(this.layout, rangeSums(this.layout, new Float64Array(this.basis.rows), score))
+    return scoreSums(this.layout, score)
   }
 }
 
@@ -209,7 +209,8 @@ export async function polished(
   let other = spare
   let information: Information = "observed"
   let iterations = steps
-  await equations.fill(current, information, true)
+  // Under the canonical link the weights at hand are the observed ones already.
+  if (!sameWeights(equations)) await equations.fill(current, information, true)
   let factor = Factor.of(current.gram)
   if (factor === null) {
     information = "expected"
@@ -248,6 +249,9 @@ export async function polished(
   // Where the next step would leave the possible means and the score has not vanished, the maximum is not inside.
   return { point: current, iterations, end: left && decrement > 1e-12 * phi(current) ? "stuck" : "arrived", decrement, step }
 }
+
+/** Whether a pass with expected weights is also one with observed weights and η to full precision. */
+export const sameWeights = ({ responses, basis }: Equations): boolean => responses.canonical && basis.change.type === "scaled"
 
 /** η of the rows from … to: offset, columns, cells. */
 export function linearPredictor(
