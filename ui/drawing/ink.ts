@@ -33,8 +33,8 @@ ${links}
 .scene .band { fill: var(--link); fill-opacity: 0.16; }
 .scene .band.beyond { fill-opacity: 0.1; }
 .scene .band.ghost { fill-opacity: 0.1; }
-.scene .curve { stroke: var(--link); stroke-width: 1.25; stroke-opacity: 0.85; stroke-linejoin: round; }
-.scene .curve.beyond { stroke-opacity: 0.5; }
+.scene .curve { stroke: var(--link); stroke-width: 1.1; stroke-opacity: 0.75; stroke-linejoin: round; }
+.scene .curve.beyond { stroke-opacity: 0.45; }
 .scene .curve.chosen { stroke-width: 2.5; stroke-opacity: 1; }
 .scene .curve.chosen.beyond { stroke-width: 1.75; stroke-opacity: 0.75; }
 .scene .curve.ghost { stroke-width: 2; stroke-opacity: 1; }

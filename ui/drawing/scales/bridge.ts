@@ -46,12 +46,13 @@ export function etaAt(pairs: Pairs, mu: number): number {
   return throughPairs(pairs, mu, low - 1)
 }
 
-/** How far two look-ups from different neighbours differ: where it is more than is shown, the pairs are too few to say. */
+/** How far a look-up from one pair fewer would differ: where that is more than is shown, the pairs are too few to say. */
 function doubtAt(pairs: Pairs, mu: number): number {
   const low = pairBelow(pairs, mu)
   if (low === null) return Number.POSITIVE_INFINITY
   if (pairs.mu[low] === mu || pairs.mu[low + 1] === mu) return 0
-  return Math.abs(throughPairs(pairs, mu, low - 2) - throughPairs(pairs, mu, low))
+  const whole = throughPairs(pairs, mu, low - 1)
+  return Math.max(Math.abs(whole - throughPairs(pairs, mu, low, 3)), Math.abs(whole - throughPairs(pairs, mu, low - 1, 3))) / 2
 }
 
 /** The index of the last pair that is not above a mean, with one more pair after it; null outside. */
@@ -68,20 +69,33 @@ function pairBelow({ mu: means }: Pairs, mu: number): number | null {
   return low
 }
 
-/** The cubic through four pairs in a row, at a mean. */
-function throughPairs({ mu: means, eta: etas }: Pairs, mu: number, from: number): number {
+/** The polynomial through so many pairs in a row, at a mean. */
+function throughPairs({ mu: means, eta: etas }: Pairs, mu: number, from: number, count = 4): number {
   const n = means.length
-  const first = Math.max(0, Math.min(n - 4, from))
-  const last = Math.min(n - 1, first + 3)
+  const first = Math.max(0, Math.min(n - count, from))
+  const last = Math.min(n - 1, first + count - 1)
+  const along = evened(means)
+  const at = along(mu)
   let sum = 0
   for (let i = first; i <= last; i += 1) {
     let weight = 1
+    const here = along(means[i] as number)
     for (let j = first; j <= last; j += 1) {
-      if (j !== i) weight *= (mu - (means[j] as number)) / ((means[i] as number) - (means[j] as number))
+      if (j === i) continue
+      const there = along(means[j] as number)
+      weight *= (at - there) / (here - there)
     }
     sum += weight * (etas[i] as number)
   }
   return sum
+}
+
+/** What the look-up runs along: the log of the odds where shares lie close together towards their ends, else the mean itself. */
+function evened(means: Float64Array): (mu: number) => number {
+  const n = means.length
+  const gap = (i: number): number => (means[i + 1] as number) - (means[i] as number)
+  const isDenser = n > 4 && gap(0) < gap(n >> 1) / 2
+  return isDenser && (means[0] as number) > 0 && (means[n - 1] as number) < 1 ? (mu) => Math.log(mu / (1 - mu)) : (mu) => mu
 }
 
 /** Lines that show how the link spreads the means: the pairs, thinned until neighbours stand apart on at least one edge. */
@@ -96,6 +110,10 @@ export function bridgeHairs(pairs: Pairs, edges: BridgeEdges, apart: number): re
   return kept
 }
 
+/** Room beyond this many pixels counts no more. */
+const ROOMY = 72
+/** Pixels of room that the roundest number is worth over one that is not. */
+const UNROUND = 26
 /** In pixels of clear room, less what an unround number costs. */
 const LEAST_WORTH = -10
 
@@ -117,19 +135,14 @@ export function labelledLines(pairs: Pairs, edges: BridgeEdges, most: number): r
     let best: (typeof roomy)[number] | null = null
     let bestWorth = Number.NEGATIVE_INFINITY
     for (const line of left) {
-      const clear = Math.min(
-        ...kept.map((other) =>
-          Math.min(
-            clearance(line.from, line.muText, other.from, other.muText, edges.runs),
-            clearance(line.to, line.etaText, other.to, other.etaText, edges.runs),
-          ),
-        ),
-      )
-      if (clear < 0) {
+      const near = Math.min(ROOMY, ...kept.map((other) => clearance(line.from, line.muText, other.from, other.muText, edges.runs)))
+      const far = Math.min(ROOMY, ...kept.map((other) => clearance(line.to, line.etaText, other.to, other.etaText, edges.runs)))
+      if (near < 0 || far < 0) {
         left.delete(line)
         continue
       }
-      const worth = Math.min(clear, 48) - line.cost * 26
+      // Room counts on both edges: a tail that is a hair's breadth of μ can be half of η.
+      const worth = (near + far) / 2 - line.cost * UNROUND
       if (worth > bestWorth) {
         bestWorth = worth
         best = line

@@ -36,9 +36,10 @@ export function curveMarks(block: ScalesBlock, layout: ScalesLayout, ghost: Scal
   // candidate would be a thicket: there the others are seen when previewed.
   const others = which === "mean" || block.aligned ? (block.split === null ? block.candidates : []) : []
   for (const other of others) {
-    if (other === subject || other === ghost) continue
-    for (const curve of other.curves)
-      marks.push(...lineMarks(other.link, curve, valuesOf(curve, which, stay), panel, linkRole(other.link), 0))
+    // A fit in trouble is drawn when it is rested on; among the rest it would be taken for a candidate like them.
+    if (other === subject || other === ghost || other.trouble !== null) continue
+    const role = ghost === null ? linkRole(other.link) : `${linkRole(other.link)} held-back`
+    for (const curve of other.curves) marks.push(...lineMarks(other.link, curve, valuesOf(curve, which, stay), panel, role, 0))
   }
   subject.curves.forEach((curve, i) => {
     marks.push(...bandMarks(subject.link, curve, valuesOf(curve, which, stay), panel, linkRole(subject.link)))

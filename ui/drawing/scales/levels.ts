@@ -19,7 +19,9 @@ function shares(
   const { subject } = layout
   const { x } = layout[which]
   const comparable = (which === "mean" || block.aligned) && block.split === null
-  const others = comparable ? block.candidates.filter((other) => other !== subject && other.curves.length > 0) : []
+  const others = comparable
+    ? block.candidates.filter((other) => other !== subject && other.curves.length > 0 && other.trouble === null)
+    : []
   const room = ((x.place(1) - x.place(0)) * 0.86) / Math.max(1, subject.curves.length)
   return { room, step: Math.min(13, room / (3 + others.length)), others }
 }

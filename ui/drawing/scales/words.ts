@@ -22,9 +22,12 @@ export function scalesLegend(block: ScalesBlock, layout: ScalesLayout): readonly
     sentences.push("Shaded: outside the data, lines there are extrapolated.")
   }
   sentences.push("Tinted in the bridge: the means these data use.")
-  const held = block.candidates.filter((candidate) => candidate !== subject && candidate.curves.length > 0).length
-  if (held > 0 && block.split === null) {
+  const beside = block.candidates.filter((candidate) => candidate !== subject && candidate.curves.length > 0)
+  if (beside.some((candidate) => candidate.trouble === null) && block.split === null) {
     sentences.push(block.across.levels === null ? "Thin lines: candidates for comparison." : "Short strokes: candidates for comparison.")
+  }
+  if (beside.some((candidate) => candidate.trouble !== null || block.split !== null)) {
+    sentences.push(block.split === null ? "Fits in trouble are drawn when rested on." : "Candidates are drawn when rested on.")
   }
   const cut = subject.points.reduce(
     (count, points) => count + points.working.reduce((sum, z) => sum + (z < predictor.y.from || z > predictor.y.to ? 1 : 0), 0),

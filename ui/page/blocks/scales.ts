@@ -111,9 +111,11 @@ export class ScalesElement extends LitElement {
         white-space: nowrap;
       }
       .troubles {
-        list-style: none;
         margin: 4px 0 0;
-        padding: 0;
+        max-width: 92ch;
+      }
+      .troubles b {
+        font-weight: 600;
       }
       .reading {
         display: flex;
@@ -217,30 +219,33 @@ export class ScalesElement extends LitElement {
 
   #strip(block: ScalesBlock): TemplateResult {
     const reachable = this.walked ?? (block.candidates.find((candidate) => candidate.chosen) ?? block.candidates[0])?.link
-    const troubled = block.candidates.filter((candidate) => candidate.trouble !== null)
+    const troubles = [...new Set(block.candidates.flatMap((candidate) => candidate.trouble ?? []))]
     return html`<div class="strip" role="toolbar" aria-label="candidate links" @keydown=${this.#walk}>
         ${repeat(
           block.candidates,
           (candidate) => candidate.link,
-          (candidate) => this.#candidate(block, candidate, candidate.link === reachable),
+          (candidate) => this.#candidate(block, candidate, candidate.link === reachable, troubles),
         )}
       </div>
       ${
-        troubled.length === 0
+        troubles.length === 0
           ? nothing
-          : html`<ul class="troubles quiet">
-              ${troubled.map((candidate) => html`<li id=${`trouble-${candidate.link}`}><b>${candidate.link}</b>: ${candidate.trouble}</li>`)}
-            </ul>`
+          : html`<p class="troubles quiet">
+              ${troubles.map((trouble, i) => {
+                const links = block.candidates.filter((candidate) => candidate.trouble === trouble).map((candidate) => candidate.link)
+                return html`<span id=${`trouble-${i}`}><b>${links.join(", ")}</b>: ${sentenceEnd(trouble)}</span> `
+              })}
+            </p>`
       }`
   }
 
-  #candidate(block: ScalesBlock, candidate: ScalesCandidate, reachable: boolean): TemplateResult {
+  #candidate(block: ScalesBlock, candidate: ScalesCandidate, reachable: boolean, troubles: readonly string[]): TemplateResult {
     const ink = linkInk(candidate.link)
     return html`<button
       class=${`candidate link-${ink.colour}${this.preview === candidate.link ? " previewed" : ""}`}
       data-link=${candidate.link}
       aria-pressed=${candidate.chosen}
-      aria-describedby=${candidate.trouble === null ? nothing : `trouble-${candidate.link}`}
+      aria-describedby=${candidate.trouble === null ? nothing : `trouble-${troubles.indexOf(candidate.trouble)}`}
       tabindex=${reachable ? 0 : -1}
       title=${`η = ${candidate.formula}`}
       @pointerenter=${() => this.#rest(candidate.link)}
@@ -393,6 +398,9 @@ function standing(block: ScalesBlock, candidate: ScalesCandidate): string {
 
 const unfitted = (block: ScalesBlock, candidate: ScalesCandidate): string =>
   candidate.trouble?.replace(/\.$/, "") ?? (block.complete ? "there is no fit" : "not fitted yet")
+
+/** A trouble as a sentence of its own, whether or not it came with a full stop. */
+const sentenceEnd = (text: string): string => (/[.!?]$/.test(text) ? text : `${text}.`)
 
 /** Where a key leads on the strip, or null. */
 export function stripStep(key: string, at: number, length: number): number | null {

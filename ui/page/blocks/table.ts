@@ -59,8 +59,12 @@ export class TableElement extends LitElement {
       .absent {
         color: var(--soft);
       }
+      .whole {
+        display: flex;
+        flex-wrap: wrap;
+        align-items: flex-end;
+      }
       .asks {
-        margin-top: 2px;
         min-height: 26px;
       }
       @media (hover: hover) {
@@ -124,7 +128,7 @@ export class TableElement extends LitElement {
         this.full,
       ),
     )
-    return html`<div class="scroll" tabindex=${block.columns.length > 4 ? 0 : nothing} role="group" aria-label=${block.caption ?? "table"}>
+    return html`<div class="whole"><div class="scroll" tabindex=${block.columns.length > 4 ? 0 : nothing} role="group" aria-label=${block.caption ?? "table"}>
         <table>
           ${withCaption && block.caption !== null ? html`<caption>${block.caption}</caption>` : html`<caption class="unseen">${block.caption ?? "table"}</caption>`}
           <thead>
@@ -152,7 +156,7 @@ export class TableElement extends LitElement {
         <button class="small-button" @click=${() => this.#copy(block)}>copy</button
         ><button class="small-button" aria-pressed=${this.full} @click=${() => this.#turn()}>${this.full ? "fewer digits" : "every digit"}</button>
         <span class="quiet" role="status">${this.said ?? ""}</span>
-      </div>`
+      </div></div>`
   }
 
   #turn(): void {

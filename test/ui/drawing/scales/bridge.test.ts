@@ -61,11 +61,14 @@ describe("looking up g between pairs", () => {
     expect(etaAt(pairs, 0.95)).toBeNaN()
   })
 
-  it("agrees with the link to a thousandth over the middle of the means", () => {
+  it("agrees with the link to a thousandth, in the tails too", () => {
     for (const candidate of beetleScales().candidates) {
       const g = maths[candidate.link]?.g as (mu: number) => number
-      for (const mu of [0.05, 0.1, 0.25, 0.5, 0.75, 0.9, 0.95])
-        expect(Math.abs(etaAt(candidate.bridge, mu) - g(mu))).toBeLessThan(0.002 * Math.max(1, Math.abs(g(mu))))
+      // The cauchit runs off so fast that its tails want more pairs than there are; there the bridge leaves its numbers out.
+      for (const mu of candidate.link === "cauchit"
+        ? [0.1, 0.25, 0.5, 0.75, 0.9]
+        : [0.002, 0.01, 0.05, 0.1, 0.25, 0.5, 0.75, 0.9, 0.95, 0.99, 0.998])
+        expect(Math.abs(etaAt(candidate.bridge, mu) - g(mu))).toBeLessThan(0.001 * Math.max(1, Math.abs(g(mu))))
     }
   })
 })
