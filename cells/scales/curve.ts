@@ -5,7 +5,7 @@ import type { ScalesCurve } from "../block.ts"
 import type { ModelFinding } from "../model-finding.ts"
 import type { Fit } from "../statistics/fit.ts"
 import { designAt, linkOf, predicted } from "../statistics/index.ts"
-import type { Link } from "../statistics/link.ts"
+import type { Link, Range } from "../statistics/link.ts"
 import type { LinkSpec, Variable } from "../statistics/problem.ts"
 import { heldVariables, offsetAt, rowWeight, type Setting, variablesOf } from "./setting.ts"
 
@@ -97,8 +97,16 @@ function quadratic(covariance: Float64Array, gradient: readonly number[]): numbe
   return sum
 }
 
-/** Both scales along `x` from a line and the width `c` of its band in standard errors. */
-export function curveOf(spec: LinkSpec, line: Line, c: number, x: Float64Array, level: string | null, inside: Uint8Array): ScalesCurve {
+/** Both scales along `x` from a line and the width `c` of its band in standard errors; a mean outside `possible` is a gap. */
+export function curveOf(
+  spec: LinkSpec,
+  possible: Range,
+  line: Line,
+  c: number,
+  x: Float64Array,
+  level: string | null,
+  inside: Uint8Array,
+): ScalesCurve {
   const link = linkOf(spec)
   const n = x.length
   const curve = {
@@ -112,32 +120,32 @@ export function curveOf(spec: LinkSpec, line: Line, c: number, x: Float64Array, 
     muHigh: new Float64Array(n),
     inside,
   }
-  const { low, high } = link.reach
   for (let i = 0; i < n; i++) {
     const eta = line.eta[i] as number
     const half = c * (line.error[i] as number)
-    const gives = eta > low && eta < high
+    const mean = meanWithin(link, possible, eta)
+    const gives = mean > possible.low && mean < possible.high && eta > link.reach.low && eta < link.reach.high
     curve.eta[i] = eta
     curve.etaLow[i] = eta - half
     curve.etaHigh[i] = eta + half
-    curve.mu[i] = gives ? link.mean(eta) : Number.NaN
-    const ends = [eta - half, eta + half].map((end) => (gives ? meanWithin(link, end) : Number.NaN))
+    curve.mu[i] = gives ? mean : Number.NaN
+    const ends = [eta - half, eta + half].map((end) => (gives ? meanWithin(link, possible, end) : Number.NaN))
     curve.muLow[i] = Math.min(...ends)
     curve.muHigh[i] = Math.max(...ends)
   }
   return curve
 }
 
-/** The mean at η, or the end of the range that η has gone past. */
-export function meanWithin(link: Link, eta: number): number {
+/** The mean at η, or the end of the possible means that η has gone past. */
+export function meanWithin(link: Link, possible: Range, eta: number): number {
   const { reach, range } = link
-  if (eta > reach.low && eta < reach.high) return link.mean(eta)
   if (Number.isNaN(eta)) return Number.NaN
+  if (eta > reach.low && eta < reach.high) return Math.min(possible.high, Math.max(possible.low, link.mean(eta)))
   const rising = link.slope(middleOf(reach)) > 0
-  return eta <= reach.low === rising ? range.low : range.high
+  return eta <= reach.low === rising ? Math.max(range.low, possible.low) : Math.min(range.high, possible.high)
 }
 
-function middleOf({ low, high }: Link["reach"]): number {
+function middleOf({ low, high }: Range): number {
   if (low === -Infinity) return high === Infinity ? 0 : high - 1
   return high === Infinity ? low + 1 : (low + high) / 2
 }

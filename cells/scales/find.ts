@@ -147,7 +147,10 @@ function settingOf(said: ScalesSaid, name: Name, model: ModelFinding, inputs: In
   let range = data
   if (said.range !== null) {
     if (across.type === "factor") return fault(say.rangeOfLevels(acrossName, said.range.at))
-    const [from, to] = [numberOf(said.range.from, "from", inputs, fault), numberOf(said.range.to, "from", inputs, fault)]
+    const [from, to] = [
+      numberOf(said.range.from, said.range.at, "from", inputs, fault),
+      numberOf(said.range.to, said.range.at, "from", inputs, fault),
+    ]
     if (from === null || to === null) return null
     if (from >= to) return fault(say.emptyRange(from, to, said.range.at))
     range = [from, to]
@@ -201,14 +204,14 @@ function heldAt(name: Name, variable: Variable, choice: Choice, at: Place, input
   return code >= 0 ? code : fault(say.noSuchLevel(name, String(value), variable.levels, at))
 }
 
-/** The number a bound stands for; null once a fault was said. */
-function numberOf(bound: Bound, clause: string, inputs: Inputs, fault: (notice: Notice) => null): number | null {
+/** The number a bound stands for; null once a fault was said, at the bound or, for a bare word, at the `whole` it stands in. */
+function numberOf(bound: Bound, whole: Place, clause: string, inputs: Inputs, fault: (notice: Notice) => null): number | null {
   if (bound.type === "number") return bound.value
   if (bound.type === "cell") {
     const value = inputs.get(bound.name)?.value
     return typeof value === "number" && Number.isFinite(value) ? value : fault(say.notANumber(bound.name, clause, bound.at))
   }
-  return fault(say.notANumber(bound.type === "estimate" ? "estimate" : "infinity", clause, { clause: 0, from: 0, to: 0 }))
+  return fault(say.notANumber(bound.type === "estimate" ? "estimate" : "infinity", clause, whole))
 }
 
 /** The candidates on the strip: those stated, else the named links legal for the family; null once a fault was said. */
@@ -221,7 +224,10 @@ function candidateLinks(
   const family = model.problem.family.name
   const legal = legalLinks(family)
   if (said.beside === null) {
+    // Links made for the family's own means first: on a share, those that reach every share and nothing else.
+    const made = (name: string): number => (links[name]?.mean === families[family]?.mean ? 0 : 1)
     return legal
+      .toSorted((a, b) => made(a) - made(b))
       .filter((name) => links[name]?.parameters.length === 0 && links[name]?.later !== true)
       .map((name) => ({ spec: { name, parameters: [] }, says: name }))
   }
@@ -235,7 +241,7 @@ function candidateLinks(
     else {
       const parameters: number[] = []
       for (const bound of call.bounds ?? []) {
-        const number = numberOf(bound, "beside", inputs, fault)
+        const number = numberOf(bound, at, "beside", inputs, fault)
         if (number !== null) parameters.push(number)
       }
       const says = parameters.length === 0 ? call.name : `${call.name}(${parameters.join(", ")})`
@@ -305,7 +311,7 @@ class Plot {
       const line: Line = plan.averaged
         ? await averagedLine(model, of, link, plan.of, grid, code, () => work.checkpoint())
         : heldLine(model, of, plan.of, grid, code)
-      curves.push(curveOf(spec, line, c, grid, level, inside))
+      curves.push(curveOf(spec, familyOf(model.problem.family).range, line, c, grid, level, inside))
       if (!plan.points || rows.length === 0) continue
       const at = (x: Float64Array): Float64Array => (plan.averaged ? along(grid, line.eta, x) : heldLine(model, of, plan.of, x, code).eta)
       points.push(pointsOf(model, of, spec, rows, plan.x, at, level, plan.axis.levels !== null))

@@ -64,7 +64,7 @@ export const scalesWords: Words<ScalesSaid> = {
         averaged: isYes(one("averaged"), false),
         range:
           range !== null && from !== null && to !== null
-            ? { from, to, at: { clause: range.clause, from: 0, to: statement.clauses[range.clause]?.tokens.length ?? 0 } }
+            ? { from, to, at: { clause: range.clause, from: 0, to: (statement.clauses[range.clause]?.tokens.length ?? 0) + 1 } }
             : null,
         points: isYes(one("points"), true),
         beside:
