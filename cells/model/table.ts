@@ -53,10 +53,6 @@ export const scalarOf = (value: Value | undefined): Scalar | null =>
         ? { type: "text", text: value }
         : null
 
-/** Whether a row of a column has no value. */
-export const isMissing = (column: Column, row: number): boolean =>
-  "codes" in column ? (column.codes[row] as number) < 0 : Number.isNaN(column.values[row] as number)
-
 const isRecord = (value: Value): value is { readonly [part: string]: Value } =>
   typeof value === "object" && value !== null && !Array.isArray(value) && !ArrayBuffer.isView(value)
 

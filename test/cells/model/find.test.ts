@@ -167,6 +167,16 @@ describe("predictors", () => {
     })
   })
 
+  it("may have names that mean something to a program", async () => {
+    const odd = Object.fromEntries([
+      ["__proto__", beds["x"] as Table[string]],
+      ["constructor", beds["hours"] as Table[string]],
+      ["buds", beds["buds"] as Table[string]],
+    ])
+    const outcome = await finding("response buds\nfamily poisson\nlink log\npredictor __proto__\noffset log(constructor)", odd)
+    close(betas(outcome), betas(await finding("response buds\nfamily poisson\nlink log\npredictor x\noffset log(hours)", beds)))
+  })
+
   it("may be none, and may do without the constant", async () => {
     expect(terms(await finding("response buds\nfamily poisson\nlink log\npredictor intercept", beds))).toEqual(["intercept"])
     const through = await finding("response buds\nfamily poisson\nlink identity\npredictor x - intercept", beds)

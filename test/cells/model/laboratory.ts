@@ -75,11 +75,12 @@ export async function finding(
   const asked = modelWords.names(said).uses.find(({ name }) => name === "d")
   const parts = asked === undefined || asked.parts === "all" ? [] : asked.parts
   const offered = [...Object.keys(table), rowsPart]
-  const value: Record<string, Value> = { [rowsPart]: { file: "terrace.csv", sha256: "0".repeat(64), records } }
-  for (const part of parts) if (table[part] !== undefined) value[part] = table[part]
+  const identity: Value = { file: "terrace.csv", sha256: "0".repeat(64), records }
+  const there = parts.filter((part) => Object.hasOwn(table, part)).map((part): [string, Value] => [part, table[part] as Column])
+  const value: Value = Object.fromEntries([[rowsPart, identity], ...there])
   const key = "0".repeat(64) as Key
   const inputs = new Map<string, Input>(Object.entries(cells).map(([name, cell]) => [name, { value: cell, key, offers: null }]))
-  if (!inputs.has("d")) inputs.set("d", { value, key, offers: parts.every((part) => part in value) ? null : offered })
+  if (!inputs.has("d")) inputs.set("d", { value, key, offers: parts.every((part) => Object.hasOwn(value, part)) ? null : offered })
   const outcome = await model.evaluate(said, inputs, { ...work, near })
   return { ...outcome, notices: [...notices, ...outcome.notices], text: statement }
 }

@@ -1,0 +1,85 @@
+// What is said beside a finding: what was taken without being said, what means something else than may be thought, and what was hard about
+// the fit.
+
+import type { Notice, Place } from "../../runtime/notice.ts"
+import type { Fit } from "../statistics/fit.ts"
+import type { Problem } from "../statistics/problem.ts"
+import * as say from "./notices.ts"
+import type { Response } from "./response.ts"
+import type { ModelSaid } from "./words.ts"
+
+type Say = (notice: Notice) => void
+
+/** What was taken without being said, or means something else than may be thought. */
+export function remarks(
+  said: ModelSaid,
+  problem: Problem,
+  response: Response,
+  link: { readonly says: string; readonly chosen: boolean },
+  notice: Say,
+): void {
+  const family = problem.family.name
+  if (!link.chosen) notice(say.linkNotChosen(link.says, family))
+  if (said.precision !== null && (family === "binomial" || family === "poisson"))
+    notice(say.precisionCounts(family, said.precision.name, said.precision.at))
+  if (said.exposure !== null && family === "gamma" && said.response?.type === "column")
+    notice(say.exposureAsAmount(said.exposure.name, said.response.column.name, said.exposure.at))
+  const [first] = problem.y
+  if (said.response !== null && problem.rows > 1 && first !== undefined && problem.y.every((value) => value === first))
+    notice(say.constantResponse(response.finding.label, constantSays(first, response), responsePlace(said)))
+  if (said.interval?.by === "profile") notice(say.profileNotYet(said.interval.at))
+}
+
+const constantSays = (value: number, response: Response): string =>
+  response.finding.measured === "truth"
+    ? value === 1
+      ? "true"
+      : "false"
+    : response.finding.measured === "share"
+      ? `a share of ${value}`
+      : String(value)
+
+const responsePlace = (said: ModelSaid): Place =>
+  said.response?.type === "successes" ? said.response.successes.at : (said.response?.column.at ?? { clause: -1, from: 0, to: 0 })
+
+/** At most so many dependent columns are named one by one. */
+const namedDependences = 4
+
+/** What was hard about the fit. */
+export function fitNotices(said: ModelSaid, problem: Problem, of: Fit, rowName: say.RowName, notice: Say): void {
+  const { certificate } = of
+  const at: Place = { clause: said.predictorAt, from: 0, to: 1 }
+  const dependent = certificate.evidence?.dependent ?? []
+  for (const { column, on } of dependent.slice(0, namedDependences)) {
+    notice(
+      say.dependentTerm(
+        column,
+        on.map((part) => part.column),
+        at,
+      ),
+    )
+  }
+  if (dependent.length > namedDependences)
+    notice(
+      say.moreDependentTerms(
+        dependent.slice(namedDependences).map(({ column }) => column),
+        at,
+      ),
+    )
+  if (certificate.class === "gave_up") notice(say.gaveUp(certificate.iterations, certificate.scaledScore))
+  if (certificate.class === "boundary") {
+    notice(
+      say.atBoundary(
+        (certificate.evidence?.edge ?? []).map(({ row }) => row),
+        rowName,
+      ),
+    )
+  }
+  if (certificate.class === "infinite") {
+    const moved = of.coefficients.flatMap(({ of: term, toward }) => (toward === null ? [] : [{ of: term, toward }]))
+    notice(say.atInfinity(moved, problem.family.name))
+  }
+  if (certificate.class === "several_maxima") notice(say.severalMaxima())
+  if (of.df === 0 && of.dispersion.estimated && of.dispersion.value === null) notice(say.nothingLeft())
+  if (of.clusters === 1 && said.cluster !== null) notice(say.oneCluster(said.cluster.name, said.cluster.at))
+}
