@@ -250,10 +250,13 @@ def case(rnd, family, link, variant):
     for at_x in (mpf("0.25"), mpf("1.75"), mpf("3.25")):
         e, error = held(at_x)
         ends = [e - c * error, e + c * error]
-        out = (link in ("square_root", "reciprocal") or link.startswith("power")) and ends[0] <= 0
-        out = out or family == "binomial" and link in ("identity", "log") and not all(0 < mean(end) < 1 for end in ends)
-        out = out or not possible(family, link, e, mean(e))
-        bounds = None if out else sorted(mean(end) for end in ends)
+        # The band is cut at the ends of the possible means; past the reach of the link the end is where η has gone.
+        bare = link in ("square_root", "reciprocal") or link.startswith("power")
+        if not possible(family, link, e, mean(e)) or (bare and ends[0] <= 0):
+            bounds = None
+        else:
+            least, greatest = (mpf("-inf") if family == "normal" else mpf(0)), (mpf(1) if family == "binomial" else mpf("inf"))
+            bounds = sorted(min(greatest, max(least, mean(end))) for end in ends)
         curve.append({"x": said(at_x), "eta": said(e), "mu": said(mean(e)) if possible(family, link, e, mean(e)) else None, "bounds": None if bounds is None else [said(b) for b in bounds]})
     points = None
     if grouped or family != "binomial":
