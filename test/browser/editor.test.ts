@@ -57,6 +57,15 @@ describe("the editor", () => {
     await vi.waitFor(() => expect(made.text).toBe("scales\n  model kill"))
   })
 
+  it("goes on to the next line where the word stands there whole already", async () => {
+    const made = open("scales\n  across ")
+    await userEvent.keyboard("night")
+    await vi.waitFor(() => expect(offered()).toEqual(["night"]))
+    await aMoment()
+    await userEvent.keyboard("{Enter}")
+    expect(made.text).toBe("scales\n  across night\n  ")
+  })
+
   it("stands a new clause in under the heading", async () => {
     const made = open("scales")
     await userEvent.keyboard("{Enter}across")

@@ -66,10 +66,11 @@ export class Keeping {
     while (this.#busy !== null) await this.#busy
   }
 
-  async close(): Promise<void> {
+  /** Ends, once all is saved, and gives the notebook back to the shelf unless `next` goes on with the same loan. */
+  async close(next: Loan | null): Promise<void> {
     this.#stop()
     await this.finished()
-    await this.#loan?.giveBack()
+    if (this.#loan !== next) await this.#loan?.giveBack()
     this.#loan = null
   }
 

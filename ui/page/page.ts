@@ -123,7 +123,7 @@ export class Page extends LitElement {
           <button type="button" title=${keyOf("shelf")} @click=${() => this.#do("shelf")}>Shelf</button>
           <button type="button" title=${keyOf("open")} @click=${() => this.#do("open")}>Open</button>
           <button type="button" title=${keyOf("file")} @click=${() => this.#do("file")}>Hand over</button>
-          <etamu-menu text="View" label="How the page looks" .items=${this.#views()}></etamu-menu>
+          <etamu-menu text="View" label="View: light or dark, keys, print" .items=${this.#views()}></etamu-menu>
         </nav>
       </header>
       ${this.bands.map((band) => this.#band(band))}
@@ -290,8 +290,7 @@ export class Page extends LitElement {
   async #lay(book: Kept, bytes: ReadonlyMap<string, Blob>, loan: Loan | null, readOnly: boolean): Promise<void> {
     const started = this.#started
     if (started === null) return
-    if (this.#keeping !== null && loan !== null) await this.#close()
-    else this.#stop?.()
+    await this.#close(loan)
     for (const { sha256 } of book.notebook.enclosures) {
       const blob = bytes.get(sha256) ?? started.bytes.get(sha256) ?? (await this.#fromShelf(sha256))
       if (blob !== null) started.bytes.put(sha256, blob)
@@ -332,11 +331,11 @@ export class Page extends LitElement {
     scrollTo(0, 0)
   }
 
-  async #close(): Promise<void> {
+  async #close(next: Loan | null): Promise<void> {
     this.#stop?.()
     this.#stop = null
     this.desk?.rest()
-    await this.#keeping?.close()
+    await this.#keeping?.close(next)
     this.#keeping = null
     this.desk?.close()
   }

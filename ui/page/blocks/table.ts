@@ -134,7 +134,8 @@ export class TableElement extends LitElement {
           <thead>
             <tr>
               ${block.columns.map(
-                (column) => html`<th scope="col" class=${column.align} title=${column.says ?? nothing}>${column.head}</th>`,
+                (column) =>
+                  html`<th scope="col" class=${column.align} title=${column.says ?? nothing}>${column.head === "" ? html`<span class="unseen">${column.says ?? "of"}</span>` : column.head}</th>`,
               )}
             </tr>
           </thead>

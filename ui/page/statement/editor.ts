@@ -10,6 +10,7 @@ import {
   closeCompletion,
   completionKeymap,
   completionStatus,
+  selectedCompletion,
   startCompletion,
 } from "@codemirror/autocomplete"
 import { defaultKeymap, insertNewline } from "@codemirror/commands"
@@ -163,10 +164,11 @@ export class StatementEditor extends HTMLElement {
         optionClass: (option) => `sort-${option.type ?? ""}`,
         activateOnCompletion: (option) => (option as Completion & { more?: boolean }).more === true,
       }),
-      Prec.highest(keymap.of(completionKeymap.filter(({ key }) => key !== "Escape"))),
+      Prec.highest(
+        keymap.of([{ key: "Enter", run: takeOrGoOn }, ...completionKeymap.filter(({ key }) => key !== "Escape" && key !== "Enter")]),
+      ),
       keymap.of([
         { key: "Tab", run: acceptCompletion },
-        { key: "Enter", run: newClause },
         { key: "Shift-Enter", run: insertNewline },
         { key: "ArrowUp", run: (view) => this.#leaveAt(view, "above") },
         { key: "ArrowDown", run: (view) => this.#leaveAt(view, "below") },
@@ -229,6 +231,19 @@ export class StatementEditor extends HTMLElement {
       })),
     }
   }
+}
+
+/** Takes what completion offers; but where the word stands there whole already, Enter means the next line. */
+function takeOrGoOn(view: EditorView): boolean {
+  const { state } = view
+  if (completionStatus(state) === "active") {
+    const { from } = state.selection.main
+    const typed = /[\p{L}_"][\p{L}\p{M}\p{Nd}_"]*$/u.exec(state.doc.lineAt(from).text.slice(0, from - state.doc.lineAt(from).from))?.[0]
+    const offered = selectedCompletion(state)
+    if (offered !== null && offered.label !== typed) return acceptCompletion(view) || newClause(view)
+    closeCompletion(view)
+  }
+  return newClause(view)
 }
 
 /** A line feed, and under the heading the two blanks by which a clause stands in. */
