@@ -76,8 +76,11 @@ const links: Readonly<Record<string, string>> = {
   loglog: "loglog",
 }
 
-/** The problem a reference model states; null where its family or link is not (yet) one of the program's. */
-export function problemOf(set: ReferenceSet, model: ReferenceModel): Problem | null {
+/** The problem a reference model states; null where its family or link is not (yet) one of the program's. Rows of no weight are not used. */
+export function problemOf(whole: ReferenceSet, model: ReferenceModel): Problem | null {
+  const used = (whole.data[model.response] ?? []).map((_, i) => model.weights === undefined || Number(whole.data[model.weights]?.[i]) > 0)
+  const data = Object.fromEntries(Object.entries(whole.data).map(([name, values]) => [name, values.filter((_, i) => used[i])]))
+  const set: ReferenceSet = { ...whole, data }
   const family = families[model.family.name]
   const name = links[model.link.name]
   if (family === undefined || name === undefined) return null
