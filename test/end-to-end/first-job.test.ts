@@ -68,6 +68,7 @@ describe("the first job", () => {
     // A statement is edited by keyboard; the fault is said where it stands, and the last good finding stays.
     await rowOf(page, "model").locator(".statement").focus()
     await page.keyboard.press("Enter")
+    await expect.poll(() => page.locator("etamu-row.editing").count()).toBe(1)
     await page.keyboard.type("s")
     await expect.poll(() => stateOf(page, "model")).toContain("fault")
     await expect.poll(() => rowOf(page, "model").locator(".saying .notices").textContent()).toContain("strengths")
@@ -79,10 +80,11 @@ describe("the first job", () => {
     await expect.poll(() => page.evaluate(() => document.activeElement?.className)).toBe("statement")
 
     // Another link is chosen on the strip: the model's text is written to, and all that reads it follows.
-    const risk = () => rowOf(page, "value").locator("etamu-block").first().innerText()
+    const risk = () => rowOf(page, "value").locator("etamu-block p").first().textContent()
     const underCloglog = await risk()
     await rowOf(page, "scales")
-      .getByRole("radio", { name: /^probit/ })
+      .getByRole("button", { name: /probit/ })
+      .first()
       .click()
     await expect.poll(() => statementOf(page, "model")).toContain("link probit")
     await expect.poll(risk, { timeout: 20_000 }).not.toBe(underCloglog)
@@ -143,7 +145,7 @@ describe("the first job", () => {
     await expect.poll(() => second.page.locator("input.title").inputValue()).toBe("Bottles, with another link")
     expect(await statementOf(second.page, "model")).toContain("link probit")
     await isReady(second.page, "value")
-    await expect.poll(() => rowOf(second.page, "value").locator("etamu-block").first().innerText(), { timeout: 20_000 }).toBe(shown)
+    await expect.poll(() => rowOf(second.page, "value").locator("etamu-block p").first().textContent(), { timeout: 20_000 }).toBe(shown)
     expect(second.wrong).toEqual([])
     await other.close()
   })

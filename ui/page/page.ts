@@ -193,6 +193,8 @@ export class Page extends LitElement {
       const [first] = this.samples
       await this.#put(first === undefined ? await blankBook() : await bookOfSample(first))
     }
+    // The editor is fetched while nobody waits for it, so that the first key into a statement is not lost.
+    void this.desk?.engine.settled().then(() => import("./statement/editor.ts"))
     // Bytes that nothing reaches any more go; undo begins anew with each load, so now is the time.
     if (this.desk !== null) await this.#shelf?.sweep(this.desk.engine.reached)
   }
