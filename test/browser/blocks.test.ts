@@ -185,6 +185,16 @@ describe("the two scales on the page", () => {
     expect(button.textContent).toContain("no fit")
   })
 
+  it("has its points in numbers, made when they are asked for", async () => {
+    const { view, element } = await shown(beetleScales())
+    const details = one<HTMLDetailsElement>(view, ".points")
+    expect(details.querySelector("etamu-table")).toBeNull()
+    await userEvent.click(one(details, "summary"))
+    await expect.poll(() => details.querySelector("etamu-table")?.shadowRoot?.querySelectorAll("tbody tr").length).toBe(8)
+    await element.updateComplete
+    expect(details.querySelector("etamu-table")?.shadowRoot?.textContent).toContain("1.6907")
+  })
+
   it("says plainly when there is nothing to draw", async () => {
     const block = beetleScales()
     const empty: ScalesBlock = {

@@ -31,6 +31,8 @@ ${links}
 .scene .beyond-data { fill: var(--shade); stroke: none; }
 .scene .hatch { stroke: var(--hatch); stroke-width: 1; }
 .scene .band { fill: var(--link); fill-opacity: 0.16; }
+.scene .band.of-split { fill-opacity: 0.1; }
+.scene .band.link-8 { fill-opacity: 0.09; }
 .scene .band.beyond { fill-opacity: 0.1; }
 .scene .band.ghost { fill-opacity: 0.1; }
 .scene .curve { stroke: var(--link); stroke-width: 1.1; stroke-opacity: 0.75; stroke-linejoin: round; }
@@ -50,6 +52,7 @@ ${links}
 .scene .dots.of-series, .scene .dots.ghost { stroke: var(--link); }
 .scene .point.ghost { fill: none; stroke: var(--link); stroke-width: 1.2; }
 .scene .point.off { fill: var(--soft); stroke: none; }
+.scene .point.off.ghost { fill: var(--link); }
 .scene .bars { fill: var(--tint); stroke: var(--rule); stroke-width: 1; }
 .scene .hair { stroke: var(--link); stroke-width: 1; stroke-opacity: 0.22; }
 .scene .join { stroke: var(--link); stroke-width: 1.25; stroke-opacity: 0.85; }

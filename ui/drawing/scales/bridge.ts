@@ -4,7 +4,7 @@
 
 import type { ScalesCandidate } from "../../../cells/block.ts"
 import type { Scale } from "../axis.ts"
-import { decimalsForExtent, writtenFixed } from "../number.ts"
+import { decimalsForExtent, decimalsOf, writtenFixed } from "../number.ts"
 import { tenth, textWidth } from "../scene.ts"
 import { TICK_SIZE } from "./layout.ts"
 
@@ -154,7 +154,10 @@ export function labelledLines(pairs: Pairs, edges: BridgeEdges, most: number): r
     const { cost: _, ...line } = best
     kept.push(line)
   }
-  return kept.toSorted((a, b) => a.mu - b.mu)
+  const inOrder = kept.toSorted((a, b) => a.mu - b.mu)
+  // Decimals that are noughts for every line say nothing; under the identity there are none.
+  const needed = Math.max(0, ...inOrder.map((line) => decimalsOf(Number(line.eta.toFixed(etaDecimals)))))
+  return needed >= etaDecimals ? inOrder : inOrder.map((line) => ({ ...line, etaText: writtenFixed(line.eta, needed) }))
 }
 
 const lineAt = (mu: number, eta: number, edges: BridgeEdges): BridgeLine | null =>
@@ -186,12 +189,12 @@ interface RoundMean {
  * Two digits cost more than one, so that they appear only where there is room.
  */
 function roundMeans(low: number, high: number): readonly RoundMean[] {
-  const found = new Map<string, RoundMean>()
+  const found = new Map<number, RoundMean>()
   const offer = (mu: number, decimals: number, cost: number): void => {
     if (mu < low || mu > high) return
-    const text = writtenFixed(mu, decimals)
-    const known = found.get(text)
-    if (known === undefined || known.cost > cost) found.set(text, { mu: Number(mu.toFixed(decimals)), text, cost })
+    const round = Number(mu.toFixed(decimals))
+    const known = found.get(round)
+    if (known === undefined || known.cost > cost) found.set(round, { mu: round, text: writtenFixed(round, decimalsOf(round)), cost })
   }
   const largest = Math.max(Math.abs(low), Math.abs(high))
   const extent = high - low

@@ -32,6 +32,7 @@ export function curveMarks(block: ScalesBlock, layout: ScalesLayout, ghost: Scal
   const { subject } = layout
   const marks: SceneMark[] = []
   const panel = layout[which]
+  const split = block.split === null ? "" : " of-split"
   // Other candidates' means can be compared on one axis, their η only where the block has aligned them. Split curves of every
   // candidate would be a thicket: there the others are seen when previewed.
   const others = which === "mean" || block.aligned ? (block.split === null ? block.candidates : []) : []
@@ -42,7 +43,7 @@ export function curveMarks(block: ScalesBlock, layout: ScalesLayout, ghost: Scal
     for (const curve of other.curves) marks.push(...lineMarks(other.link, curve, valuesOf(curve, which, stay), panel, role, 0))
   }
   subject.curves.forEach((curve, i) => {
-    marks.push(...bandMarks(subject.link, curve, valuesOf(curve, which, stay), panel, linkRole(subject.link)))
+    marks.push(...bandMarks(subject.link, curve, valuesOf(curve, which, stay), panel, linkRole(subject.link) + split))
     const level = levelIndex(block, curve, i)
     marks.push(...lineMarks(subject.link, curve, valuesOf(curve, which, stay), panel, `${linkRole(subject.link)} chosen`, level))
     marks.push(...endMarks(subject.link, curve, valuesOf(curve, which, stay), panel, linkRole(subject.link)))
@@ -51,25 +52,35 @@ export function curveMarks(block: ScalesBlock, layout: ScalesLayout, ghost: Scal
     const moved = block.aligned ? stay : onSubjectScale(subject, ghost)
     ghost.curves.forEach((curve, i) => {
       const values = valuesOf(curve, which, moved)
-      marks.push(...bandMarks(`ghost-${ghost.link}`, curve, ordered(values), panel, `${linkRole(ghost.link)} ghost`))
+      marks.push(...bandMarks(`ghost-${ghost.link}`, curve, ordered(values), panel, `${linkRole(ghost.link)} ghost${split}`))
       marks.push(...lineMarks(`ghost-${ghost.link}`, curve, values, panel, `${linkRole(ghost.link)} ghost`, levelIndex(block, curve, i)))
       marks.push(...endMarks(`ghost-${ghost.link}`, curve, values, panel, linkRole(ghost.link)))
     })
     if (which === "predictor") {
       ghost.points.forEach((points, i) => {
         const at = points.working.map(moved)
-        marks.push(...pointMarks(`ghost-points-${i}`, points, at, points.weight, panel, "circle", `ghost ${linkRole(ghost.link)}`, 5))
+        marks.push(
+          ...pointMarks(
+            `ghost-points-${i}`,
+            points,
+            at,
+            points.weight,
+            panel,
+            shapeOf(levelOf(block, points)),
+            `ghost solid ${linkRole(ghost.link)}`,
+            5,
+          ),
+        )
       })
     }
   }
   const points: SceneMark[] = []
   subject.points.forEach((group, i) => {
-    const series = block.split === null ? 0 : Math.max(0, block.split.levels.indexOf(group.level ?? ""))
     const role = ghost !== null && which === "predictor" ? "held-back" : ""
     points.push(
       ...(which === "mean"
-        ? pointMarks(`points-${i}`, group, group.mean, group.rows, panel, shapeOf(series), role, 5)
-        : pointMarks(`points-${i}`, group, group.working, group.weight, panel, shapeOf(series), role, 6)),
+        ? pointMarks(`points-${i}`, group, group.mean, group.rows, panel, shapeOf(levelOf(block, group)), role, 5)
+        : pointMarks(`points-${i}`, group, group.working, group.weight, panel, shapeOf(levelOf(block, group)), role, 6)),
     )
   })
   // Many points would bury the lines: there the lines come last.
@@ -79,6 +90,9 @@ export function curveMarks(block: ScalesBlock, layout: ScalesLayout, ghost: Scal
   if (block.split !== null) marks.push(...lineLabels(subject, panel, which))
   return marks
 }
+
+const levelOf = (block: ScalesBlock, points: ScalesPoints): number =>
+  block.split === null ? 0 : Math.max(0, block.split.levels.indexOf(points.level ?? ""))
 
 export const levelIndex = (block: ScalesBlock, curve: ScalesCurve, i: number): number =>
   block.split === null ? 0 : Math.max(0, curve.level === null ? i : block.split.levels.indexOf(curve.level))
@@ -182,7 +196,7 @@ export function pointMarks(
     ...dots.paths().flatMap((one) => path(`${key}-many-${one.key}`, `${one.role} ${role}`, one.d)),
     ...outlines.flatMap((d, i) => path(`${key}-many-${i}`, `point many ${role}`, d)),
   ]
-  return [...marks, ...gathered, ...path(`${key}-off`, "point off", off)]
+  return [...marks, ...gathered, ...path(`${key}-off`, `point off ${role}`.trim(), off)]
 }
 
 /** Where a line's name may stand by a point of the line: sideways in widths of the name, and down in pixels. */

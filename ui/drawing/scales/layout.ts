@@ -35,6 +35,9 @@ export const TICK_SIZE = 11.5
 export const LABEL_SIZE = 12
 export const TITLE_SIZE = 14
 
+/** What a point at the end of the range needs of its panel, in pixels. */
+const POINT_ROOM = 9
+
 /** Below this width the panels stand over each other. */
 const STACKED_BELOW = 560
 const HEAD_ROWS = 54
@@ -59,12 +62,18 @@ export function scalesLayout(block: ScalesBlock, width: number): ScalesLayout | 
   const sideWidth = (range: readonly [number, number], height: number): number =>
     Math.ceil(Math.max(20, ...sideTicks(linearScale(range[0], range[1], height, 0)).map((tick) => textWidth(tick.text, TICK_SIZE)))) + 12
 
+  const crowded = pointsAtEnds(block, subject)
   const panel = (frame: Box, range: readonly [number, number], side: "left" | "right"): PanelLayout => {
     const y = linearScale(range[0], range[1], frame.bottom, frame.top)
     const levels = block.across.levels
     const x = levels
       ? linearScale(-0.5, levels.length - 0.5, frame.left, frame.right)
-      : linearScale(block.range[0], block.range[1], frame.left, frame.right)
+      : linearScale(
+          block.range[0],
+          block.range[1],
+          frame.left + (crowded.left ? POINT_ROOM : 0),
+          frame.right - (crowded.right ? POINT_ROOM : 0),
+        )
     return { frame, x, y, xTicks: levels ? levelTicks(x, levels, TICK_SIZE) : footTicks(x, TICK_SIZE), yTicks: sideTicks(y), side }
   }
 
@@ -116,6 +125,14 @@ export function scalesLayout(block: ScalesBlock, width: number): ScalesLayout | 
     held,
     heldTop: foot + 4,
   }
+}
+
+/** Whether points stand so near an end of the range that they would hang over the frame. */
+function pointsAtEnds(block: ScalesBlock, subject: ScalesCandidate): { readonly left: boolean; readonly right: boolean } {
+  const [from, to] = block.range
+  const near = (to - from) * 0.02
+  const at = (is: (x: number) => boolean): boolean => subject.points.some((points) => points.x.some(is))
+  return { left: at((x) => x < from + near), right: at((x) => x > to - near) }
 }
 
 const footHeight = (a: PanelLayout, b: PanelLayout): number => ([...a.xTicks, ...b.xTicks].some((tick) => tick.row > 0) ? 57 : 43)

@@ -54,11 +54,13 @@ function beyondData(block: ScalesBlock, panel: PanelLayout): readonly SceneMark[
   const width = textWidth(words, 10.5)
   const low = Math.min(frame.right, x.place(block.data[0]))
   const high = Math.max(frame.left, x.place(block.data[1]))
-  if (low > frame.left + 0.5) marks.push(rect("beyond-low", "beyond-data", { ...frame, right: low }))
-  if (high < frame.right - 0.5) marks.push(rect("beyond-high", "beyond-data", { ...frame, left: high }))
+  // The room for points at the ends is no range of its own: it is shaded only where the range goes on beyond the data.
+  const beyond = { low: block.range[0] < block.data[0], high: block.range[1] > block.data[1] }
+  if (beyond.low && low > frame.left + 0.5) marks.push(rect("beyond-low", "beyond-data", { ...frame, right: low }))
+  if (beyond.high && high < frame.right - 0.5) marks.push(rect("beyond-high", "beyond-data", { ...frame, left: high }))
   const free = frame.right - frame.left > 2 * width + 20
   // Said on the outer side of each panel where it can be: the inner corners belong to the signs of the bridge.
-  const wide = { low: low - frame.left > 36, high: frame.right - high > 36 }
+  const wide = { low: beyond.low && low - frame.left > 36, high: beyond.high && frame.right - high > 36 }
   const outer = panel.side === "left" ? ("low" as const) : ("high" as const)
   const at = wide[outer] ? outer : outer === "low" ? ("high" as const) : ("low" as const)
   if (free && wide[at]) {

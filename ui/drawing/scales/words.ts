@@ -1,7 +1,7 @@
 // The two scales in words: what each kind of mark means, only for the marks that are there. The sentences for those who cannot see the
 // figure come with the finding.
 
-import type { ScalesBlock } from "../../../cells/block.ts"
+import type { ScalesBlock, TableBlock, TableEntry } from "../../../cells/block.ts"
 import { decimalsForExtent, writtenFixed } from "../number.ts"
 import type { ScalesLayout } from "./layout.ts"
 import { agreementMean } from "./preview.ts"
@@ -45,4 +45,35 @@ export function ghostSays(block: ScalesBlock, layout: ScalesLayout, link: string
   if (block.aligned) return `${link}: a preview, nothing is changed yet.`
   const at = writtenFixed(agreementMean(layout.subject), Math.max(1, decimalsForExtent((layout.mean.y.to - layout.mean.y.from) * 4)))
   return `${link}: a preview, nothing is changed yet. Its η is drawn to agree with ${layout.subject.link} in value and slope at μ = ${at}.`
+}
+
+/** The points of the candidate that sets the axes, as a table: where each stands on both scales, and what it weighs. */
+export function pointsTable(block: ScalesBlock, layout: ScalesLayout): TableBlock {
+  const { across, response, split } = block
+  const { link, points } = layout.subject
+  const levels = across.levels
+  const unit = (text: string, of: string | null): string => (of === null ? text : `${text} (${of})`)
+  return {
+    type: "table",
+    caption: `The points under ${link} in numbers`,
+    columns: [
+      ...(split === null ? [] : [{ head: split.name, says: null, align: "text" as const }]),
+      { head: unit(across.label, across.unit), says: null, align: levels === null ? "number" : "text" },
+      { head: unit(response.label, response.unit), says: "The observed mean, on the mean scale", align: "number" },
+      { head: "working response", says: "On the linear-predictor scale", align: "number" },
+      { head: "working weight", says: "What the point weighs in the last step of the fit", align: "number" },
+      { head: "rows", says: "How many rows the point stands for", align: "number" },
+    ],
+    rows: points.flatMap((group) =>
+      Array.from(group.x, (x, i): readonly TableEntry[] => [
+        ...(split === null ? [] : [group.level ?? ""]),
+        levels === null ? { value: x, digits: 5 } : (levels[Math.round(x)] ?? ""),
+        { value: group.mean[i] as number, digits: 4 },
+        { value: group.working[i] as number, digits: 4 },
+        { value: group.weight[i] as number, digits: 3 },
+        { value: group.rows[i] as number, digits: 1 },
+      ]),
+    ),
+    folded: false,
+  }
 }

@@ -14,6 +14,7 @@ import {
   type Pointing,
   pointed,
   pointerMarks,
+  pointsTable,
   type Reading,
   readingOf,
   readingSentence,
@@ -27,6 +28,7 @@ import { IntentEvent, SayEvent } from "../intent.ts"
 import { drawn } from "./drawn.ts"
 import { blockStyles, linkTokens, sceneStyles } from "./look.ts"
 import { WidthController } from "./width.ts"
+import "./table.ts"
 
 /** How far Page Up and Page Down go along the grid. */
 const LEAP = 20
@@ -37,6 +39,7 @@ export class ScalesElement extends LitElement {
     preview: { state: true },
     pointing: { state: true },
     walked: { state: true },
+    unfolded: { state: true },
   }
   declare block: ScalesBlock | null
   /** The candidate that is rested on. */
@@ -44,6 +47,8 @@ export class ScalesElement extends LitElement {
   declare pointing: Pointing | null
   /** The candidate that the tab key comes to; null: the chosen one. */
   declare walked: string | null
+  /** Whether the points are shown in numbers. */
+  declare unfolded: boolean
   readonly #width = new WidthController(this)
   #layout: ScalesLayout | null = null
 
@@ -155,6 +160,16 @@ export class ScalesElement extends LitElement {
         touch-action: pan-y;
         cursor: crosshair;
       }
+      summary {
+        color: var(--soft);
+        font-size: 12.5px;
+        cursor: pointer;
+        padding: 3px 0;
+        width: fit-content;
+      }
+      summary:hover {
+        color: var(--ink);
+      }
       figcaption {
         margin-top: 8px;
         max-width: 92ch;
@@ -185,6 +200,7 @@ export class ScalesElement extends LitElement {
     this.preview = null
     this.pointing = null
     this.walked = null
+    this.unfolded = false
   }
 
   protected override willUpdate(changed: PropertyValues<this>): void {
@@ -329,7 +345,20 @@ export class ScalesElement extends LitElement {
         </svg>
       </div>
       <p class="unseen">${block.summary}</p>
-      <figcaption class="quiet">${scalesLegend(block, layout).join(" ")}</figcaption>`
+      <figcaption class="quiet">${scalesLegend(block, layout).join(" ")}</figcaption>
+      ${layout.subject.points.some((points) => points.x.length > 0) ? this.#points(block, layout) : nothing}`
+  }
+
+  /** The points in numbers, made only once they are asked for: a thousand rows would slow every redraw. */
+  #points(block: ScalesBlock, layout: ScalesLayout): TemplateResult {
+    return html`<details class="points" @toggle=${this.#unfold}>
+      <summary>The points under ${layout.subject.link} in numbers</summary>
+      ${this.unfolded ? guard([block, layout], () => html`<etamu-table .block=${{ ...pointsTable(block, layout), caption: null }}></etamu-table>`) : nothing}
+    </details>`
+  }
+
+  readonly #unfold = (event: Event): void => {
+    this.unfolded = (event.currentTarget as HTMLDetailsElement).open
   }
 
   #readingLine(block: ScalesBlock, layout: ScalesLayout, reading: Reading | null): TemplateResult {
