@@ -104,6 +104,7 @@ async function heldMaximum(equations: Equations, from: Float64Array, active: Rea
   if (blockedAtStart) return { point, multipliers: new Map(), iterations: 0, blocked: blockedAtStart }
   if (!(await inner.fill(point, "observed"))) return null
   let information: "observed" | "expected" = "observed"
+  let last = false
   for (let iterations = 1; iterations <= 80; iterations++) {
     const none = new Array<number>(x.length).fill(0)
     let step = constrainedStep(fullOf(point.gram, x), point.score, x, none)
@@ -114,7 +115,18 @@ async function heldMaximum(equations: Equations, from: Float64Array, active: Rea
     }
     if (!step) return null
     const gain = dot(step.delta, point.score)
-    if (gain < 1e-22 * (1 + Math.abs(point.deviance))) {
+    const arrived = gain < 1e-16 * (1 + Math.abs(point.deviance))
+    if (arrived && !last) {
+      // One step more, whole: Newton's error is then its square.
+      for (let j = 0; j < p; j++) trial.gamma[j] = (point.gamma[j] as number) + (step.delta[j] as number)
+      if (await inner.fill(trial, information)) {
+        point.gamma.set(trial.gamma)
+        await inner.fill(point, information)
+        last = true
+        continue
+      }
+    }
+    if (arrived || last) {
       const multipliers = new Map<number, number>()
       held.forEach((row, k) => {
         // λ on −∇ of the others, and the row's own slope, both along the normal that points out.
@@ -284,7 +296,7 @@ function fullOf(gram: Gram, x: readonly Float64Array[]): Float64Array {
     const size = dot(row, row)
     for (let i = 0; i < p; i++)
       for (let j = 0; j < p; j++)
-        full[i * p + j] = (full[i * p + j] as number) + ((trace / p) * (row[i] as number) * (row[j] as number)) / (size || 1)
+        full[i * p + j] = (full[i * p + j] as number) + ((trace / p || 1) * (row[i] as number) * (row[j] as number)) / (size || 1)
   }
   return full
 }

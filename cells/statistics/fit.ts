@@ -125,7 +125,7 @@ export async function fit(problem: Problem, pause: () => Promise<void>, near: Fi
   if (problem.rows === 0) return { ok: false, why: "no_rows", detail: "no row has everything the model needs" }
   const needed = columnsNeeded(problem.terms, problem.intercept, problem.variables)
   if (needed > mostColumns)
-    return { ok: false, why: "gave_up", detail: `the predictor makes ${needed} columns, and at most ${mostColumns} are fitted` }
+    return { ok: false, why: "gave_up", detail: `the predictor makes up to ${needed} columns, and at most ${mostColumns} are fitted` }
   const pace = new Pace(pause)
   const design = designOf(
     recipeOf(problem.terms, problem.intercept, problem.variables, problem.rows, problem.repeat),

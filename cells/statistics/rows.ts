@@ -254,6 +254,13 @@ function cloglogRows(of: Responses, information: Information, from: number, to: 
     const residual = response > 0.5 ? rest - (1 - response) : response - m
     // d = t·e^(−t) and V = μ·e^(−t), so d/V = t/μ, which tends to 1 on the left.
     const ratio = m > 0 ? t / m : 1
+    if (rest === 0) {
+      // All but certain: only a row of successes can be here, and it adds nothing.
+      score[i] = 0
+      weight[i] = 0
+      if (own > 0) deviance += own * shareDeviance(response, m, rest)
+      continue
+    }
     const d = t * rest
     let w = ratio * d
     const v = m * rest
