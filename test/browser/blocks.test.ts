@@ -261,6 +261,20 @@ describe("a dial", () => {
     expect(one(view, "output").textContent).toBe("0.20")
   })
 
+  it("shows the hand's value after the hand let go until a finding agrees with it", async () => {
+    const { view, element, put } = await shown(dialSample)
+    const slider = one<HTMLInputElement>(view, "input")
+    slider.value = "20"
+    slider.dispatchEvent(new Event("input"))
+    slider.dispatchEvent(new Event("change"))
+    await put({ ...dialSample, value: 0.15 })
+    await element.updateComplete
+    expect(one(view, "output").textContent).toBe("0.20")
+    await put({ ...dialSample, value: 0.2 })
+    await put({ ...dialSample, value: 0.07 })
+    expect(one(view, "output").textContent).toBe("0.07")
+  })
+
   it("goes by arrow keys, a gesture a key", async () => {
     const { view, intents } = await shown(dialSample)
     one<HTMLInputElement>(view, "input").focus()

@@ -341,6 +341,33 @@ export function manyScales(rows = 1000): ScalesBlock {
   }
 }
 
+/** All links on one axis, each moved to agree with the chosen one in value and slope at μ = 0.6. */
+export function alignedScales(): ScalesBlock {
+  const block = beetleScales("logit")
+  const at = 0.6
+  const slopeOf = (link: string): number => 1 / maths_(link).slope(maths_(link).g(at))
+  return {
+    ...block,
+    aligned: true,
+    candidates: block.candidates.map((candidate) => {
+      const factor = slopeOf("logit") / slopeOf(candidate.link)
+      const move = (etas: Float64Array): Float64Array =>
+        etas.map((eta) => maths_("logit").g(at) + factor * (eta - maths_(candidate.link).g(at)))
+      return {
+        ...candidate,
+        curves: candidate.curves.map((curve) => ({
+          ...curve,
+          eta: move(curve.eta),
+          etaLow: move(curve.etaLow),
+          etaHigh: move(curve.etaHigh),
+        })),
+        points: candidate.points.map((points) => ({ ...points, working: move(points.working) })),
+        bridge: { mu: candidate.bridge.mu, eta: move(candidate.bridge.eta) },
+      }
+    }),
+  }
+}
+
 const name = (text: string): Formula => ({ type: "name", text })
 const word = (text: string): Formula => ({ type: "word", text })
 const number = (text: string): Formula => ({ type: "number", text })
@@ -536,6 +563,7 @@ export const gallery: readonly (readonly [title: string, block: Block])[] = [
   ["scales, a falling link and a split", clottingScales()],
   ["scales, a falling link alone", clottingScales("reciprocal", false)],
   ["scales, a category across", levelScales()],
+  ["scales, all links aligned", alignedScales()],
   ["scales, many points", manyScales()],
   ["figure", figureSample],
   ["prose", proseSample],

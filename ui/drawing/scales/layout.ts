@@ -45,7 +45,7 @@ const KEY_ROW = 18
 const ROW = 15
 
 /** The candidate that sets the axes, or null where nothing has a curve. */
-export const subjectOf = (block: ScalesBlock): ScalesCandidate | null =>
+const subjectOf = (block: ScalesBlock): ScalesCandidate | null =>
   block.candidates.find((candidate) => candidate.chosen && candidate.curves.length > 0) ??
   block.candidates.find((candidate) => candidate.curves.length > 0) ??
   null

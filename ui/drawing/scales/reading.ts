@@ -3,7 +3,6 @@
 
 import type { ScalesBlock, ScalesCandidate, ScalesCurve } from "../../../cells/block.ts"
 import { decimalsForExtent, writtenFixed, writtenRange } from "../number.ts"
-import { falls } from "./bridge.ts"
 import type { PanelLayout, ScalesLayout } from "./layout.ts"
 import { onSubjectScale } from "./preview.ts"
 
@@ -96,7 +95,7 @@ export function readingSentence(block: ScalesBlock, of: ScalesCandidate, reading
   return `${where}under ${of.link}, mean ${reading.mu}${band(reading.muInterval)}, linear predictor ${reading.eta}${band(reading.etaInterval)}${caution}.`
 }
 
-export function xText(block: ScalesBlock, x: number): string {
+function xText(block: ScalesBlock, x: number): string {
   const { levels, unit } = block.across
   if (levels !== null) return levels[Math.round(x)] ?? ""
   const text = writtenFixed(x, decimalsForExtent(block.range[1] - block.range[0]))
@@ -182,6 +181,3 @@ function nearest(grid: Float64Array, value: number): number {
   }
   return best
 }
-
-/** What the bridge does, in a word. */
-export const bridgeSays = (of: ScalesCandidate): string => (falls(of.bridge) ? "falling" : "rising")

@@ -8,12 +8,16 @@ import type { Intent } from "../../../runtime/notice.ts"
 import { IntentEvent, newGesture } from "../intent.ts"
 import { blockStyles } from "./look.ts"
 
+/** How long the hand's value is shown without a finding that agrees, in milliseconds. */
+const LEAVE = 1500
+
 export class DialElement extends LitElement {
   static override properties = { block: { attribute: false }, held: { state: true } }
   declare block: DialBlock | null
   /** The step in the hand, while there is one. */
   declare held: number | null
   #gesture: string | null = null
+  #waiting: ReturnType<typeof setTimeout> | undefined
 
   static override styles = [
     blockStyles,
@@ -109,6 +113,18 @@ export class DialElement extends LitElement {
     this.held = null
   }
 
+  override disconnectedCallback(): void {
+    super.disconnectedCallback()
+    this.#letGo()
+    this.#gesture = null
+  }
+
+  protected override willUpdate(): void {
+    const range = this.block?.range ?? null
+    if (this.#gesture === null && this.held !== null && this.block !== null && range !== null && stepOf(this.block, range) === this.held)
+      this.#letGo()
+  }
+
   protected override render(): TemplateResult | null {
     const { block } = this
     if (block === null) return null
@@ -136,6 +152,11 @@ export class DialElement extends LitElement {
     </div>`
   }
 
+  #letGo(): void {
+    clearTimeout(this.#waiting)
+    this.held = null
+  }
+
   #list(block: DialBlock): TemplateResult {
     return html`<fieldset>
       <legend class="unseen">dial ${block.name}</legend>
@@ -161,12 +182,12 @@ export class DialElement extends LitElement {
       this.#gesture = null
       this.held = step
       this.#send({ intent, gesture, ended: true })
-      // From here on the finding says what the value is; where the change was refused it has not moved.
-      void this.updateComplete.then(() => {
-        this.held = null
-      })
+      // The hand's value stands until the finding has caught up; where the change was refused, not for long.
+      clearTimeout(this.#waiting)
+      this.#waiting = setTimeout(() => this.#letGo(), LEAVE)
       return
     }
+    clearTimeout(this.#waiting)
     if (step === this.held) return
     this.held = step
     this.#send({ intent, gesture })
