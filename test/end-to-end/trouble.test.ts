@@ -1,0 +1,121 @@
+// What may go wrong around a notebook is said plainly, and nothing is lost: a browser that keeps nothing, a file that was altered, a file that
+// is none, a data file that is missing.
+
+import { mkdtemp, readFile, rm, writeFile } from "node:fs/promises"
+import { tmpdir } from "node:os"
+import { join } from "node:path"
+import type { Browser, Page } from "playwright-core"
+import { afterAll, beforeAll, describe, expect, it } from "vitest"
+import { launched, type Served, served, windowAt } from "./served.ts"
+
+let server: Served
+let browser: Browser
+let folder: string
+
+beforeAll(async () => {
+  server = await served()
+  browser = await launched()
+  folder = await mkdtemp(join(tmpdir(), "etamu-"))
+})
+
+afterAll(async () => {
+  await browser.close()
+  await server.stop()
+  await rm(folder, { recursive: true })
+})
+
+const bands = (page: Page) => page.locator("div.band").allTextContents()
+const saysBand = (page: Page, words: RegExp) => expect.poll(async () => (await bands(page)).join(" | ")).toMatch(words)
+
+async function handedOver(page: Page): Promise<string> {
+  const coming = page.waitForEvent("download")
+  await page.keyboard.press("Control+s")
+  const path = join(folder, `${crypto.randomUUID()}.etamu`)
+  await (await coming).saveAs(path)
+  return path
+}
+
+async function opened(page: Page, path: string): Promise<void> {
+  const choosing = page.waitForEvent("filechooser")
+  await page.getByRole("button", { name: "Open" }).click()
+  await (await choosing).setFiles(path)
+}
+
+describe("trouble", () => {
+  it("of a browser that keeps nothing is said at once, and the notebook works and can be handed over", async () => {
+    const context = await browser.newContext()
+    await context.addInitScript(() => Object.defineProperty(globalThis, "indexedDB", { value: undefined }))
+    const { page, wrong } = await windowAt(context, server.address)
+    await saysBand(page, /Not saved\. .*private window/)
+    expect(await page.locator("span.saved").textContent()).toBe("not saved")
+    await page.locator("etamu-row.kind-dial .statement").first().focus()
+    await page.keyboard.press("Alt+o")
+    await expect.poll(() => page.locator("etamu-row.kind-dial").first().getAttribute("aria-label")).toContain("off")
+    expect(await readFile(await handedOver(page), "utf8")).toContain("off dial")
+    expect(wrong).toEqual([])
+    await context.close()
+  })
+
+  it("with a file that was altered opens it read only, names the break, and lets the person decide", async () => {
+    const context = await browser.newContext()
+    const { page, wrong } = await windowAt(context, server.address)
+    await expect.poll(() => page.locator("etamu-row.form-ready").count(), { timeout: 20_000 }).toBe(await page.locator("etamu-row").count())
+    const path = await handedOver(page)
+    const text = await readFile(path, "utf8")
+    const id = /"id":"([0-9a-f-]{36})"/.exec(text)?.[1] ?? ""
+    await writeFile(path, text.replace("link cloglog", "link probit").replaceAll(id, "00000000-0000-4000-8000-000000000000"))
+    await opened(page, path)
+    await saysBand(page, /not as it was sealed|changed after it was written/)
+    await expect.poll(() => page.locator("etamu-menu.tools").count()).toBe(0)
+    await page.getByRole("button", { name: "Write in it all the same" }).click()
+    await expect.poll(() => page.locator("etamu-menu.tools").count()).toBeGreaterThan(0)
+    expect(wrong).toEqual([])
+    await context.close()
+  })
+
+  it("with a file that is no notebook says what it is not, and leaves the page as it was", async () => {
+    const context = await browser.newContext()
+    const { page, wrong } = await windowAt(context, server.address)
+    const title = await page.locator("input.title").inputValue()
+    const path = join(folder, "letter.etamu")
+    await writeFile(path, "Dear reader,\n")
+    await opened(page, path)
+    await saysBand(page, /letter\.etamu was not opened/)
+    expect(await page.locator("input.title").inputValue()).toBe(title)
+    expect(wrong).toEqual([])
+    await context.close()
+  })
+
+  it("with a file on the shelf already offers both, and opens the copy beside it", async () => {
+    const context = await browser.newContext()
+    const { page, wrong } = await windowAt(context, server.address)
+    const title = await page.locator("input.title").inputValue()
+    await opened(page, await handedOver(page))
+    await saysBand(page, /on the shelf already/)
+    await page.getByRole("button", { name: "Open the file beside it, as a copy" }).click()
+    await expect.poll(() => page.locator("input.title").inputValue()).toBe(`${title} (from a file)`)
+    await page.getByRole("button", { name: "Shelf" }).click()
+    await expect.poll(() => page.locator("dialog .books").first().locator("li").count()).toBe(2)
+    expect(wrong).toEqual([])
+    await context.close()
+  })
+
+  it("with data that a plain file names and does not hold asks for them by name", async () => {
+    const context = await browser.newContext()
+    const { page, wrong } = await windowAt(context, server.address)
+    const path = join(folder, "plain.cells")
+    await writeFile(path, 'note\n# Two columns\n---\ndata d\n  from "two.csv"\n  column x number\n  column y count\n')
+    await opened(page, path)
+    await expect.poll(() => page.locator("input.title").inputValue()).toBe("Two columns")
+    await expect.poll(() => page.locator("etamu-row.kind-data .missing").textContent()).toContain("two.csv")
+    const csv = join(folder, "other-name.csv")
+    await writeFile(csv, "x,y\n1.5,2\n2.5,3\n")
+    const choosing = page.waitForEvent("filechooser")
+    await page.locator("etamu-row.kind-data .missing button").click()
+    await (await choosing).setFiles(csv)
+    await expect.poll(() => page.locator("etamu-row.kind-data").getAttribute("aria-label"), { timeout: 10_000 }).toMatch(/: ready/)
+    expect(await page.locator("etamu-row").count()).toBe(2)
+    expect(wrong).toEqual([])
+    await context.close()
+  })
+})
