@@ -342,6 +342,8 @@ export function createEngine(options: EngineOptions): Engine {
       cancelUnsure()
       sendReady()
       if (gesture === null || base === notebook || isAtWork()) break
+      // What was in flight is shown before the next begins: else a fast hand would see nothing until it stops.
+      flush()
       letDrop()
       advance()
     }

@@ -40,7 +40,8 @@ export function book(texts: readonly string[], evaluator: Evaluator = calm(), op
   engine.subscribe((event) => events.push(event))
   const nameOf = (text: string): string => read(text).name ?? read(text).kind ?? text
   const cellOf = (name: string) => {
-    const cell = engine.notebook.cells.find(({ id, text }) => id === name || nameOf(text) === name)
+    const { cells } = engine.notebook
+    const cell = cells.find(({ id }) => id === name) ?? cells.find(({ text }) => nameOf(text) === name)
     if (cell === undefined) throw new Error(`The book has no cell ${name}`)
     return cell
   }
