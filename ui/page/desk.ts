@@ -12,6 +12,9 @@ import { maker, reading } from "./statement/reading.ts"
 /** How long a hand may pause in a statement before what it typed counts as one step. */
 const quiet = 1000
 
+/** How long a hand may hold a dial still before its drag counts as ended, should its end never be told. */
+const still = 5000
+
 /** Bytes of enclosures, by their SHA-256: the page's side of what the evaluator reads. */
 export interface Bytes {
   get(sha256: string): Blob | null
@@ -55,6 +58,11 @@ export class Desk {
     for (const id of this.#cells.keys()) this.#wake(id)
   }
 
+  /** No hand is in a statement or on a dial: what stands now is to stay. */
+  get isAtRest(): boolean {
+    return this.#due === undefined
+  }
+
   state(id: CellId): State {
     return this.engine.state(id)
   }
@@ -80,7 +88,7 @@ export class Desk {
 
   /** A keystroke: the text is live at once, and one step of undo with its neighbours once the hand rests. */
   typed(id: CellId, text: string): void {
-    if (this.#apply([{ type: "write", id, text }])) this.#restSoon()
+    if (this.#apply([{ type: "write", id, text }])) this.#restAfter(quiet)
   }
 
   /** What a block asks for: a click at once, a gesture step by step until it has ended. */
@@ -92,6 +100,7 @@ export class Desk {
       return
     }
     if (this.#readOnly) return
+    this.#restAfter(still)
     if (changes.length > 0) this.engine.dispatch({ changes, because: intent.label }, { gesture })
     if (ended === true) this.rest()
   }
@@ -176,7 +185,7 @@ export class Desk {
 
   /** Ends what is still counting down, so that the next step stands by itself. */
   #restIfDue(): void {
-    if (this.#due !== undefined) this.rest()
+    if (!this.isAtRest) this.rest()
   }
 
   /** No more is heard of this notebook. */
@@ -187,9 +196,9 @@ export class Desk {
     this.#cells.clear()
   }
 
-  #restSoon(): void {
+  #restAfter(milliseconds: number): void {
     clearTimeout(this.#due)
-    this.#due = setTimeout(() => this.rest(), quiet)
+    this.#due = setTimeout(() => this.rest(), milliseconds)
   }
 
   #step(changes: readonly Change[], because: string): void {

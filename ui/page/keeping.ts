@@ -32,7 +32,7 @@ export class Keeping {
     else if (loan?.role === "reading") told({ status: "reading" })
     else told({ status: "saved", at: kept.changed })
     this.#stop = desk.listen((event) => {
-      if (event.type === "rest" || event.type === "settled") this.save()
+      if (event.type === "rest" || (event.type === "settled" && desk.isAtRest)) this.save()
     })
   }
 

@@ -326,7 +326,7 @@ export class Page extends LitElement {
     })
     this.#stop = desk.listen((event) => {
       this.requestUpdate()
-      if (event.type === "settled") this.spoken = this.#ledger.value?.spoken ?? ""
+      if (event.type === "settled" && desk.isAtRest) this.spoken = this.#ledger.value?.spoken ?? ""
     })
     this.desk = desk
     desk.rest()

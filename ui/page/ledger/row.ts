@@ -74,6 +74,7 @@ export class Row extends LitElement {
 
   #unwatch: (() => void) | null = null
   #watched: CellId | null = null
+  #sized: Element | null = null
   /** What is being drawn. */
   #shown: Shown | null = null
   #timer: ReturnType<typeof setTimeout> | undefined
@@ -106,6 +107,7 @@ export class Row extends LitElement {
     this.#unwatch = null
     this.#watched = null
     this.#size.disconnect()
+    this.#sized = null
     clearTimeout(this.#timer)
   }
 
@@ -118,9 +120,12 @@ export class Row extends LitElement {
   }
 
   protected override updated(changed: PropertyValues<this>): void {
-    const statement = this.querySelector(".statement")
-    if (statement !== null) this.#size.observe(statement)
-    this.#measure()
+    // Measured when a size has changed, and after the text has: never at each draw, since that would lay out the page in the middle of a drag.
+    if (this.#sized !== this.querySelector(".statement")) {
+      this.#size.disconnect()
+      this.#sized = this.querySelector(".statement")
+      for (const sized of [this, this.#sized]) if (sized !== null) this.#size.observe(sized)
+    } else if (changed.has("cell")) requestAnimationFrame(() => this.#measure())
     void this.#watchDrawing()
     if (changed.has("editing") && this.editing !== null) {
       const { at, offer } = this.editing
