@@ -14,6 +14,7 @@ import {
   comparedWithMissing,
   deepExpression,
   hugeNumber,
+  longExpression,
   reservedName,
   unknownEscape,
   unknownFunction,
@@ -29,6 +30,9 @@ export const nothingMore: Allowed = new Set()
 /** Brackets and signs within one another: more than anyone writes, and few enough for every walk over the tree. */
 export const greatestDepth = 1_000
 
+/** Tokens of one expression or predictor: a list of many thousand values reads, a file pasted into a cell does not hold up the page. */
+export const mostTokens = 50_000
+
 /** The expression these tokens are; `first` is the number of the first of them in its clause. */
 export function expressionFrom(
   tokens: readonly Token[],
@@ -37,6 +41,8 @@ export function expressionFrom(
   allowed: Allowed = nothingMore,
 ): { readonly expression: Expression | null; readonly slips: readonly Slip[] } {
   const source = sourceOf(tokens, clause, first)
+  const long = tooLong(source)
+  if (long !== null) return { expression: null, slips: [long] }
   const tree = parser.parse(source.text)
   const broken = firstError(tree)
   if (broken !== null) return { expression: null, slips: [brokenPlace(source, tokenFrom(source, broken))] }
@@ -46,6 +52,21 @@ export function expressionFrom(
   const root = tree.topNode.firstChild
   const expression = root === null ? null : new Reader(source, allowed, slips).read(root)
   return { expression: slips.some((slip) => slip.level === "fault") ? null : expression, slips }
+}
+
+/** Brackets and signs without end are told before a parser is asked, which would take long over them. */
+export function tooLong(source: Source): Slip | null {
+  const all = placeIn(source, 0, source.text.length)
+  if (source.tokens.length > mostTokens) return longExpression(all, mostTokens)
+  let [open, run, powers] = [0, 0, 0]
+  for (const { text } of source.tokens) {
+    if (text === "(") open++
+    else if (text === ")") open--
+    run = text === "-" || text === "not" ? run + 1 : 0
+    if (text === "^") powers++
+    if (Math.max(open, run, powers) > greatestDepth) return deepExpression(all, greatestDepth)
+  }
+  return null
 }
 
 /** Where a tree has its first error; null where it has none. */

@@ -182,6 +182,16 @@ export function brokenPlace(source: Source, index: number): Slip {
     const chain = chainedComparison(source, index)
     if (chain !== null) return chain
   }
+  // The parser gives up on some hundred signs from left to right once they cover this many characters, where the next token would fit.
+  const isSign = joining.has(token.text)
+  const isValue = !isSign && (token.type === "word" || token.type === "number" || token.type === "text")
+  if (source.text.length > 2_000 && (wantsValue(before) ? isValue : isSign))
+    return fault(
+      "expression/too-long",
+      at,
+      "This expression has too many signs in a row to be read in one piece.",
+      "Made in steps, each with a name of its own, it will do.",
+    )
   if (token.text === "in" || before?.text === "in") {
     return fault("expression/list", at, `After in stands a list in brackets, not ${quoted(token)}.`, 'It is written x in ("a", "b").')
   }
@@ -261,6 +271,14 @@ export const deepExpression = (at: Place, depth: number): Slip =>
     "expression/too-deep",
     at,
     `This expression has more than ${depth} parts within one another.`,
+    "Made in steps, each with a name of its own, it will do.",
+  )
+
+export const longExpression = (at: Place, most: number): Slip =>
+  fault(
+    "expression/too-long",
+    at,
+    `This is too long to be read in one piece: it has more than ${most} words and signs.`,
     "Made in steps, each with a name of its own, it will do.",
   )
 
@@ -427,6 +445,8 @@ const foreignSigns: readonly { readonly tokens: readonly [string, string?]; read
   { tokens: ["|", "|"], write: "or" },
   { tokens: ["|"], write: "or" },
 ]
+
+const joining: ReadonlySet<string> = new Set(["+", "-", "*", "/", "^", "and", "or"])
 
 const comparisons: ReadonlySet<string> = new Set(["=", "!=", "<", "<=", ">", ">="])
 

@@ -7,7 +7,7 @@ import type { Place } from "../../runtime/notice.ts"
 import type { Token } from "../../runtime/statement.ts"
 import { reserved } from "../../runtime/tokens.ts"
 import type { Name } from "../../runtime/value.ts"
-import { depthOf, firstError, greatestDepth } from "./expression-tree.ts"
+import { depthOf, firstError, greatestDepth, tooLong } from "./expression-tree.ts"
 import { functions } from "./functions.ts"
 import {
   brokenPredictor,
@@ -59,6 +59,8 @@ export function termsFrom(
   first: number,
 ): { readonly terms: Terms | null; readonly slips: readonly Slip[] } {
   const source = sourceOf(tokens, clause, first)
+  const long = tooLong(source)
+  if (long !== null) return { terms: null, slips: [long] }
   const tree = parser.parse(source.text)
   const broken = firstError(tree)
   if (broken !== null) {
@@ -102,23 +104,8 @@ class Expansion {
     const [left, right] = termNodes(node)
     if (left === undefined) return this.leaf(node, joined)
     switch (node.name) {
-      case "With": {
-        const all = this.terms(left, joined)
-        if (right === undefined) return all
-        const more = this.terms(right, joined)
-        if (more.has("")) this.intercept = true
-        for (const [key, term] of more) if (!all.has(key)) all.set(key, term)
-        return this.within(all, node)
-      }
-      case "Without": {
-        const all = this.terms(left, joined)
-        if (right === undefined) return all
-        for (const [key, term] of this.terms(right, joined)) {
-          if (key === "") this.intercept = false
-          else if (!all.delete(key)) this.slips.push(nothingTakenAway(this.at(right), term.says))
-        }
-        return all
-      }
+      case "Sum":
+        return this.sum(node, joined)
       case "Cross": {
         const a = this.terms(left, true)
         const b = right === undefined ? a : this.terms(right, true)
@@ -141,6 +128,28 @@ class Expansion {
       default:
         return this.leaf(node, joined)
     }
+  }
+
+  /** From left to right: each term is added, or takes away exactly the terms it stands for. */
+  private sum(node: SyntaxNode, joined: boolean): TermSet {
+    let all: TermSet = new Map()
+    let takesAway = false
+    for (let child = node.firstChild; child !== null; child = child.nextSibling) {
+      if (child.name === "+" || child.name === "-") takesAway = child.name === "-"
+      if (!isTerm(child)) continue
+      const terms = this.terms(child, joined)
+      if (takesAway) {
+        for (const [key, term] of terms) {
+          if (key === "") this.intercept = false
+          else if (!all.delete(key)) this.slips.push(nothingTakenAway(this.at(child), term.says))
+        }
+      } else {
+        if (terms.has("")) this.intercept = true
+        for (const [key, term] of terms) if (!all.has(key)) all.set(key, term)
+        all = this.within(all, node)
+      }
+    }
+    return all
   }
 
   private products(a: TermSet, b: TermSet, node: SyntaxNode): TermSet {
@@ -228,9 +237,12 @@ class Expansion {
 
 /** A product of pieces, each once. */
 function term(pieces: readonly PredictorPiece[]): PredictorTerm {
-  const texts = pieces.map(pieceText)
-  const once = pieces.filter((_, k) => texts.indexOf(texts[k] ?? "") === k)
-  return { pieces: once, says: once.map(pieceText).join(".") }
+  const each = new Map<string, PredictorPiece>()
+  for (const piece of pieces) {
+    const text = pieceText(piece)
+    if (!each.has(text)) each.set(text, piece)
+  }
+  return { pieces: [...each.values()], says: [...each.keys()].join(".") }
 }
 
 function pieceText({ variable, as, setting }: PredictorPiece): string {
@@ -244,11 +256,13 @@ const keyOf = (of: PredictorTerm): string => of.pieces.map(pieceText).sort().joi
 const without = (terms: TermSet, ...others: readonly TermSet[]): readonly (readonly [string, PredictorTerm])[] =>
   [...terms].filter(([key]) => !others.some((other) => other.has(key)))
 
+const isTerm = (node: SyntaxNode): boolean => /^[A-Z]/.test(node.name) && node.name !== "Comment"
+
 const termNodes = (node: SyntaxNode): readonly SyntaxNode[] => {
   if (node.name === "Made" || node.name === "Column") return []
   const nodes: SyntaxNode[] = []
   for (let child = node.firstChild; child !== null; child = child.nextSibling) {
-    if (/^[A-Z]/.test(child.name) && child.name !== "Comment") nodes.push(child)
+    if (isTerm(child)) nodes.push(child)
   }
   return nodes
 }

@@ -26,8 +26,7 @@ export function sourceOf(tokens: readonly Token[], clause: number, first: number
 /** The tokens from one place of the text to another; an empty range stands before the next token. */
 export function placeIn(source: Source, from: number, to: number): Place {
   const start = tokenFrom(source, from)
-  let end = start
-  while (end < source.tokens.length && (source.tokens[end]?.to ?? 0) - origin(source) <= to) end++
+  const end = Math.max(start, tokenFrom(source, to))
   return { clause: source.clause, from: source.first + start, to: source.first + end }
 }
 

@@ -15,6 +15,8 @@ export function strayIn(source: Source, predictor: boolean): Slip | null {
 
 /** What each stray of the clause is to become; null where one of them could be anything. */
 function putsFor(source: Source, predictor: boolean): readonly Put[] | null {
+  // A clause with more of them is no slip of the hand, and no mend is worth the search for pairs.
+  if (source.tokens.filter((token) => token.type === "stray").length > 100) return null
   const puts: Put[] = []
   for (let k = 0; k < source.tokens.length; k++) {
     const token = source.tokens[k]

@@ -231,6 +231,12 @@ describe("a statement that does not read", () => {
     ["model m\n  predictor a +", ["expression/ends-too-soon <>"]],
     ["model m\n  predictor", ["clause/unexpected <>"]],
     [`model m\n  offset ${"(".repeat(1_200)}a${")".repeat(1_200)}`, [`expression/too-deep <${"(".repeat(1_200)}a${")".repeat(1_200)}>`]],
+    [`model m\n  offset a${" + a".repeat(2_000)}`, ["expression/too-long"]],
+    [`model m\n  offset a in (${"1, ".repeat(30_000)}1)`, ["expression/too-long"]],
+    [`model m\n  offset ${"-".repeat(2_000)}a`, ["expression/too-deep"]],
+    [`model m\n  offset a${"^a".repeat(2_000)}`, ["expression/too-deep"]],
+    [`model m\n  offset ${"(".repeat(50_000)}`, ["expression/too-deep"]],
+    [`model m\n  predictor ${"(".repeat(2_000)}a`, ["expression/too-deep"]],
     [`model m\n  predictor ${Array.from({ length: 20 }, (_, k) => `x${k}`).join("*")}`, ["predictor/too-many-terms"]],
   ])("%s is noticed", (text, expected) => {
     expect(noticed(text).map((each, k) => (expected[k]?.includes("<") === false ? each.split(" ")[0] : each))).toEqual(expected)

@@ -54,6 +54,14 @@ describe("a predictor", () => {
     expect(written(text)).toBe(expected)
   })
 
+  it("may be a sum of thousands, and a chain of nests", () => {
+    const names = Array.from({ length: 5_000 }, (_, k) => `column_${k}`)
+    expect(termsOf(names.join(" + ")).terms.length).toBe(5_000)
+    expect(termsOf(names.slice(0, 150).join("/")).terms.map(({ pieces }) => pieces.length)).toEqual(
+      names.slice(0, 150).map((_, k) => k + 1),
+    )
+  })
+
   it("gives each variable once, where it stands first", () => {
     expect(variablesOf(termsOf("a*log(b) + b"))).toEqual([
       { name: "a", at: { clause: 0, from: 1, to: 2 } },
