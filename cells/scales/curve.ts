@@ -4,9 +4,9 @@
 import type { ScalesCurve } from "../block.ts"
 import type { ModelFinding } from "../model-finding.ts"
 import type { Fit } from "../statistics/fit.ts"
-import { designAt, linkOf, predicted } from "../statistics/index.ts"
+import { designAt, predicted } from "../statistics/index.ts"
 import type { Link, Range } from "../statistics/link.ts"
-import type { LinkSpec, Variable } from "../statistics/problem.ts"
+import type { Variable } from "../statistics/problem.ts"
 import { heldVariables, offsetAt, rowWeight, type Setting, variablesOf } from "./setting.ts"
 
 export type Line = { readonly eta: Float64Array; readonly error: Float64Array }
@@ -99,7 +99,7 @@ function quadratic(covariance: Float64Array, gradient: readonly number[]): numbe
 
 /** Both scales along `x` from a line and the width `c` of its band in standard errors; a mean outside `possible` is a gap. */
 export function curveOf(
-  spec: LinkSpec,
+  link: Link,
   possible: Range,
   line: Line,
   c: number,
@@ -107,7 +107,6 @@ export function curveOf(
   level: string | null,
   inside: Uint8Array,
 ): ScalesCurve {
-  const link = linkOf(spec)
   const n = x.length
   const curve = {
     level,

@@ -2,6 +2,7 @@
 
 import type { Name } from "../../runtime/value.ts"
 import type { ScalesCurve, ScalesPoints } from "../block.ts"
+import type { Fit } from "../statistics/fit.ts"
 
 export type CandidateFound = {
   /** As a `link` clause says it. */
@@ -20,10 +21,14 @@ export type CandidateFound = {
   readonly bridge: { readonly mu: Float64Array; readonly eta: Float64Array }
   /** What `aligned` needs: μ₀ is the same for all; g(μ₀) and g'(μ₀) are this link's. */
   readonly middle: { readonly eta: number; readonly slope: number }
+  /** Kept for few rows, so that a gesture can draw the candidate on another plot; null for many rows and for the own link. */
+  readonly fit: Fit | null
 }
 
 export type ScalesFinding = {
   readonly model: Name
+  /** Names the model's finding that was drawn. */
+  readonly modelKey: string
   readonly family: string
   readonly predictor: string
   readonly n: number

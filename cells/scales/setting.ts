@@ -88,3 +88,13 @@ export function gridOf(from: number, to: number, points: number): Float64Array {
   grid[points - 1] = to
   return grid
 }
+
+/** The least and the greatest of values, neither where there are none. */
+export function ends(values: Float64Array): readonly [number, number] {
+  let [low, high] = [Number.POSITIVE_INFINITY, Number.NEGATIVE_INFINITY]
+  for (const value of values) {
+    if (value < low) low = value
+    if (value > high) high = value
+  }
+  return [low, high]
+}
