@@ -23,23 +23,27 @@ export function scalarOf(input: Input | undefined): Scalar | null {
   return typeof value === "string" ? { type: "text", text: value } : null
 }
 
-/** The value of an expression over single values and models. `held` says in words what `mean_at` held that nobody said. */
+/**
+ * The value of an expression over single values and models. `held` says in words what `mean_at` held that nobody said, `doubts` what can
+ * hardly be meant.
+ */
 export function worthOf(
   expression: Expression,
   inputs: ReadonlyMap<Name, Input>,
 ):
-  | { readonly ok: true; readonly value: Scalar; readonly held: readonly Trouble[] }
+  | { readonly ok: true; readonly value: Scalar; readonly held: readonly Trouble[]; readonly doubts: readonly Trouble[] }
   | { readonly ok: false; readonly troubles: readonly Trouble[] } {
   const reading = new ModelReading(inputs)
   const numbers = reading.replaced(expression)
   if (numbers === null || reading.troubles.length > 0) return { ok: false, troubles: reading.troubles }
   const found = evaluated(numbers, 1, (name) => scalarOf(inputs.get(name)), inputs.keys())
   if (!found.ok) return { ok: false, troubles: found.troubles }
-  const { vector } = found
-  if (!("values" in vector) && !("codes" in vector)) return { ok: true, value: vector, held: reading.held }
+  const { vector, doubts } = found
+  const { held } = reading
+  if (!("values" in vector) && !("codes" in vector)) return { ok: true, value: vector, held, doubts }
   // Only single values go in, but a category by cut points comes out a row long.
-  if ("codes" in vector) return { ok: true, value: levelAt(vector.codes, vector.levels), held: reading.held }
-  return { ok: true, value: { type: vector.type, value: vector.values[0] ?? Number.NaN }, held: reading.held }
+  if ("codes" in vector) return { ok: true, value: levelAt(vector.codes, vector.levels), held, doubts }
+  return { ok: true, value: { type: vector.type, value: vector.values[0] ?? Number.NaN }, held, doubts }
 }
 
 const levelAt = (codes: Int32Array, levels: readonly string[]): Scalar => {

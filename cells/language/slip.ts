@@ -38,6 +38,9 @@ export const faultFrom = (trouble: Trouble, clause: string | null): Notice => ({
   mend: null,
 })
 
+/** A doubt met in evaluating, as a warning of the clause it stands in. */
+export const warningFrom = (doubt: Trouble, clause: string | null): Notice => ({ ...faultFrom(doubt, clause), level: "warning" })
+
 /** What a clause says after its keyword, with other text in place of some of its tokens; everything else as written. */
 export function saidWith(clause: Clause, puts: readonly Put[]): string {
   let says = ""

@@ -32,6 +32,7 @@ export function found({ body, marks }: NoteSaid, inputs: ReadonlyMap<Name, Input
       continue
     }
     notices.push(...result.held.map((held) => say.markHeld(held, place)))
+    notices.push(...result.doubts.map((doubt) => say.markDoubt(doubt, place)))
     const value = plainValue(result.value)
     if (value === null) notices.push(say.markMissing(printed(mark.expression), place))
     values.push(value)

@@ -28,6 +28,8 @@ export const markTrouble = (trouble: Trouble, at: Place): Notice => ({
 
 export const markHeld = (trouble: Trouble, at: Place): Notice => ({ ...markTrouble(trouble, at), level: "remark" })
 
+export const markDoubt = (doubt: Trouble, at: Place): Notice => ({ ...markTrouble(doubt, at), level: "warning" })
+
 export const markMissing = (says: string, at: Place): Notice => ({
   level: "warning",
   code: "note/missing",

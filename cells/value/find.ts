@@ -2,7 +2,7 @@
 
 import type { Input, Outcome } from "../../runtime/kind.ts"
 import type { Name } from "../../runtime/value.ts"
-import { faultFrom } from "../language/slip.ts"
+import { faultFrom, warningFrom } from "../language/slip.ts"
 import { worthOf } from "../model-number.ts"
 import * as say from "./notices.ts"
 import type { ValueSaid } from "./words.ts"
@@ -15,8 +15,8 @@ export function found(said: ValueSaid, inputs: ReadonlyMap<Name, Input>): Outcom
   if (expression === null) return { ok: false, found: null, notices: [] }
   const result = worthOf(expression, inputs)
   if (!result.ok) return { ok: false, found: null, notices: result.troubles.map((trouble) => faultFrom(trouble, null)) }
-  const { value, held } = result
-  const notices = held.map(say.heldByDefault)
+  const { value, held, doubts } = result
+  const notices = [...held.map(say.heldByDefault), ...doubts.map((doubt) => warningFrom(doubt, null))]
   if (value.type === "text") return { ok: true, found: value.text, notices }
   if (value.type === "missing" || Number.isNaN(value.value))
     return { ok: false, found: null, notices: [...notices, say.noValue(name ?? "This value", expression.at)] }

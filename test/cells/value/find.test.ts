@@ -88,6 +88,13 @@ describe("a value over a model", () => {
     expect(await worth(expression)).toEqual(expected)
   })
 
+  it("doubts a comparison with a level there is not, in a value and in a note", async () => {
+    const book = await settledBook(['value v = band(1.5, 1, 2) = "1 to 3"', 'note\nis it {band(1.5, 1, 2) = "1 to 3"}'])
+    expect(book.summary("v")["value"]).toBe(false)
+    for (const name of ["v", "note"])
+      expect(book.notices(name).map(({ level, code }) => [level, code])).toEqual([["warning", "expression/unknown-level"]])
+  })
+
   it("has no coefficient where the data give none", async () => {
     const single = "night,kept,n\n1,10,10\n2,10,10\n3,0,10\n"
     const book = await settledBook(
