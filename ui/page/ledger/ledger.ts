@@ -146,8 +146,9 @@ export class Ledger extends LitElement {
 
   #end() {
     const at = this.desk.notebook.cells.length
+    const file = html`<button type="button" class="button" @click=${() => this.dispatchEvent(new ChooseEvent(null))}>Choose a data file</button>`
     return html`<div class="adder end">
-      ${at === 0 ? html`<p>Nothing is on this page yet. Drop a CSV file here, or begin with a cell.</p>` : nothing}
+      ${at === 0 ? html`<p>Nothing is on this page yet. Drop a CSV or TSV file anywhere on it, or begin with a cell.</p>${file}` : nothing}
       <etamu-menu text="Add a cell" label="Add a cell at the end" .items=${this.#kinds(at)}></etamu-menu>
     </div>`
   }
