@@ -17,6 +17,9 @@ export type Edge = {
 /** Most columns for which the edge is searched: it takes a dense system of them. */
 const mostColumns = 400
 
+/** How much of the expected weights is added to observed ones that are not positive definite. */
+const flatness = 1e-4
+
 /** A row this near to the edge, as a share of the spread of η, is tried at the edge. */
 const nearEdge = 1e-3
 
@@ -28,7 +31,8 @@ export async function edgeMaximum(equations: Equations, stuck: Point): Promise<E
   const { responses, basis } = equations
   const { low, high, rows, a } = responses
   if (basis.size > mostColumns || (!Number.isFinite(low) && !Number.isFinite(high))) return null
-  const spread = spreadOf(stuck.state.eta)
+  // Shares have a scale of their own, so that all of them may be at the edge.
+  const spread = Math.max(spreadOf(stuck.state.eta), responses.family.name === "binomial" ? 1e-3 : 0)
   const active = new Map<number, number>()
   for (let i = 0; i < rows; i++) {
     if ((a[i] as number) === 0) continue
@@ -109,9 +113,13 @@ async function heldMaximum(equations: Equations, from: Float64Array, active: Rea
     const none = new Array<number>(x.length).fill(0)
     let step = constrainedStep(fullOf(point.gram, x), point.score, x, none)
     if (!step && information === "observed") {
+      // Where ℓ is flat in some direction, a little of the expected weights makes the step long, and it ends at the edge.
+      const observed = fullOf(point.gram, x)
       information = "expected"
       if (!(await inner.fill(point, "expected"))) return null
-      step = constrainedStep(fullOf(point.gram, x), point.score, x, none)
+      const expected = fullOf(point.gram, x)
+      const mixed = observed.map((j, at) => j + flatness * (expected[at] as number))
+      step = constrainedStep(mixed, point.score, x, none) ?? constrainedStep(expected, point.score, x, none)
     }
     if (!step) return null
     const gain = dot(step.delta, point.score)
@@ -146,9 +154,15 @@ async function heldMaximum(equations: Equations, from: Float64Array, active: Rea
     for (let halving = 0; halving < 50; halving++) {
       for (let j = 0; j < p; j++) trial.gamma[j] = (point.gamma[j] as number) + share * (step.delta[j] as number)
       const outside = await firstOutside(inner, point.gamma, trial.gamma)
+      if (outside && !agrees(responses, outside.row, outside.end)) {
+        // A row that cannot be at the edge repels: its deviance has no limit there.
+        share *= Math.min(0.5, 0.9 * outside.share)
+        if (share < 1e-12) break
+        continue
+      }
       if (outside) {
         blocked = outside
-        share = outside.share * 0.999999
+        share *= outside.share * 0.999999
         if (share < 1e-8) break
         for (let j = 0; j < p; j++) trial.gamma[j] = (point.gamma[j] as number) + share * (step.delta[j] as number)
       }

@@ -7,7 +7,7 @@ import { isConcave } from "./concavity.ts"
 import { columnsNeeded, type Design, designOf, mostColumns, recipeOf } from "./design.ts"
 import { dispersionRule } from "./dispersion.ts"
 import { Factor } from "./gram.ts"
-import { findings } from "./inference.ts"
+import { type Findings, findings, scaledScore } from "./inference.ts"
 import { type Climb, limitOf } from "./limits.ts"
 import { nullModel } from "./null-model.ts"
 import type { Problem } from "./problem.ts"
@@ -50,7 +50,7 @@ export type Evidence = DependentTerms & {
   readonly maxima: readonly number[]
   /** Where a search that did not arrive was left. */
   readonly stopped: {
-    readonly because: "arrived" | "stuck" | "singular" | "slow"
+    readonly because: "stuck" | "singular" | "slow"
     readonly steps: number
     readonly deviance: number
     readonly decrement: number
@@ -120,8 +120,21 @@ export type Fitted =
   | { readonly ok: true; readonly fit: Fit }
   | { readonly ok: false; readonly why: "no_rows" | "no_start" | "gave_up"; readonly detail: string }
 
+/** A scaled score above this is no maximum, whatever the steps say: where means run to an end, observed weights can make them small. */
+const arrivedScore = 1e-6
+
 /** `pause` is awaited at least every 50 ms of work; `near` is a fit of the same design to start from (gestures only). */
 export async function fit(problem: Problem, pause: () => Promise<void>, near: Fit | null = null): Promise<Fitted> {
+  const search = await searched(problem, pause, near)
+  return search.ok ? { ok: true, fit: await findings(search.found) } : search
+}
+
+/** The search itself, for whoever goes on from where it ended (profiles, tests of nested fits). */
+export async function searched(
+  problem: Problem,
+  pause: () => Promise<void>,
+  near: Fit | null = null,
+): Promise<{ readonly ok: true; readonly found: Findings } | Extract<Fitted, { ok: false }>> {
   if (problem.rows === 0) return { ok: false, why: "no_rows", detail: "no row has everything the model needs" }
   const needed = columnsNeeded(problem.terms, problem.intercept, problem.variables)
   if (needed > mostColumns)
@@ -156,8 +169,15 @@ export async function fit(problem: Problem, pause: () => Promise<void>, near: Fi
       limit = await limitOf(climb, measure)
     }
   }
-  if (limit.type === "inside") climb = await sharpened(climb, measure)
-  return { ok: true, fit: await findings({ climb, limit, dependences: named(dependences, design), none, others }) }
+  if (limit.type === "inside") {
+    climb = await sharpened(climb, measure)
+    const { point, decrement } = climb.found
+    const scaled = scaledScore(climb.equations, point, measure(point))
+    // In a perfect fit score and dispersion are both rounding, and their ratio says nothing.
+    const perfect = decrement <= 1e4 * responses.rounding && Number.isFinite(scaled)
+    if (!perfect && !(scaled <= arrivedScore)) limit = { type: "gave_up" }
+  }
+  return { ok: true, found: { climb, limit, dependences: named(dependences, design), none, others } }
 }
 
 /**

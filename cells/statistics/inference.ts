@@ -11,6 +11,7 @@ import { cholesky, Factor, type Gram } from "./gram.ts"
 import type { Climb, Limit } from "./limits.ts"
 import type { NullModel } from "./null-model.ts"
 import type { Problem } from "./problem.ts"
+import { endsOf } from "./recession.ts"
 import type { Responses } from "./rows.ts"
 import { directionScore, spansConstant } from "./score-direction.ts"
 import type { Equations, Point } from "./scoring.ts"
@@ -132,7 +133,12 @@ function evidenceOf({ climb, limit, others }: Findings, dependent: DependentTerm
   const edge = limit.type === "edge" ? limit.edge.active : []
   const stopped =
     limit.type === "gave_up"
-      ? { because: found.end, steps: found.iterations, deviance: found.point.deviance, decrement: found.decrement }
+      ? {
+          because: found.end === "arrived" ? ("slow" as const) : found.end,
+          steps: found.iterations,
+          deviance: found.point.deviance,
+          decrement: found.decrement,
+        }
       : null
   if (dependent.length + directions.length + edge.length + others.length === 0 && stopped === null) return null
   return { dependent, directions, edge, maxima: others, stopped }
@@ -141,12 +147,12 @@ function evidenceOf({ climb, limit, others }: Findings, dependent: DependentTerm
 /** η and μ of all rows: those that move are at the end of their range. */
 function wholeMeans({ climb, limit }: Findings, point: Point | null): { readonly eta: Float64Array; readonly mu: Float64Array } {
   if (limit.type !== "infinite") return { eta: (point as Point).state.eta.slice(), mu: (point as Point).state.mu.slice() }
-  const { family, link } = climb.responses
+  const { plus, minus } = endsOf(climb.responses)
   const eta = new Float64Array(climb.problem.rows)
   const mu = new Float64Array(climb.problem.rows)
   limit.along.forEach((t, i) => {
     eta[i] = t > 0 ? Number.POSITIVE_INFINITY : Number.NEGATIVE_INFINITY
-    mu[i] = t > 0 ? Math.min(family.range.high, link.range.high) : Math.max(family.range.low, link.range.low)
+    mu[i] = (t > 0 ? plus : minus) ?? Number.NaN
   })
   limit.rows.forEach((row, k) => {
     eta[row] = (point as Point).state.eta[k] as number
@@ -453,7 +459,7 @@ function fitTests(problem: Problem, phi: number | null, deviance: number, pearso
 // Certificate's numbers ------------------------------------------------------------------------------------------------------------------
 
 /** max |U_j|/√(φ·I_jj) over the design's own columns. */
-function scaledScore(equations: Equations, point: Point, phi: number): number {
+export function scaledScore(equations: Equations, point: Point, phi: number): number {
   const { basis } = equations
   const p = basis.size
   if (p === 0) return 0

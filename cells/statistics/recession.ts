@@ -13,10 +13,19 @@ export type Recession = {
   readonly along: Float64Array
 }
 
-/** Whether any direction can lead to infinity under this family and link. */
-export const mayRecede = ({ family, link }: Responses): boolean => {
-  if (family.name === "binomial") return ontoShares.has(link.name) || isLog(link.name)
-  return isLog(link.name) && (family.name === "poisson" || family.name === "normal")
+/** The mean reached as η grows without limit in either direction, where that mean is 0 or 1; null where it is neither. */
+export function endsOf({ link }: Pick<Responses, "link">): { readonly plus: 0 | 1 | null; readonly minus: 0 | 1 | null } {
+  if (ontoShares.has(link.name)) return { plus: 1, minus: 0 }
+  if (link.name === "log" || link.name === "power(0)") return { plus: null, minus: 0 }
+  // Reciprocals and negative powers: the mean vanishes as η grows.
+  const vanishes = link.reach.low === 0 && link.slope(1) < 0
+  return { plus: vanishes ? 0 : null, minus: null }
+}
+
+/** Whether any direction can lead to infinity under this family and link: a gamma has no response that agrees with an end. */
+export const mayRecede = (of: Responses): boolean => {
+  const { plus, minus } = endsOf(of)
+  return of.family.name !== "gamma" && (plus !== null || minus !== null)
 }
 
 /** Steps in η below this are those of a search that has arrived. */
@@ -50,17 +59,18 @@ export function recessionAlong(equations: Equations, step: Float64Array): Recess
   return null
 }
 
-/** Row by row: may this mean go where it is taken? */
-function verified({ family, link, y, a, rows }: Responses, along: Float64Array): boolean {
+/** Row by row: may this mean go where it is taken? Only if the response is at that end, or for a normal one beyond it. */
+function verified(of: Responses, along: Float64Array): boolean {
+  const { family, y, a, rows } = of
+  const { plus, minus } = endsOf(of)
+  const beyond = family.name === "normal"
   let moved = false
-  const both = family.name === "binomial" && ontoShares.has(link.name)
   for (let i = 0; i < rows; i++) {
-    if ((a[i] as number) === 0) continue
     const t = along[i] as number
-    if (t === 0) continue
+    if ((a[i] as number) === 0 || t === 0) continue
     const response = y[i] as number
-    const down = family.name === "normal" ? response <= 0 : response === 0
-    if (t < 0 ? !down : !(both && response === 1)) return false
+    const end = t > 0 ? plus : minus
+    if (end === 0 ? !(beyond ? response <= 0 : response === 0) : end !== 1 || !(beyond ? response >= 1 : response === 1)) return false
     moved = true
   }
   return moved
@@ -105,4 +115,3 @@ const largestOf = (x: Float64Array, a: Float64Array): number =>
   x.reduce((most, v, i) => ((a[i] as number) > 0 ? Math.max(most, Math.abs(v)) : most), 0)
 
 const ontoShares: ReadonlySet<string> = new Set(["logit", "probit", "cauchit", "cloglog", "loglog"])
-const isLog = (name: string): boolean => name === "log" || name === "power(0)"

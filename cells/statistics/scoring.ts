@@ -172,8 +172,7 @@ export async function maximum(equations: Equations, start: Point, phi: (point: P
     if (factor === null) return { point: current, iterations, end: "singular", decrement: Number.NaN, step }
     step = factor.solve(current.score)
     const decrement = dot(step, current.score)
-    const size = dot(current.gamma, current.gram.times(current.gamma))
-    if (decrement <= scoringEnds * phi(current) || decrement <= 1e-24 * size) break
+    if (decrement <= scoringEnds * phi(current) || decrement <= equations.responses.rounding) break
     // Scoring gains a fixed share a step off the canonical link; where that share is small, Newton's steps are taken early.
     const slow = decrement > 0.02 * before
     before = decrement
@@ -247,7 +246,9 @@ export async function polished(
     if (gain > 0.25) break
   }
   // Where the next step would leave the possible means and the score has not vanished, the maximum is not inside.
-  return { point: current, iterations, end: left && decrement > 1e-12 * phi(current) ? "stuck" : "arrived", decrement, step }
+  const tolerance = left ? 1e-12 : 1e-9
+  const arrived = decrement <= tolerance * phi(current) || decrement <= 1e4 * equations.responses.rounding
+  return { point: current, iterations, end: arrived ? "arrived" : left ? "stuck" : "slow", decrement, step }
 }
 
 /** Whether a pass with expected weights is also one with observed weights and η to full precision. */
