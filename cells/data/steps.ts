@@ -7,7 +7,7 @@ import type { ClauseEdit, Notice } from "../../runtime/notice.ts"
 import type { Name } from "../../runtime/value.ts"
 import { evaluated } from "../language/evaluate.ts"
 import { namesIn, type Scalar, type Vector } from "../language/expression.ts"
-import { faultFrom, saidWith } from "../language/slip.ts"
+import { faultFrom, saidWith, warningFrom } from "../language/slip.ts"
 import type { Column } from "../table/column.ts"
 import { inBlocks, type Pause } from "./blocks.ts"
 import { edit } from "./clauses.ts"
@@ -109,6 +109,7 @@ function valueHere(
     for (const trouble of result.troubles) notices.push(faultFrom(trouble, step.type))
     return null
   }
+  for (const doubt of result.doubts) notices.push(warningFrom(doubt, step.type))
   if (result.lost > 0)
     notices.push(step.type === "make" ? say.lostValues(step.name, result.lost, step.at) : say.comparisonLost(result.lost, step.at))
   return result.vector

@@ -90,6 +90,7 @@ export const dataWords: Words<DataSaid> = {
   parse(statement) {
     const { clauses, notices } = readClauses(statement, dataWords)
     const found: Notice[] = []
+    const nths = ordinals(statement)
     const one = (keyword: string): Matched | null => clauses.find((clause) => clause.keyword === keyword) ?? null
     const said: DataSaid = {
       name: statement.name,
@@ -98,8 +99,8 @@ export const dataWords: Words<DataSaid> = {
       decimal: decimalSaid(one("decimal"), found),
       header: !(one("header")?.words.includes("no") ?? false),
       missing: one("missing") === null ? null : textsIn(one("missing"), "texts").map(({ text }) => text),
-      columns: clauses.flatMap((clause) => columnSaid(clause, statement)),
-      steps: clauses.flatMap((clause) => step(clause, statement)),
+      columns: clauses.flatMap((clause) => columnSaid(clause, nths)),
+      steps: clauses.flatMap((clause) => step(clause, statement, nths)),
       total: totalSaid(one("total"), statement),
     }
     twice(said, found)
@@ -117,10 +118,14 @@ export const dataWords: Words<DataSaid> = {
   },
 }
 
-/** Which of the clauses with its keyword a clause is, counted from 0. */
-const nthOf = (statement: Statement, index: number): number => {
-  const keyword = statement.clauses[index]?.keyword
-  return statement.clauses.slice(0, index).filter((clause) => clause.keyword === keyword).length
+/** Of each clause, which of those with its keyword it is, counted from 0. */
+function ordinals(statement: Statement): readonly number[] {
+  const seen = new Map<string, number>()
+  return statement.clauses.map(({ keyword }) => {
+    const nth = seen.get(keyword) ?? 0
+    seen.set(keyword, nth + 1)
+    return nth
+  })
 }
 
 const textsIn = (matched: Matched | null, label: string): readonly { readonly text: string; readonly at: Place }[] =>
@@ -162,7 +167,7 @@ function decimalSaid(matched: Matched | null, notices: Notice[]): "." | "," | nu
   return null
 }
 
-function columnSaid(matched: Matched, statement: Statement): readonly ColumnSaid[] {
+function columnSaid(matched: Matched, nths: readonly number[]): readonly ColumnSaid[] {
   const column = matched.keyword === "column" ? namesOf(matched.slots["column"])[0] : undefined
   const type = columnTypes[matched.form]
   if (column === undefined || type === undefined) return []
@@ -177,17 +182,17 @@ function columnSaid(matched: Matched, statement: Statement): readonly ColumnSaid
       levels: levels.length === 0 ? null : levels,
       coding: matched.words.includes("sum_to_zero") ? "sum_to_zero" : "corner",
       at: column.at,
-      nth: nthOf(statement, matched.clause),
+      nth: nths[matched.clause] ?? 0,
     },
   ]
 }
 
-function step(matched: Matched, statement: Statement): readonly Step[] {
+function step(matched: Matched, statement: Statement, nths: readonly number[]): readonly Step[] {
   const filled = matched.slots["expression"]?.[0]
   const clause = statement.clauses[matched.clause]
   if (filled?.type !== "EXPR" || clause === undefined) return []
   const { expression } = filled
-  const nth = nthOf(statement, matched.clause)
+  const nth = nths[matched.clause] ?? 0
   if (matched.keyword === "where") return [{ type: "where", expression, clause, nth, at: { clause: matched.clause, from: 0, to: 1 } }]
   const column = namesOf(matched.slots["column"])[0]
   return column === undefined ? [] : [{ type: "make", name: column.name, expression, clause, nth, at: column.at }]
@@ -214,7 +219,8 @@ function twice(said: DataSaid, notices: Notice[]): void {
     names.add(made.name)
   }
   for (const { name, levels, at } of said.columns) {
-    const level = levels?.find((text, i) => levels.indexOf(text) !== i)
+    const seen = new Set<string>()
+    const level = levels?.find((text) => seen.size === seen.add(text).size)
     if (level !== undefined) notices.push(say.levelTwice(name, level, at))
   }
   const totalled = new Set<Name>()
