@@ -69,7 +69,9 @@ export async function serve(): Promise<Server> {
   }
   const { port } = server.address() as AddressInfo
   if (asked === null && port !== usualPort) {
-    console.log(`Port ${usualPort} is taken. A browser keeps one shelf for each address, so the shelf here is not the one kept under ${usualPort}.`)
+    console.log(
+      `Port ${usualPort} is taken. A browser keeps one shelf for each address, so the shelf here is not the one kept under ${usualPort}.`,
+    )
   }
   console.log(`Etamu is at http://localhost:${port}/ (Ctrl+C ends it)`)
   return server
