@@ -5,7 +5,8 @@
 import type { Design } from "./design.ts"
 import { denseColumns } from "./design.ts"
 import { productError, type Wide, wide, wideDivide, wideDot, wideRoot, wideSubtract } from "./double-double.ts"
-import { Factor, gramOf, Layout, rangeSums } from "./gram.ts"
+import { Factor, gramOf, Layout, pacedSums, rangeSums } from "./gram.ts"
+import type { Pace } from "./scoring.ts"
 
 /** Columns of a factor term in a basis: as in the design, with columns numbered within the basis. */
 export type Cells = {
@@ -57,7 +58,7 @@ export type Basis = Shape & {
 export type Dependence = { readonly column: number; readonly on: readonly { readonly column: number; readonly times: number }[] }
 
 /** A part beyond the earlier columns below this share of a column's length says nothing (conventions, certificates). */
-export const dependenceTolerance = 1e-11
+const dependenceTolerance = 1e-11
 
 /** Largest variance inflation that plain double sums bear: their error in a standard error is about 1e-16 times this. */
 export const mostInflation = 1e4
@@ -69,14 +70,20 @@ const mostWritten = 6e6
  * A basis for a design, and the columns left out because earlier ones make them.
  * @param order  in which columns come first, where not that of the terms
  */
-export function basisOf(
+export async function basisOf(
   design: Design,
+  pace: Pace,
   order: readonly number[] | null = null,
-): { readonly basis: Basis; readonly dependences: readonly Dependence[] } {
+): Promise<{ readonly basis: Basis; readonly dependences: readonly Dependence[] }> {
   const p = design.recipe.columns.length
   const all = new Uint8Array(p).fill(1)
   const first = scaledBasis(design, all)
-  if (first && inflation(first) < mostInflation) return { basis: first, dependences: [] }
+  if (pace.due(20 * design.rows * (design.plain.length + design.blocks.length))) await pace.rest()
+  if (first) {
+    const sums = await pacedSums(first.layout, new Float64Array(design.rows).fill(1), new Float64Array(design.rows), pace)
+    const most = Factor.of(gramOf(first.layout, sums))?.inflation() ?? Number.POSITIVE_INFINITY
+    if (most < mostInflation) return { basis: first, dependences: [] }
+  }
   if (design.rows * p <= mostWritten) {
     const written = denseColumns(design)
     const { kept, dependences, change } = orthogonalised(written, null, order)
@@ -437,4 +444,23 @@ function dependencesByNormalMatrix(design: Design): Dependence[] {
     kept.push(at)
   }
   return found
+}
+
+/** A basis over some of the design's columns, already known to be independent. */
+export function basisOver(design: Design, columns: readonly number[]): Basis {
+  const keep = new Uint8Array(design.recipe.columns.length)
+  for (const column of columns) keep[column] = 1
+  const scaled = scaledBasis(design, keep)
+  if (scaled && inflation(scaled) < mostInflation) return scaled
+  if (design.rows * columns.length > mostWritten) {
+    if (!scaled) throw new RangeError("a column of the design is zero")
+    return scaled
+  }
+  const written = denseColumns(design)
+  const { kept, change } = orthogonalised(
+    written,
+    null,
+    [...columns].sort((a, b) => a - b),
+  )
+  return orthogonalBasis(written, kept, change)
 }

@@ -20,7 +20,7 @@ export function isConcave(family: FamilySpec, link: LinkSpec): boolean {
 }
 
 /** The power a link is, 0 for the log; null for the others. */
-export const powerOf = (link: LinkSpec): number | null => {
+const powerOf = (link: LinkSpec): number | null => {
   switch (link.name) {
     case "identity":
       return 1

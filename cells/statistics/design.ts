@@ -3,13 +3,13 @@
 // belongs to, and no column of zeros and ones is ever made here unless it is asked for.
 
 import { cos, log, pow, sin } from "./elementary.ts"
-import type { Piece, Problem, Term, Variable } from "./problem.ts"
+import type { Piece, Term, Variable } from "./problem.ts"
 import type { PieceRecipe, Recipe, TermRecipe } from "./recipe.ts"
 
 export type Variables = Readonly<Record<string, Variable>>
 
 /** A column of numbers. */
-export type PlainColumn = { readonly column: number; readonly values: Float64Array }
+type PlainColumn = { readonly column: number; readonly values: Float64Array }
 
 /**
  * The columns of a term with factors. Row i is in cell `cells[i]` (−1: a level never seen); cell c belongs to the columns
@@ -106,9 +106,6 @@ export function designOf(recipe: Recipe, variables: Variables, rows: number): De
   })
   return { rows, recipe, termOf, constant: recipe.intercept, plain, blocks }
 }
-
-export const designOfProblem = (problem: Problem): Design =>
-  designOf(recipeOf(problem.terms, problem.intercept, problem.variables, problem.rows, problem.repeat), problem.variables, problem.rows)
 
 /** All columns written out, in the order of the coefficients: for few rows or small designs. */
 export function denseColumns(design: Design): Float64Array[] {

@@ -4,7 +4,7 @@ import { exp, log, log1p } from "./elementary.ts"
 import type { Problem } from "./problem.ts"
 import { digamma, trigamma } from "./special.ts"
 
-export type DispersionRule = { readonly estimated: boolean; readonly given: number | null }
+type DispersionRule = { readonly estimated: boolean; readonly given: number | null }
 
 /** `estimated` says whether tests use t and F. */
 export const dispersionRule = (problem: Problem): DispersionRule => {

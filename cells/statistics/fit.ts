@@ -148,8 +148,8 @@ export async function searched(
   const unfit = missingIn(design)
   if (unfit !== null) return { ok: false, why: "gave_up", detail: unfit }
   const responses = responsesOf(problem)
-  const { basis, dependences } = basisOf(design)
-  if (pace.due(problem.rows * (50 + basis.plain.length * basis.plain.length))) await pace.rest()
+  if (pace.due(50 * problem.rows)) await pace.rest()
+  const { basis, dependences } = await basisOf(design, pace)
   const phi = provisionalDispersion(problem, responses)
   const none = await nullModel(responses, pace, phi(1))
   const equations = new Equations(basis, responses, pace)

@@ -76,7 +76,7 @@ export function addRows(
 }
 
 /** Adds the rows from … to of Σ s·x alone. */
-export function addScores(layout: Layout, from: number, to: number, s: Float64Array, sums: Float64Array): void {
+function addScores(layout: Layout, from: number, to: number, s: Float64Array, sums: Float64Array): void {
   const { plain, blocks } = layout.shape
   for (let low = from; low < to; low += blockRows) {
     const high = Math.min(to, low + blockRows)
@@ -216,6 +216,25 @@ export function rangeSums(layout: Layout, w: Float64Array, s: Float64Array): Flo
   for (let chunk = 0; chunk < layout.chunks; chunk++) {
     addRows(layout, layout.chunkStart(chunk), layout.chunkStart(chunk + 1), w, s, tree.next(), scratch)
     tree.push()
+  }
+  return tree.total().slice()
+}
+
+/** The same with pauses: `due` counts nanoseconds of work, `rest` pauses. */
+export async function pacedSums(
+  layout: Layout,
+  w: Float64Array,
+  s: Float64Array,
+  pace: { due(work: number): boolean; rest(): Promise<void> },
+): Promise<Float64Array> {
+  const tree = new SumTree(layout.length)
+  const scratch = new Float64Array(blockRows * (layout.shape.blocks.length + 1))
+  const workOfRow = 10 + layout.plain * layout.plain + layout.shape.blocks.length * 10
+  for (let chunk = 0; chunk < layout.chunks; chunk++) {
+    const [from, to] = [layout.chunkStart(chunk), layout.chunkStart(chunk + 1)]
+    addRows(layout, from, to, w, s, tree.next(), scratch)
+    tree.push()
+    if (pace.due((to - from) * workOfRow)) await pace.rest()
   }
   return tree.total().slice()
 }

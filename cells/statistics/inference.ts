@@ -59,7 +59,7 @@ export async function findings(given: Findings): Promise<Fit> {
 
   const clusters = problem.standardErrors === "sandwich" && problem.cluster ? new Set(problem.cluster).size : null
   const lawDf = clusters !== null ? clusters - 1 : rule.estimated ? df : null
-  const constant = design.constant || spansConstant(climb.equations)
+  const constant = design.constant || (await spansConstant(climb.equations))
   const certificate = classOf(given)
   const factor = rest && point && limit.type !== "edge" ? Factor.of(point.gram) : null
   const hasErrors = (limit.type === "inside" || limit.type === "infinite") && phi !== null && factor !== null && rest !== null
@@ -98,7 +98,8 @@ export async function findings(given: Findings): Promise<Fit> {
       condition: measured && point && limit.type !== "edge" ? conditionOf(measured, point, factor) : Number.NaN,
       evidence: evidenceOf(given, dependences),
     },
-    goodnessOfLink: certificate === "interior" && factor && phi !== null && phi > 0 ? goodnessOf(climb, factor, phi, constant, df) : null,
+    goodnessOfLink:
+      certificate === "interior" && factor && phi !== null && phi > 0 ? await goodnessOf(climb, factor, phi, constant, df) : null,
     meanRange: {
       possible: [Math.max(link.range.low, family.range.low), Math.min(link.range.high, family.range.high)],
       fitted: meanRange(means.mu),
@@ -246,11 +247,11 @@ function coefficientsOf(
 }
 
 /** The score of η²: does the model gain by the square of its own predictor? */
-function goodnessOf(climb: Climb, factor: Factor, phi: number, constant: boolean, df: number): Fit["goodnessOfLink"] {
+async function goodnessOf(climb: Climb, factor: Factor, phi: number, constant: boolean, df: number): Promise<Fit["goodnessOfLink"]> {
   const { problem, equations, found } = climb
   const v = found.point.state.eta.map((eta) => eta * eta)
   const sandwich = problem.standardErrors === "sandwich" ? { repeat: problem.repeat, cluster: problem.cluster } : null
-  const score = directionScore(equations, found.point, factor, v, phi, constant, sandwich)
+  const score = await directionScore(equations, found.point, factor, v, phi, constant, sandwich)
   if (!(score.index >= leastIndex) || !Number.isFinite(score.statistic)) return null
   const { estimated } = dispersionRule(problem)
   const p = estimated && !sandwich ? fUpperTail(score.statistic, 1, df) : chiSquareUpperTail(score.statistic, 1)
@@ -272,7 +273,7 @@ const twoSided = (ratio: number, df: number | null): number | null => {
 }
 
 /** n: rows used, or the sum of `repeat`. */
-export const rowsCounted = (problem: Problem): number => (problem.repeat ? problem.repeat.reduce((sum, R) => sum + R, 0) : problem.rows)
+const rowsCounted = (problem: Problem): number => (problem.repeat ? problem.repeat.reduce((sum, R) => sum + R, 0) : problem.rows)
 
 const trialsCounted = (problem: Problem): number => {
   let sum = 0

@@ -72,7 +72,7 @@ async function restOf(climb: Climb, rows: Int32Array, direction: Float64Array, p
   const responses = responsesOf(problem)
   const all = [...direction.keys()]
   const order = [...all.filter((j) => direction[j] === 0), ...all.filter((j) => direction[j] !== 0)]
-  const { basis } = basisOf(design, order)
+  const { basis } = await basisOf(design, climb.equations.pace, order)
   const equations = new Equations(basis, responses, climb.equations.pace)
   const constant = design.constant && basis.change.column.includes(0) ? 0 : -1
   const start = await startingPoint(equations, constant, all.length, null, null)
@@ -81,7 +81,7 @@ async function restOf(climb: Climb, rows: Int32Array, direction: Float64Array, p
   return { problem, design, responses, equations, found }
 }
 
-export function problemAtRows(problem: Problem, rows: Int32Array): Problem {
+function problemAtRows(problem: Problem, rows: Int32Array): Problem {
   const take = (values: Float64Array | null): Float64Array | null => (values ? Float64Array.from(rows, (i) => values[i] as number) : null)
   return {
     ...problem,

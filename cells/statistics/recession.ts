@@ -6,7 +6,7 @@ import { Factor, gramOf, rangeSums, scoreSums } from "./gram.ts"
 import type { Responses } from "./rows.ts"
 import { cellTerms, type Equations, linearPredictor } from "./scoring.ts"
 
-export type Recession = {
+type Recession = {
   /** The direction in the basis. */
   readonly gamma: Float64Array
   /** x'b of each row, 0 where the mean stays; the largest is 1 in size. */
@@ -23,7 +23,7 @@ export function endsOf({ link }: Pick<Responses, "link">): { readonly plus: 0 | 
 }
 
 /** Whether any direction can lead to infinity under this family and link: a gamma has no response that agrees with an end. */
-export const mayRecede = (of: Responses): boolean => {
+const mayRecede = (of: Responses): boolean => {
   const { plus, minus } = endsOf(of)
   return of.family.name !== "gamma" && (plus !== null || minus !== null)
 }

@@ -4,7 +4,7 @@
 import { Factor } from "./gram.ts"
 import { cellTerms, type Equations, linearPredictor, type Point } from "./scoring.ts"
 
-export type DirectionScore = {
+type DirectionScore = {
   /** (v'Wr)²/(φ·v⊥'Wv⊥), or (Σ v⊥s)²/Σ(v⊥s)² under sandwich errors. */
   readonly statistic: number
   /** v'Wr/v⊥'Wv⊥: the coefficient one step would give v. */
@@ -22,7 +22,7 @@ export type DirectionScore = {
  * @param centred   whether the columns span a constant
  * @param sandwich  how scores are summed where errors are sandwich: copies of each row, and clusters
  */
-export function directionScore(
+export async function directionScore(
   equations: Equations,
   point: Point,
   factor: Factor,
@@ -30,7 +30,7 @@ export function directionScore(
   phi: number,
   centred: boolean,
   sandwich: { readonly repeat: Float64Array | null; readonly cluster: Int32Array | null } | null,
-): DirectionScore {
+): Promise<DirectionScore> {
   const { weight, score } = point.state
   const n = v.length
   let [total, sum] = [0, 0]
@@ -49,7 +49,7 @@ export function directionScore(
     whole += w * (rest[i] as number) * (rest[i] as number)
   }
   // Projected twice: what the first time leaves by rounding, the second takes.
-  for (let round = 0; round < 2; round++) project(equations, weight, factor, rest)
+  for (let round = 0; round < 2; round++) await project(equations, weight, factor, rest)
   let [information, u] = [0, 0]
   for (let i = 0; i < n; i++) {
     const x = rest[i] as number
@@ -76,7 +76,8 @@ export function directionScore(
 }
 
 /** v − X(X'WX)⁻¹X'Wv in place. */
-export function project(equations: Equations, weight: Float64Array, factor: Factor, v: Float64Array): void {
+async function project(equations: Equations, weight: Float64Array, factor: Factor, v: Float64Array): Promise<void> {
+  if (equations.pace.due(v.length * (20 + 4 * equations.basis.size))) await equations.pace.rest()
   const { basis } = equations
   const weighted = new Float64Array(v.length)
   for (let i = 0; i < v.length; i++) weighted[i] = (weight[i] as number) === 0 ? 0 : (weight[i] as number) * (v[i] as number)
@@ -95,14 +96,14 @@ export function project(equations: Equations, weight: Float64Array, factor: Fact
 }
 
 /** Whether the columns span a constant: what is left of it after projection is rounding. */
-export function spansConstant(equations: Equations): boolean {
+export async function spansConstant(equations: Equations): Promise<boolean> {
   const { rows } = equations.basis
   if (equations.basis.size === 0) return false
   const one = new Float64Array(rows).fill(1)
   const factor = Factor.of(equations.weighted(one))
   if (!factor) return false
   const left = one.slice()
-  for (let round = 0; round < 2; round++) project(equations, one, factor, left)
+  for (let round = 0; round < 2; round++) await project(equations, one, factor, left)
   let squares = 0
   for (const x of left) squares += x * x
   return squares < 1e-18 * rows
