@@ -179,11 +179,12 @@ export function createEngine(options: EngineOptions): Engine {
       if (gesture === null) advance()
       else endGesture()
     } else {
-      // While one evaluation of the gesture is in flight the newest notebook waits, whatever was waiting before: a hand is never
-      // answered by a queue of what it did a while ago, and what is in flight is never given up for what comes next.
-      const inFlight = gesture !== null && isAtWork()
+      // The first text of a gesture is taken up at once, and each later one by the pull, when nothing of the one before is in flight;
+      // until then the newest waits in place of any before it. So a hand is never answered by a queue of what it did a while ago, and
+      // what is in flight is never given up for what comes next.
+      const first = gesture === null
       gesture = inGesture
-      if (!inFlight) advance()
+      if (first) advance()
     }
     schedule()
   }

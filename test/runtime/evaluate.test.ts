@@ -282,6 +282,33 @@ describe("work under way", () => {
     expect(await result).toEqual({ type: "cancelled" })
   })
 
+  it("ends though it stands back for other work when it is cancelled", async () => {
+    let release: (() => void) | null = null
+    const held = told(async () => {
+      await new Promise<void>((done) => {
+        release = done
+      })
+      return ok(2)
+    })
+    const late = tardy([])
+    const evaluator = createEvaluator({
+      kinds: [late, { ...held, words: { ...held.words, word: "held" } }],
+      bytes: () => evaluatorOf(late) as never,
+      pause: turn,
+    })
+    const its = task("k")
+    const result = evaluator.evaluate(its, silent)
+    await turn()
+    const other = evaluator.evaluate(task("held"), silent)
+    evaluator.rest(its.id, true)
+    await turn()
+    await turn()
+    evaluator.cancel(its.id)
+    expect(await result).toEqual({ type: "cancelled" })
+    ;(release as (() => void) | null)?.()
+    expect((await other).type).toBe("found")
+  })
+
   it("stands back in its late parts while anything else is under way, and everything does for a gesture", async () => {
     const log: string[] = []
     const late = tardy(log)

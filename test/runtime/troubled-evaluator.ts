@@ -39,12 +39,15 @@ export interface TroubledEvaluator extends Evaluator {
   /** Another worker: what is under way is lost, and so is all that was held. */
   replace(): void
   readonly silent: number
+  /** Ids of the tasks that were cancelled. */
+  readonly cancelled: readonly number[]
 }
 
 export function troubledEvaluator(next: Random): TroubledEvaluator {
   let inner = calm()
   let generation = 0
   let silenced = 0
+  const cancelled: number[] = []
   const queues = new Map<number, (() => void)[]>()
   const open = new Map<number, (result: Result) => void>()
   const trouble = { crash: 0, lose: 0, silence: 0 }
@@ -100,7 +103,11 @@ export function troubledEvaluator(next: Random): TroubledEvaluator {
         open.set(task.id, answer)
         later(task.id, () => begin(task, events))
       }),
-    cancel: (id) => inner.cancel(id),
+    cancelled,
+    cancel: (id) => {
+      cancelled.push(id)
+      inner.cancel(id)
+    },
     rest: (id, wanted) => later(id, () => inner.rest(id, wanted)),
     ask: (kind, whole: Hash, text, question) => inner.ask(kind, whole, text, question),
     keep: (hashes) => inner.keep(hashes),
