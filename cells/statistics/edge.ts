@@ -2,7 +2,8 @@
 // likelihood would still rise beyond. Found by Newton's method with those rows held at the edge, verified by the multipliers of the rows
 // (Karush-Kuhn-Tucker); what is not verified is not called a maximum.
 
-import { cholesky, type Gram } from "./gram.ts"
+import { definiteSolver } from "./definite.ts"
+import type { Gram } from "./gram.ts"
 import { directionOf } from "./recession.ts"
 import type { Responses } from "./rows.ts"
 import { dot, Equations, type Point } from "./scoring.ts"
@@ -227,30 +228,15 @@ function constrainedStep(
   off: readonly number[],
 ): { readonly delta: Float64Array; readonly lambda: Float64Array } | null {
   const p = u.length
-  const scale = Float64Array.from({ length: p }, (_, j) => 1 / Math.sqrt(H[j * p + j] as number))
-  const lower = H.map((h, at) => h * (scale[Math.floor(at / p)] as number) * (scale[at % p] as number))
-  if (!cholesky(lower, p)) return null
-  const solve = (b: Float64Array): Float64Array => {
-    const v = b.map((x, j) => x * (scale[j] as number))
-    for (let i = 0; i < p; i++) {
-      let sum = v[i] as number
-      for (let k = 0; k < i; k++) sum -= (lower[i * p + k] as number) * (v[k] as number)
-      v[i] = sum / (lower[i * p + i] as number)
-    }
-    for (let i = p - 1; i >= 0; i--) {
-      let sum = v[i] as number
-      for (let k = i + 1; k < p; k++) sum -= (lower[k * p + i] as number) * (v[k] as number)
-      v[i] = sum / (lower[i * p + i] as number)
-    }
-    return v.map((x, j) => x * (scale[j] as number))
-  }
+  const solve = definiteSolver(H, p)
+  if (!solve) return null
   const free = solve(u)
   // Gram-Schmidt over the constraints in the metric of H⁻¹, so that repeated rows do no harm.
   const kept: { readonly at: number; readonly v: Float64Array; readonly row: Float64Array }[] = []
   A.forEach((row, at) => {
     const v = solve(row)
     const own = dot(row, v)
-    const inner = kept.map((other) => dot(other.row, v))
+    const inner = Float64Array.from(kept, (other) => dot(other.row, v))
     const m = kept.length
     const S = new Float64Array(m * m)
     kept.forEach((a, i) => {
@@ -258,7 +244,7 @@ function constrainedStep(
         S[i * m + j] = dot(a.row, b.v)
       })
     })
-    const c = m === 0 ? [] : solveDense(S, inner)
+    const c = definiteSolver(S, m)?.(inner)
     const left = own - inner.reduce((sum, x, i) => sum + x * (c ? (c[i] as number) : 0), 0)
     if (c && left > 1e-10 * own) kept.push({ at, v, row })
   })
@@ -269,8 +255,8 @@ function constrainedStep(
       S[i * m + j] = dot(a.row, b.v)
     })
   })
-  const right = kept.map(({ row, at }) => dot(row, free) - (off[at] as number))
-  const multipliers = m === 0 ? [] : solveDense(S, right)
+  const right = Float64Array.from(kept, ({ row, at }) => dot(row, free) - (off[at] as number))
+  const multipliers = definiteSolver(S, m)?.(right)
   if (!multipliers) return null
   const delta = free.slice()
   const lambda = new Float64Array(A.length)
@@ -280,24 +266,6 @@ function constrainedStep(
     for (let j = 0; j < p; j++) delta[j] = (delta[j] as number) - l * (v[j] as number)
   })
   return { delta, lambda }
-}
-
-/** Solves a small symmetric positive definite system; null where it is none. */
-function solveDense(S: Float64Array, b: readonly number[]): number[] | null {
-  const m = b.length
-  const scale = Array.from({ length: m }, (_, j) => 1 / Math.sqrt(S[j * m + j] as number))
-  const lower = S.map((s, at) => s * (scale[Math.floor(at / m)] as number) * (scale[at % m] as number))
-  if (!cholesky(lower, m)) return null
-  const x = b.map((v, j) => v * (scale[j] as number))
-  for (let i = 0; i < m; i++) {
-    for (let k = 0; k < i; k++) x[i] = (x[i] as number) - (lower[i * m + k] as number) * (x[k] as number)
-    x[i] = (x[i] as number) / (lower[i * m + i] as number)
-  }
-  for (let i = m - 1; i >= 0; i--) {
-    for (let k = i + 1; k < m; k++) x[i] = (x[i] as number) - (lower[k * m + i] as number) * (x[k] as number)
-    x[i] = (x[i] as number) / (lower[i * m + i] as number)
-  }
-  return x.map((v, j) => v * (scale[j] as number))
 }
 
 /** The weights' matrix with the held rows added: on the edge they change nothing, and with them it is positive definite. */
