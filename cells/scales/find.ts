@@ -29,13 +29,13 @@ export async function found(said: ScalesSaid, inputs: Inputs, work: Work): Promi
   const candidates = candidateLinks(said, model, inputs, fault)
   if (setting === null || candidates === null || notices.length > 0) return { ok: false, found: null, notices }
 
-  const modelKey = inputs.get(said.model.name)?.key ?? ""
+  const mark = markOf(model)
   const plot = new Plot(model, setting, work)
   const own = await plot.candidate(model.problem.link, model.link, true, model.fit)
   const others = candidates.filter(({ says }) => says !== model.link)
   const finding = (rest: readonly CandidateFound[], complete: boolean): ScalesFinding => ({
     model: (said.model as Named).name,
-    modelKey,
+    mark,
     family: model.problem.family.name,
     predictor: model.problem.terms.map(({ says }) => says).join(" + ") || "intercept",
     n: model.fit.n,
@@ -57,7 +57,7 @@ export async function found(said: ScalesSaid, inputs: Inputs, work: Work): Promi
   if (left !== null) notices.push(say.leavesRange(own.link, left))
   // In a gesture that leaves the model as it was, the candidates fitted before are drawn again: only the plot has changed.
   const before = new Map<string, CandidateFound>()
-  if (isScales(work.near) && work.near.modelKey === modelKey) for (const each of work.near.candidates) before.set(each.link, each)
+  if (isScales(work.near) && isSame(work.near.mark, mark)) for (const each of work.near.candidates) before.set(each.link, each)
   const meanwhile: CandidateFound[] = []
   for (const { spec, says } of others) {
     const known = before.get(says)?.fit ?? null
@@ -83,7 +83,13 @@ export async function found(said: ScalesSaid, inputs: Inputs, work: Work): Promi
   return { ok: true, found: finding(rest, true), notices }
 }
 
-const isScales = (near: Value | null): near is ScalesFinding => typeof near === "object" && near !== null && "modelKey" in near
+const isScales = (near: Value | null): near is ScalesFinding => typeof near === "object" && near !== null && "mark" in near
+
+/** Numbers by which a drag tells whether the model is still the one drawn before: a key may not get into a finding. */
+const markOf = ({ fit: own, problem }: ModelFinding): Float64Array =>
+  Float64Array.of(problem.rows, own.n, own.deviance ?? Number.NaN, own.pearson, ...own.coefficients.map(({ beta }) => beta ?? Number.NaN))
+
+const isSame = (a: Float64Array, b: Float64Array): boolean => a.length === b.length && a.every((value, i) => Object.is(value, b[i]))
 
 /** A model's finding among the inputs, null where the cell is of another kind. */
 function modelIn(inputs: Inputs, name: Name): ModelFinding | null {

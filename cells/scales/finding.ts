@@ -27,8 +27,8 @@ export type CandidateFound = {
 
 export type ScalesFinding = {
   readonly model: Name
-  /** Names the model's finding that was drawn. */
-  readonly modelKey: string
+  /** Numbers of the fit that was drawn, to tell in a drag whether it is still the same. */
+  readonly mark: Float64Array
   readonly family: string
   readonly predictor: string
   readonly n: number
