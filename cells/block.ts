@@ -1,19 +1,11 @@
 // Blocks: what a finding shows, as a closed union of plain data that the page, the report and the terminal each know how to draw. A
 // face may place, colour, snap and look up; it computes no number. What a block can do it carries as an Intent.
 
-import type { Formula } from "./figure/formula.ts"
-import type { Figure } from "./figure/figure.ts"
 import type { Intent } from "../runtime/notice.ts"
+import type { Figure } from "./figure/figure.ts"
+import type { Formula } from "./figure/formula.ts"
 
-export type Block =
-  | SentenceBlock
-  | TableBlock
-  | FormulaBlock
-  | FigureBlock
-  | TapeBlock
-  | ScalesBlock
-  | DialBlock
-  | ProseBlock
+export type Block = SentenceBlock | TableBlock | FormulaBlock | FigureBlock | TapeBlock | ScalesBlock | DialBlock | ProseBlock
 
 /** One or more sentences. `quiet` is for what qualifies the finding (certificates, counts), `lead` for what it comes to. */
 export type SentenceBlock = { readonly type: "sentence"; readonly text: string; readonly tone: "lead" | "plain" | "quiet" }
@@ -27,7 +19,11 @@ export type TableColumn = {
 }
 
 /** Entries are text, a number with the digits it is shown to (the full value on request), or null for "not available". */
-export type TableEntry = string | { readonly value: number; readonly digits: number } | { readonly from: number; readonly to: number; readonly digits: number } | null
+export type TableEntry =
+  | string
+  | { readonly value: number; readonly digits: number }
+  | { readonly from: number; readonly to: number; readonly digits: number }
+  | null
 
 export type TableBlock = {
   readonly type: "table"
@@ -105,7 +101,12 @@ export type ScalesCandidate = {
 
 export type ScalesBlock = {
   readonly type: "scales"
-  readonly across: { readonly name: string; readonly label: string; readonly unit: string | null; readonly levels: readonly string[] | null }
+  readonly across: {
+    readonly name: string
+    readonly label: string
+    readonly unit: string | null
+    readonly levels: readonly string[] | null
+  }
   readonly response: { readonly label: string; readonly unit: string | null }
   readonly split: { readonly name: string; readonly levels: readonly string[] } | null
   /** The open range of possible means, ±Infinity allowed. */
@@ -128,7 +129,13 @@ export type ScalesBlock = {
 export type DialBlock = {
   readonly type: "dial"
   readonly name: string
-  readonly range: { readonly from: number; readonly to: number; readonly step: number; readonly steps: number; readonly digits: number } | null
+  readonly range: {
+    readonly from: number
+    readonly to: number
+    readonly step: number
+    readonly steps: number
+    readonly digits: number
+  } | null
   readonly choices: readonly string[] | null
   readonly value: number | string
   /** The clause that a move rewrites. */

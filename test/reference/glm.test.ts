@@ -149,6 +149,15 @@ describe("figures as printed", () => {
       expectPrinted(scaled.dispersion.value, `${printed["dispersion_pearson"]}`, units)
       compared++
     }
+    if (printed["mean"] !== undefined) {
+      expectPrinted(found.mu[0] as number, printed["mean"])
+      compared++
+    }
+    if (printed["shape_lambda"] !== undefined) {
+      const shaped = await fitted({ ...problem, dispersion: "likelihood" })
+      expectPrinted(1 / (shaped.dispersion.value as number), printed["shape_lambda"])
+      compared++
+    }
     if (printed["shape_ml"] !== undefined) {
       const shaped = await fitted({ ...problem, dispersion: "likelihood" })
       expectPrinted(1 / (shaped.dispersion.value as number), `${printed["shape_ml"]}`, units)

@@ -31,7 +31,7 @@ export type ReferenceFit = {
 
 export type ReferenceModel = {
   readonly id: string
-  readonly family: { readonly name: string }
+  readonly family: { readonly name: string; readonly k?: string; readonly p?: string }
   readonly link: { readonly name: string; readonly lambda?: string }
   readonly response: string
   readonly trials?: string
@@ -62,11 +62,22 @@ export type ReferenceSet = {
 export const referenceSets = (file: string): readonly ReferenceSet[] =>
   (JSON.parse(readFileSync(new URL(file, import.meta.url), "utf8")) as { readonly datasets: readonly ReferenceSet[] }).datasets
 
-const families: Readonly<Record<string, string>> = { gaussian: "normal", binomial: "binomial", poisson: "poisson", gamma: "gamma" }
+const families: Readonly<Record<string, string>> = {
+  gaussian: "normal",
+  binomial: "binomial",
+  poisson: "poisson",
+  gamma: "gamma",
+  "inverse-gaussian": "inverse_gaussian",
+  "negative-binomial": "negative_binomial",
+  tweedie: "tweedie",
+}
 const links: Readonly<Record<string, string>> = {
   identity: "identity",
   log: "log",
   inverse: "reciprocal",
+  "inverse-square": "reciprocal_square",
+  "log-complement": "log_complement",
+  "aranda-ordaz": "aranda_ordaz",
   sqrt: "square_root",
   power: "power",
   logit: "logit",
@@ -83,8 +94,11 @@ export function problemOf(whole: ReferenceSet, model: ReferenceModel): Problem |
   const set: ReferenceSet = { ...whole, data }
   const family = families[model.family.name]
   const name = links[model.link.name]
-  if (family === undefined || name === undefined) return null
-  const link: LinkSpec = { name, parameters: name === "power" ? [Number(model.link.lambda)] : [] }
+  if (family === undefined || name === undefined || model.family.k === "ml") return null
+  const link: LinkSpec = { name, parameters: model.link.lambda === undefined ? [] : [Number(model.link.lambda)] }
+  const { k, p } = model.family
+  // With k by maximum likelihood the search starts anywhere.
+  const parameter = k === "ml" ? 1 : (k ?? p)
   const rows = set.data[model.response]?.length ?? 0
   const column = (of: string): Float64Array => Float64Array.from(set.data[of] ?? [], Number)
   const trials = model.trials === undefined ? (family === "binomial" ? new Float64Array(rows).fill(1) : null) : column(model.trials)
@@ -104,7 +118,11 @@ export function problemOf(whole: ReferenceSet, model: ReferenceModel): Problem |
     terms.push({ says, pieces: [{ variable: says, as: "itself", setting: null }] })
   }
   return {
-    family: { name: family, parameters: [] },
+    family: {
+      name: family,
+      parameters: parameter === undefined ? [] : [Number(parameter)],
+      ...(k === "ml" ? { estimated: [0] } : {}),
+    },
     link,
     intercept,
     terms,
@@ -121,7 +139,11 @@ export function problemOf(whole: ReferenceSet, model: ReferenceModel): Problem |
     exposure: null,
     cluster: null,
     dispersion:
-      model.dispersion !== undefined ? Number(model.dispersion) : family === "binomial" || family === "poisson" ? "one" : "pearson",
+      model.dispersion !== undefined
+        ? Number(model.dispersion)
+        : ["binomial", "poisson", "negative_binomial"].includes(family)
+          ? "one"
+          : "pearson",
     standardErrors: "expected",
     confidence: 0.95,
   }
