@@ -50,6 +50,10 @@ export default defineConfig({
                   "@lezer/highlight",
                   "@lezer/lr",
                   "@noble/hashes/sha2.js",
+                  "@stdlib/math-base-special-digamma",
+                  "@stdlib/math-base-special-erfcx",
+                  "@stdlib/math-base-special-gammaln",
+                  "@stdlib/math-base-special-trigamma",
                   "canonicalize",
                   "marked",
                   "valibot",
@@ -58,6 +62,7 @@ export default defineConfig({
               test: {
                 name: "browser",
                 setupFiles: ["test/browser/setup.ts"],
+                globalSetup: ["test/browser/same-bits-in-node.ts"],
                 include: ["test/browser/**/*.test.ts"],
                 browser: {
                   enabled: true,
