@@ -34,7 +34,7 @@ const family = (
   link: string,
   says: string,
   parameters: readonly string[] = [],
-): FamilyWords => ({ name, says, parameters, mean, variance, link, later: !["normal", "binomial", "poisson", "gamma"].includes(name) })
+): FamilyWords => ({ name, says, parameters, mean, variance, link, later: name === "quasi_likelihood" })
 
 /** By name, in the order of the language. */
 export const families: Readonly<Record<string, FamilyWords>> = byName([
@@ -48,15 +48,13 @@ export const families: Readonly<Record<string, FamilyWords>> = byName([
   family("quasi_likelihood", "any", "as said", "identity", "a variance said as an expression of mu, without a law", ["variance"]),
 ])
 
-const availableLinks = ["identity", "log", "reciprocal", "square_root", "power", "logit", "probit", "cauchit", "cloglog", "loglog"]
-
 const link = (name: string, mean: LinkWords["mean"], formula: string, says: string, parameters: readonly string[] = []): LinkWords => ({
   name,
   says,
   parameters,
   formula,
   mean,
-  later: !availableLinks.includes(name),
+  later: false,
 })
 
 /** By name, in the order of the language. */
@@ -109,6 +107,17 @@ export function linkFormula(says: string): string {
     const text = number.replace("-", "−")
     return formula.replace(new RegExp(`(?<![\\p{L}])${parameter}(?![\\p{L}])`, "gu"), text)
   }, words.formula)
+}
+
+/** What the parameters of a family or a link can be, in words and as a question; any number where nothing is said. */
+export const parameterRange = (name: string): { readonly says: string; readonly holds: (value: number) => boolean } =>
+  (Object.hasOwn(parameterRanges, name) ? parameterRanges[name] : undefined) ?? { says: "a finite number", holds: Number.isFinite }
+
+const parameterRanges: Readonly<Record<string, { readonly says: string; readonly holds: (value: number) => boolean }>> = {
+  negative_binomial: { says: "a number above 0", holds: (k) => k > 0 },
+  tweedie: { says: "a number between 1 and 2", holds: (p) => p > 1 && p < 2 },
+  aranda_ordaz: { says: "a number from −1 on", holds: (a) => a >= -1 },
+  symmetric_power: { says: "a number from 0 to 1", holds: (a) => a >= 0 && a <= 1 },
 }
 
 function byName<W extends { readonly name: string }>(words: readonly W[]): Readonly<Record<string, W>> {

@@ -15,12 +15,12 @@ export const dispersionRule = (problem: Problem): DispersionRule => {
 }
 
 /**
- * The maximum-likelihood φ at given means: D/n for the normal; for the gamma the root ν = 1/φ of
+ * The maximum-likelihood φ at given means: D/n for the normal and the inverse Gaussian; for the gamma the root ν = 1/φ of
  *     Σ R·w·[log(νw) + 1 + log(y/μ) − y/μ − ψ(νw)] = 0,   that is   Σ R·w·[log(νw) − ψ(νw)] = D/2.
  * By Newton's method in log ν; McCullagh & Nelder (1989), §8.3.6. 0 for a perfect fit; 1 for families whose φ is one.
  */
 export function dispersionByLikelihood(problem: Problem, deviance: number, n: number): number {
-  if (problem.family.name === "normal") return deviance / n
+  if (problem.family.name === "normal" || problem.family.name === "inverse_gaussian") return deviance / n
   if (problem.family.name !== "gamma") return 1
   if (!(deviance > 0)) return 0
   const { precision, repeat, rows } = problem

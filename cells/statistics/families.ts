@@ -3,19 +3,36 @@
 
 import { log, log1p } from "./elementary.ts"
 import type { Family } from "./family.ts"
+import { negativeBinomial } from "./negative-binomial.ts"
 import type { FamilySpec } from "./problem.ts"
 import { devianceTerm, halfLogTwoPi, stirlingError } from "./special.ts"
+import { tweedie } from "./tweedie.ts"
 
 /** Names of all families, in the order in which they are offered. */
-export const familyNames = ["normal", "binomial", "poisson", "gamma"] as const
+export const familyNames = ["normal", "binomial", "poisson", "gamma", "inverse_gaussian", "negative_binomial", "tweedie"] as const
 export type FamilyName = (typeof familyNames)[number]
 
 export const isFamilyName = (name: string): name is FamilyName => (familyNames as readonly string[]).includes(name)
 
+/** How many parameters a family has. */
+export const familyParameters: Readonly<Record<FamilyName, number>> = {
+  normal: 0,
+  binomial: 0,
+  poisson: 0,
+  gamma: 0,
+  inverse_gaussian: 0,
+  negative_binomial: 1,
+  tweedie: 1,
+}
+
 /** @throws RangeError for a name that is none: what a statement says is checked before */
 export const familyOf = (spec: FamilySpec): Family => {
-  if (!isFamilyName(spec.name) || spec.parameters.length > 0) throw new RangeError(`There is no family ${spec.name}.`)
-  return families[spec.name]
+  const { name, parameters } = spec
+  if (!isFamilyName(name) || parameters.length !== familyParameters[name])
+    throw new RangeError(`There is no family ${name} with ${parameters.length} parameters.`)
+  if (name === "negative_binomial") return negativeBinomial(parameters[0] as number)
+  if (name === "tweedie") return tweedie(parameters[0] as number)
+  return families[name]
 }
 
 /** V = 1, u = (y − μ)². */
@@ -86,4 +103,23 @@ const gamma: Family = {
     -devianceTerm(mu, y) / mu / phi - halfLogTwoPi - 0.5 * log(phi) - log(y) - stirlingError(1 / phi),
 }
 
-const families: Readonly<Record<FamilyName, Family>> = { normal, binomial, poisson, gamma }
+/** V = μ³, u = (y − μ)²/(μ²y). McCullagh & Nelder (1989), §2.2. */
+const inverseGaussian: Family = {
+  name: "inverse_gaussian",
+  range: { low: 0, high: Infinity },
+  discrete: false,
+  dispersion: "pearson",
+  variance: (mu) => mu * mu * mu,
+  varianceSlope: (mu) => 3 * mu * mu,
+  unitDeviance: (y, mu) => (mu === Infinity ? 1 : ((y - mu) / mu) * ((y - mu) / mu)) / y,
+  logDensity: (y, mu, _rest, _trials, phi) =>
+    -halfLogTwoPi - 0.5 * log(phi) - 1.5 * log(y) - (((y - mu) / mu) * ((y - mu) / mu)) / y / (2 * phi),
+}
+
+const families: Readonly<Record<Exclude<FamilyName, "negative_binomial" | "tweedie">, Family>> = {
+  normal,
+  binomial,
+  poisson,
+  gamma,
+  inverse_gaussian: inverseGaussian,
+}

@@ -17,6 +17,7 @@ import { directionScore, spansConstant } from "./score-direction.ts"
 import type { Equations, Point } from "./scoring.ts"
 import { singularValues } from "./singular-values.ts"
 import { chiSquareUpperTail, fUpperTail, normalQuantile, normalUpperTail, tUpperQuantile, tUpperTail } from "./special.ts"
+import { tweedieAtBest } from "./tweedie-fit.ts"
 
 export type Findings = {
   /** The search over all rows. */
@@ -53,7 +54,10 @@ export async function findings(given: Findings): Promise<Fit> {
   const deviance = perfect ? 0 : (point?.deviance ?? 0) + moved.deviance
   const pearson = perfect ? 0 : (point?.pearson ?? 0) + moved.pearson
 
-  const ml = dispersionByLikelihood(problem, deviance, n)
+  const ml =
+    problem.family.name === "tweedie" && deviance > 0
+      ? (await tweedieAtBest(problem, means.mu, deviance / Math.max(1, n), climb.equations.pace)).phi
+      : dispersionByLikelihood(problem, deviance, n)
   const estimate = problem.dispersion === "likelihood" ? ml : df > 0 ? (problem.dispersion === "deviance" ? deviance : pearson) / df : null
   const phi = rule.given ?? estimate
 
@@ -66,7 +70,7 @@ export async function findings(given: Findings): Promise<Fit> {
   const covariance = hasErrors ? await covarianceOf(rest, factor, phi, n, clusters) : null
   const { coefficients, lower } = coefficientsOf(given, rest, point, covariance, lawDf)
 
-  const likely = perfect && rule.given === null ? null : point ? logLikelihoodOf(rest as Climb, point, rule.given ?? ml) : 0
+  const likely = perfect && rule.given === null ? null : point ? await logLikelihoodOf(rest as Climb, point, rule.given ?? ml) : 0
   const logLikelihood =
     likely === null || limit.type !== "infinite" ? likely : likely + movedLikelihood(climb, limit.rows, means.mu, rule.given ?? ml)
   const counted = rank + (family.discrete || rule.given !== null ? 0 : 1)
@@ -412,9 +416,10 @@ function frameOf(equations: Equations, point: Point, covariance: Float64Array | 
 // Criteria -------------------------------------------------------------------------------------------------------------------------------
 
 /** Σ R·w·log f where discrete, Σ R·log f(…, φ/w) where not; null where a density is infinite. */
-function logLikelihoodOf(climb: Climb, point: Point, phi: number): number | null {
+async function logLikelihoodOf(climb: Climb, point: Point, phi: number): Promise<number | null> {
   const { family, link, y, rows } = climb.responses
-  const { repeat, precision, trials } = climb.problem
+  const { problem } = climb
+  const { repeat, precision, trials } = problem
   const { eta, mu } = point.state
   const density = family.name === "gamma" ? gammaDensity(family) : family.logDensity
   let total = 0
@@ -429,6 +434,7 @@ function logLikelihoodOf(climb: Climb, point: Point, phi: number): number | null
     if (i % 128 === 127) {
       total += part
       part = 0
+      if (climb.equations.pace.due(128 * (problem.family.name === "tweedie" ? 15_000 : 60))) await climb.equations.pace.rest()
     }
   }
   total += part

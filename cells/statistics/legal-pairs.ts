@@ -1,15 +1,22 @@
 // Which link goes with which family: a link is legal where it is defined for every mean the family can have; the normal family takes all,
 // and its means are then those of the link. A legal link may still reach impossible means, which is the fit's business.
 
+import { powerOf } from "./concavity.ts"
 import { familyNames, isFamilyName } from "./families.ts"
 import { isLinkName, type LinkName, linkNames } from "./links.ts"
 import type { FamilySpec, LinkSpec } from "./problem.ts"
 
 /** Whether the link is defined for every mean the family can have. Conventions: README.md, links. */
 export const isLegal = (family: FamilySpec, link: LinkSpec): boolean => {
-  if (!isFamilyName(family.name) || !isLinkName(link.name)) return false
+  if (!isFamilyName(family.name)) return false
+  if (link.own !== undefined) return isLegalOn(family.name, link.own.range)
+  if (!isLinkName(link.name)) return false
   return family.name === "normal" || family.name === "binomial" || !ontoShares.has(link.name)
 }
+
+/** A link of one's own: for shares and for normal means it may leave some out, which the fit then cannot have; elsewhere it takes all. */
+export const isLegalOn = (family: string, [low, high]: readonly [number, number]): boolean =>
+  family === "normal" || (family === "binomial" ? low < 1 && high > 0 : low <= 0 && high === Infinity)
 
 /** The names of the legal links, the canonical one first. */
 export const legalLinks = (family: FamilySpec): readonly LinkName[] => {
@@ -21,19 +28,29 @@ export const legalLinks = (family: FamilySpec): readonly LinkName[] => {
 /** The names of the families for which the link is legal. */
 export const legalFamilies = (link: LinkSpec): readonly string[] => familyNames.filter((name) => isLegal({ name, parameters: [] }, link))
 
-/** The canonical link: that under which Xβ is the natural parameter. McCullagh & Nelder (1989), §2.2.4. */
+/**
+ * The link a family takes where none is said: the canonical one, under which Xβ is the natural parameter (McCullagh & Nelder 1989, §2.2.4), and log
+ * for negative binomial and Tweedie.
+ */
 export const canonicalLink = (family: FamilySpec): LinkSpec => {
   if (!isFamilyName(family.name)) throw new RangeError(`There is no family ${family.name}.`)
   return { name: canonicalLinks[family.name], parameters: [] }
 }
 
-/** Whether the link is canonical, up to a linear change: `power(−1)` is the reciprocal. */
-export const isCanonical = (family: FamilySpec, link: LinkSpec): boolean => canonicalLink(family).name === plainLink(link).name
+/** Whether the link is canonical, up to a linear change: `power(−1)` is the reciprocal, and so is `box_cox(−1)`. */
+export const isCanonical = (family: FamilySpec, link: LinkSpec): boolean => {
+  if (link.own !== undefined) return link.own.canonical === family.name
+  if (family.name === "negative_binomial") return false
+  if (family.name === "tweedie") return powerOf(link) === 1 - (family.parameters[0] ?? Number.NaN)
+  return canonicalLink(family).name === plainLink(link).name
+}
 
 /** A power that has a name of its own, by that name. */
 const plainLink = (link: LinkSpec): LinkSpec => {
-  if (link.name !== "power") return link
-  const name = { "-1": "reciprocal", "0": "log", "0.5": "square_root", "1": "identity" }[String(link.parameters[0])]
+  if (link.name !== "power" && link.name !== "box_cox") return link
+  const name = { "-2": "reciprocal_square", "-1": "reciprocal", "0": "log", "0.5": "square_root", "1": "identity" }[
+    String(link.parameters[0])
+  ]
   return name === undefined ? link : { name, parameters: [] }
 }
 
@@ -42,7 +59,20 @@ const canonicalLinks: Readonly<Record<(typeof familyNames)[number], LinkName>> =
   binomial: "logit",
   poisson: "log",
   gamma: "reciprocal",
+  inverse_gaussian: "reciprocal_square",
+  negative_binomial: "log",
+  tweedie: "log",
 }
 
 /** Links from the open interval (0, 1): counts and amounts can have means above 1. */
-const ontoShares: ReadonlySet<string> = new Set(["logit", "probit", "cauchit", "cloglog", "loglog"])
+const ontoShares: ReadonlySet<string> = new Set([
+  "logit",
+  "probit",
+  "cauchit",
+  "cloglog",
+  "loglog",
+  "log_complement",
+  "aranda_ordaz",
+  "symmetric_power",
+  "stukel",
+])

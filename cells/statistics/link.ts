@@ -19,4 +19,9 @@ export interface Link {
   slope(eta: number): number
   /** d²μ/dη². */
   curvature(eta: number): number
+  /**
+   * How the mean moves with the q parameters of the link at a fixed η: ∂μ/∂θ, then ∂²μ/∂η∂θ, then ∂²μ/∂θ∂θ' as a lower triangle by rows.
+   * The parameter of symmetric_power is there a². Left out by links without parameters.
+   */
+  bend?(eta: number, out: Float64Array): void
 }

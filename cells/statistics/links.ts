@@ -3,6 +3,8 @@
 
 import { atan, exp, expm1, log, log1p, pow, tan } from "./elementary.ts"
 import type { Link, Range } from "./link.ts"
+import { ownLink } from "./own-link.ts"
+import { arandaOrdaz, boxCox, powerBend, stukel, symmetricPower } from "./parametric-links.ts"
 import type { LinkSpec } from "./problem.ts"
 import { normalCdf, normalDensity, normalQuantile, normalUpperTail } from "./special.ts"
 
@@ -11,13 +13,19 @@ export const linkNames = {
   identity: [],
   log: [],
   reciprocal: [],
+  reciprocal_square: [],
   square_root: [],
   power: ["a"],
+  box_cox: ["a"],
   logit: [],
   probit: [],
   cauchit: [],
   cloglog: [],
   loglog: [],
+  log_complement: [],
+  aranda_ordaz: ["a"],
+  symmetric_power: ["a"],
+  stukel: ["a", "b"],
 } as const satisfies Readonly<Record<string, readonly string[]>>
 
 export type LinkName = keyof typeof linkNames
@@ -31,6 +39,7 @@ export const isLinkName = (name: string): name is LinkName => Object.hasOwn(link
  * @throws RangeError for a name or parameters that are none: what a statement says is checked before
  */
 export const linkOf = (spec: LinkSpec, side: 1 | -1 = 1): Link => {
+  if (spec.own !== undefined) return ownLink(spec.own, spec.name)
   if (!isLinkName(spec.name) || spec.parameters.length !== linkNames[spec.name].length)
     throw new RangeError(`There is no link ${spec.name} with ${spec.parameters.length} parameters.`)
   switch (spec.name) {
@@ -40,10 +49,14 @@ export const linkOf = (spec: LinkSpec, side: 1 | -1 = 1): Link => {
       return logarithm
     case "reciprocal":
       return side === 1 ? reciprocal : reciprocalBelow
+    case "reciprocal_square":
+      return reciprocalSquare
     case "square_root":
       return squareRoot
     case "power":
       return powerLink(spec.parameters[0] as number)
+    case "box_cox":
+      return boxCox(spec.parameters[0] as number)
     case "logit":
       return logit
     case "probit":
@@ -54,6 +67,14 @@ export const linkOf = (spec: LinkSpec, side: 1 | -1 = 1): Link => {
       return cloglog
     case "loglog":
       return loglog
+    case "log_complement":
+      return logComplement
+    case "aranda_ordaz":
+      return arandaOrdaz(spec.parameters[0] as number)
+    case "symmetric_power":
+      return symmetricPower(spec.parameters[0] as number)
+    case "stukel":
+      return stukel(spec.parameters[0] as number, spec.parameters[1] as number)
   }
 }
 
@@ -106,6 +127,18 @@ const reciprocalBelow: Link = {
   eta: (mu) => (mu === 0 ? -Infinity : 1 / mu),
 }
 
+/** η = 1/μ², decreasing. McCullagh & Nelder (1989), §2.2.4: canonical for the inverse Gaussian. */
+const reciprocalSquare: Link = {
+  name: "reciprocal_square",
+  range: positive,
+  reach: positive,
+  eta: (mu) => 1 / mu / mu,
+  mean: (eta) => 1 / Math.sqrt(eta),
+  complement: null,
+  slope: (eta) => -0.5 / (eta * Math.sqrt(eta)),
+  curvature: (eta) => 0.75 / (eta * eta * Math.sqrt(eta)),
+}
+
 /** η = √μ. */
 const squareRoot: Link = {
   name: "square_root",
@@ -139,6 +172,7 @@ const powerLink = (a: number): Link => {
     complement: null,
     slope,
     curvature: (eta) => (slope(eta) / eta) * (inverse - 1),
+    bend: powerBend(a),
   }
 }
 
@@ -233,4 +267,16 @@ const loglog: Link = {
   complement: (eta) => -expm1(-exp(-eta)),
   slope: (eta) => gumbelDensity(-eta),
   curvature: (eta) => -cloglog.curvature(-eta),
+}
+
+/** η = ln(1 − μ), decreasing, η < 0: effects multiply the chance of none. Wacholder (1986), American Journal of Epidemiology 123, 174-184. */
+const logComplement: Link = {
+  name: "log_complement",
+  range: unit,
+  reach: negative,
+  eta: (mu) => log1p(-mu),
+  mean: (eta) => -expm1(eta),
+  complement: exp,
+  slope: (eta) => -exp(eta),
+  curvature: (eta) => -exp(eta),
 }

@@ -1,9 +1,20 @@
 // A problem: everything a fit needs, as numbers. All columns have the same length and hold the rows used, no missing value among them.
 // Symbols are those of the README: y response, m trials, R repeat, w precision, o offset, E exposure.
 
-/** Families and links by name, with their parameters in order. */
-export type FamilySpec = { readonly name: string; readonly parameters: readonly number[] }
-export type LinkSpec = { readonly name: string; readonly parameters: readonly number[] }
+import type { OwnLink } from "./own-link.ts"
+
+/**
+ * Families and links by name, with their parameters in order. Of a parameter that is estimated the number here is where its search starts, and in
+ * the problem of a finding where it ended; which those are stands beside, by their places.
+ */
+export type FamilySpec = { readonly name: string; readonly parameters: readonly number[]; readonly estimated?: readonly number[] }
+/** A link of the user's own carries itself, and has no parameters. */
+export type LinkSpec = {
+  readonly name: string
+  readonly parameters: readonly number[]
+  readonly estimated?: readonly number[]
+  readonly own?: OwnLink
+}
 
 export type Variable =
   | { readonly type: "number"; readonly values: Float64Array }

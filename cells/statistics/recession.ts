@@ -15,11 +15,12 @@ type Recession = {
 
 /** The mean reached as η grows without limit in either direction, where that mean is 0 or 1; null where it is neither. */
 export function endsOf({ link }: Pick<Responses, "link">): { readonly plus: 0 | 1 | null; readonly minus: 0 | 1 | null } {
-  if (ontoShares.has(link.name)) return { plus: 1, minus: 0 }
-  if (link.name === "log" || link.name === "power(0)") return { plus: null, minus: 0 }
-  // Reciprocals and negative powers: the mean vanishes as η grows.
-  const vanishes = link.reach.low === 0 && link.slope(1) < 0
-  return { plus: vanishes ? 0 : null, minus: null }
+  const { range, reach } = link
+  const end = (eta: number): 0 | 1 | null => {
+    const mu = link.mean(eta)
+    return mu === 0 && range.low === 0 ? 0 : mu === 1 && range.high === 1 ? 1 : null
+  }
+  return { plus: reach.high === Infinity ? end(Infinity) : null, minus: reach.low === -Infinity ? end(-Infinity) : null }
 }
 
 /** Whether any direction can lead to infinity under this family and link: a gamma has no response that agrees with an end. */
@@ -113,5 +114,3 @@ export function directionOf(equations: Equations, gamma: Float64Array): Float64A
 
 const largestOf = (x: Float64Array, a: Float64Array): number =>
   x.reduce((most, v, i) => ((a[i] as number) > 0 ? Math.max(most, Math.abs(v)) : most), 0)
-
-const ontoShares: ReadonlySet<string> = new Set(["logit", "probit", "cauchit", "cloglog", "loglog"])

@@ -140,9 +140,11 @@ export const stirlingError = (x: number): number => {
  *
  * Loader, C. (2000). Fast and accurate computation of binomial probabilities.
  */
-export const devianceTerm = (x: number, m: number): number => {
+export const devianceTerm = (x: number, m: number): number => devianceTermBy(x, m, x - m)
+
+/** The same where x − m is known better than the difference of the two. */
+export const devianceTermBy = (x: number, m: number, difference: number): number => {
   if (x === 0) return m
-  const difference = x - m
   const sum = x + m
   if (difference < 0.1 * sum && -difference < 0.1 * sum) {
     const v = difference / sum

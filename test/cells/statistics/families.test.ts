@@ -6,7 +6,8 @@ import { linkOf } from "../../../cells/statistics/links.ts"
 import densities from "../../reference/densities.json" with { type: "json" }
 import { relativeError } from "../../reference/exact.ts"
 
-const family = (name: string) => familyOf({ name, parameters: [] })
+const parameters: Readonly<Record<string, readonly number[]>> = { negative_binomial: [1.7], tweedie: [1.4] }
+const family = (name: string) => familyOf({ name, parameters: parameters[name] ?? [] })
 
 /** Digits of the density, and an absolute bound where it is near 0: what counts is the error of a sum. */
 const densityAgrees = (value: number, exact: string): boolean =>
@@ -44,6 +45,9 @@ const points: Readonly<Record<string, { readonly y: readonly number[]; readonly 
   binomial: { y: [0, 0.2, 0.5, 1], mu: [1e-6, 0.19, 0.5, 0.93], trials: 10 },
   poisson: { y: [0, 1, 7, 300], mu: [1e-6, 0.9, 6.5, 310], trials: 1 },
   gamma: { y: [0.01, 1, 7.5], mu: [0.02, 0.9, 40], trials: 1 },
+  inverse_gaussian: { y: [0.01, 1, 7.5], mu: [0.02, 0.9, 40], trials: 1 },
+  negative_binomial: { y: [0, 1, 7, 300], mu: [1e-6, 0.9, 6.5, 310], trials: 1 },
+  tweedie: { y: [0, 0.01, 1, 7.5], mu: [0.02, 0.9, 40], trials: 1 },
 }
 
 describe("families", () => {

@@ -12,18 +12,31 @@ describe("legal pairs", () => {
   })
 
   it("lets means above 1 have the links that are defined there, the canonical one first", () => {
-    expect(legalLinks(spec("poisson"))).toEqual(["log", "identity", "reciprocal", "square_root", "power"])
-    expect(legalLinks(spec("gamma"))).toEqual(["reciprocal", "identity", "log", "square_root", "power"])
+    expect(legalLinks(spec("poisson"))).toEqual(["log", "identity", "reciprocal", "reciprocal_square", "square_root", "power", "box_cox"])
+    expect(legalLinks(spec("inverse_gaussian"))[0]).toBe("reciprocal_square")
+    expect(new Set(legalLinks(spec("gamma")))).toEqual(new Set(legalLinks(spec("poisson"))))
     expect(isLegal(spec("gamma"), spec("probit"))).toBe(false)
     expect(legalFamilies(spec("cloglog"))).toEqual(["normal", "binomial"])
   })
 
   it("knows no family and no link that is not there", () => {
-    expect([isLegal(spec("tweedie"), spec("log")), isLegal(spec("normal"), spec("stukel"))]).toEqual([false, false])
+    expect([isLegal(spec("cauchy"), spec("log")), isLegal(spec("normal"), spec("arcsine"))]).toEqual([false, false])
   })
 
   it("names each family's canonical link, also where a power is that link", () => {
-    expect(familyNames.map((name) => canonicalLink(spec(name)).name)).toEqual(["identity", "logit", "log", "reciprocal"])
+    expect(familyNames.map((name) => canonicalLink(spec(name)).name)).toEqual([
+      "identity",
+      "logit",
+      "log",
+      "reciprocal",
+      "reciprocal_square",
+      "log",
+      "log",
+    ])
+    expect(isCanonical(spec("tweedie", 1.5), spec("power", -0.5))).toBe(true)
+    expect(isCanonical(spec("tweedie", 1.5), spec("log"))).toBe(false)
+    expect(isCanonical(spec("negative_binomial", 3), spec("log"))).toBe(false)
+    expect(isCanonical(spec("inverse_gaussian"), spec("box_cox", -2))).toBe(true)
     expect(isCanonical(spec("gamma"), spec("power", -1))).toBe(true)
     expect(isCanonical(spec("gamma"), spec("power", -1.01))).toBe(false)
     expect(isCanonical(spec("poisson"), spec("power", 0))).toBe(true)

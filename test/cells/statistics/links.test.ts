@@ -6,9 +6,26 @@ import { isLinkName, linkNames, linkOf } from "../../../cells/statistics/links.t
 import { relativeError } from "../../reference/exact.ts"
 import reference from "../../reference/special-functions.json" with { type: "json" }
 
-const plain = Object.keys(linkNames).filter((name) => name !== "power")
+const plain = Object.keys(linkNames).filter((name) => linkNames[name as keyof typeof linkNames].length === 0)
 const powers = [-2, -1, -0.5, 0, 0.25, 0.5, 1, 1.7, 3]
+/** Parameters at, near and away from where a formula is a limit. */
+const parametric: readonly (readonly [string, readonly number[]])[] = [
+  ...[-2, -0.5, -1e-9, 0, 1e-12, 1e-5, 0.4, 1, 2.5].map((a) => ["box_cox", [a]] as const),
+  ...[-1, -0.6, -0.1, -1e-9, 0, 1e-12, 1e-5, 0.3, 1, 2, 8].map((a) => ["aranda_ordaz", [a]] as const),
+  ...[0, 1e-12, 1e-5, 0.1, 0.5, 0.9, 1].map((a) => ["symmetric_power", [a]] as const),
+  ...[
+    [0, 0],
+    [0.3, 0.1],
+    [-0.4, 0.2],
+    [0.25, -0.5],
+    [-1, -0.3],
+    [1e-12, -1e-12],
+    [1e-5, -1e-5],
+  ].map((ab) => ["stukel", ab] as const),
+]
+const parametricLinks = parametric.map(([name, parameters]) => [`${name}(${parameters})`, linkOf({ name, parameters })] as const)
 const links: readonly (readonly [string, Link])[] = [
+  ...parametricLinks,
   ...plain.map((name) => [name, linkOf({ name, parameters: [] })] as const),
   ...powers.map((a) => [`power(${a})`, linkOf({ name: "power", parameters: [a] })] as const),
   ["reciprocal of negative means", linkOf({ name: "reciprocal", parameters: [] }, -1)],
@@ -18,7 +35,12 @@ const links: readonly (readonly [string, Link])[] = [
 const predictors = (link: Link): readonly number[] => {
   const sizes = [1e-3, 0.02, 0.3, 0.9, 1.0, 1.7, 3, 6, 20, 37]
   if (link.reach.low === -Infinity && link.reach.high === Infinity) return [...sizes.map((x) => -x), ...sizes]
-  return link.reach.low === 0 ? sizes : sizes.map((x) => -x)
+  const { low, high } = link.reach
+  if (low === 0 && high === Infinity) return sizes
+  if (low === -Infinity && high === 0) return sizes.map((x) => -x)
+  // From just inside one end to just inside the other, or far out where there is none.
+  const [from, to] = [Math.max(low, Math.min(high, 0) - 20), Math.min(high, Math.max(low, 0) + 20)]
+  return [0.02, 0.1, 0.3, 0.45, 0.53, 0.6, 0.8, 0.95, 0.99].map((share) => from + share * (to - from))
 }
 
 const obeysItsLaws = (link: Link): void => {
@@ -33,11 +55,17 @@ const obeysItsLaws = (link: Link): void => {
     // mean(eta(mu)) = mu wherever μ can say where it is: from the upper tail of a share it cannot, and 1 − μ says it instead.
     if (mu !== 0 && (mu < 0.9 || link.complement === null)) {
       expect(Math.abs(link.mean(link.eta(mu)) / mu - 1)).toBeLessThan(1e-12)
-      if (link.complement !== null && mu > 1e-16) expect(Math.abs(link.eta(mu) - eta)).toBeLessThan(1e-12 * Math.max(1, Math.abs(eta)))
+      // Towards an end that is a number, the distance to it is what the mean still says.
+      if (link.complement !== null && mu > 1e-16 && link.reach.high - link.reach.low === Infinity)
+        expect(Math.abs(link.eta(mu) - eta)).toBeLessThan(2e-12 * Math.max(1, Math.abs(eta)))
     }
     // Slope and curvature against difference quotients, of the mean where it is small and of the complement where that is.
     // The step is small beside the distance over which the slope changes.
-    const h = 1e-3 / Math.max(1, Math.abs(link.curvature(eta) / link.slope(eta)), link.complement === null ? 1 / Math.abs(eta) : 0)
+    // Neither past an end nor, where a link is made of two halves, past 0.
+    const { low, high } = link.reach
+    const room = Math.min(eta - low, high - eta, link.name.startsWith("stukel") ? Math.abs(eta) / 2 : Infinity)
+    const steep = Math.max(1, Math.abs(link.curvature(eta) / link.slope(eta)), link.complement === null ? 1 / Math.abs(eta) : 0)
+    const h = Math.min(1e-3 / steep, 1e-2 * room)
     const upper = link.complement !== null && mu > 0.5
     const value = (x: number): number => (upper ? -(link.complement as (x: number) => number)(x) : link.mean(x))
     const quotient = (value(eta - 2 * h) - 8 * value(eta - h) + 8 * value(eta + h) - value(eta + 2 * h)) / (12 * h)
@@ -67,6 +95,7 @@ describe("links", () => {
     ["logit", 1e-300],
     ["probit", 1e-300],
     ["cauchit", 1e-300],
+    ["log_complement", 1e-300],
     ["cloglog", 1e-300],
     ["loglog", 1e-300],
   ])("%s gives back a mean of %s", (name, mu) => {
@@ -111,8 +140,68 @@ describe("links", () => {
     expect([linkOf(spec, -1).eta(0), linkOf(spec, 1).eta(0)]).toEqual([-Infinity, Infinity])
   })
 
+  it.each(parametric)("%s%s moves with its parameters as it says", (name, parameters) => {
+    const q = parameters.length
+    const bend = (of: readonly number[], eta: number): Float64Array => {
+      const out = new Float64Array(2 * q + 3)
+      linkOf({ name, parameters: of }).bend?.(eta, out)
+      return out
+    }
+    const link = linkOf({ name, parameters })
+    const moved = (j: number, by: number): readonly number[] =>
+      // The square of its parameter is what symmetric_power moves with.
+      name === "symmetric_power"
+        ? [Math.sqrt((parameters[0] as number) ** 2 + by)]
+        : parameters.map((value, k) => (k === j ? value + by : value))
+    for (const eta of [-1.3, -0.4, 0.2, 0.7]) {
+      if (!(eta > 0.9 * link.reach.low && eta < 0.9 * link.reach.high)) continue
+      const own = bend(parameters, eta)
+      parameters.forEach((value, j) => {
+        // One-sided where the parameter ends or a second slope jumps.
+        const sided = (name === "symmetric_power" && value < 0.1) || (name === "aranda_ordaz" && value === -1) || name === "stukel"
+        const side = name === "stukel" && value <= 0 ? -1 : 1
+        const h = 1e-3 * side
+        const slope = (f: (of: readonly number[]) => number): number => {
+          const at = (k: number): number => f(moved(j, k * h))
+          return sided
+            ? (-25 * at(0) + 48 * at(1) - 36 * at(2) + 16 * at(3) - 3 * at(4)) / (12 * h)
+            : (at(-2) - 8 * at(-1) + 8 * at(1) - at(2)) / (12 * h)
+        }
+        const expected = [
+          slope((of) => linkOf({ name, parameters: of }).mean(eta)),
+          slope((of) => linkOf({ name, parameters: of }).slope(eta)),
+          slope((of) => bend(of, eta)[j] as number),
+        ]
+        const said = [own[j], own[q + j], own[2 * q + (j * (j + 1)) / 2 + j]] as number[]
+        // Where a tiny parameter is moved past the place at which a second slope jumps, only the first two can be compared.
+        const compared = name === "stukel" && value !== 0 && Math.abs(value) < 1e-4 ? 2 : 3
+        for (let k = 0; k < compared; k++)
+          expect(Math.abs((said[k] as number) - (expected[k] as number)), `${k} at ${eta}`).toBeLessThan(
+            1e-7 * (Math.abs(expected[k] as number) + 0.01),
+          )
+      })
+    }
+  })
+
+  it.each([
+    ["box_cox", 0, "log", []],
+    ["box_cox", 1e-14, "log", []],
+    ["aranda_ordaz", 1, "logit", []],
+    ["aranda_ordaz", 0, "cloglog", []],
+    ["aranda_ordaz", -1e-14, "cloglog", []],
+    ["aranda_ordaz", -1, "log", []],
+    ["symmetric_power", 1e-9, "logit", []],
+    ["stukel", 0, "logit", [0]],
+  ] as const)("%s at %s is %s", (name, a, other, more) => {
+    const [link, like] = [linkOf({ name, parameters: [a, ...more] }), linkOf({ name: other, parameters: [] })]
+    for (const eta of [-9, -1.1, -0.2]) {
+      for (const f of ["mean", "slope", "curvature"] as const) expect(Math.abs(link[f](eta) / like[f](eta) - 1)).toBeLessThan(1e-12)
+      expect(Math.abs(link.eta(like.mean(eta)) - eta)).toBeLessThan(1e-12 * 9)
+    }
+  })
+
   it("says which names are links, and takes no other", () => {
-    expect([isLinkName("cloglog"), isLinkName("toString"), isLinkName("stukel")]).toEqual([true, false, false])
+    expect([isLinkName("cloglog"), isLinkName("toString"), isLinkName("arcsine")]).toEqual([true, false, false])
     expect(() => linkOf({ name: "power", parameters: [] })).toThrow(RangeError)
     expect(() => linkOf({ name: "logit", parameters: [1] })).toThrow(RangeError)
   })
