@@ -4,8 +4,9 @@ import type { AnyWords } from "../runtime/kind.ts"
 import { dataWords } from "./data/words.ts"
 import { scalesWords } from "./scales/words.ts"
 import { dialWords } from "./dial/words.ts"
+import { linkWords } from "./link/words.ts"
 import { modelWords } from "./model/words.ts"
 import { noteWords } from "./note/words.ts"
 import { valueWords } from "./value/words.ts"
 
-export const words: readonly AnyWords[] = [dataWords, modelWords, scalesWords, dialWords, valueWords, noteWords]
+export const words: readonly AnyWords[] = [dataWords, modelWords, linkWords, scalesWords, dialWords, valueWords, noteWords]

@@ -124,6 +124,9 @@ function plus(left: Expression, right: Expression): Expression {
   if (isNumber(right, 0)) return left
   const [a, b] = [signed(left), signed(right)]
   if (a !== null && b !== null) return integer(a + b, left)
+  // u − x and x are u.
+  if (left.type === "pair" && left.sign === "-" && left.right.type === "name" && right.type === "name" && left.right.name === right.name)
+    return left.left
   return right.type === "minus" ? less(left, right.of) : { type: "pair", sign: "+", left, right, at: left.at }
 }
 

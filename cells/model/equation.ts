@@ -13,7 +13,9 @@ export type Equation = { readonly formula: Formula; readonly text: string }
 
 export function equation(found: ModelFinding): Equation {
   const right = rightSide(found)
-  const text = `${linkFormula(found.link).replaceAll("μ", unitsOfMean(found) ? `(μ/${found.exposure?.name})` : "μ")} = ${right.text}`
+  // A link of the user's own is called by its name; its cell has the formula.
+  const own = found.problem.link.own === undefined ? linkFormula(found.link) : `${found.link}(μ)`
+  const text = `${own.replaceAll("μ", unitsOfMean(found) ? `(μ/${found.exposure?.name})` : "μ")} = ${right.text}`
   return { formula: row(leftSide(found), sign("="), right.formula), text }
 }
 
@@ -52,7 +54,7 @@ export function linkTree(link: LinkSpec, mean: Formula): Formula {
     case "loglog":
       return row(sign("−"), called("ln", row(sign("−"), called("ln", mean))))
     default:
-      return row(name("g"), { type: "bracket", of: mean })
+      return row(link.own === undefined ? name("g") : word(link.name), { type: "bracket", of: mean })
   }
 }
 

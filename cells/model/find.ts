@@ -15,12 +15,13 @@ import type { LinkSpec, Problem, Term, Variable } from "../statistics/problem.ts
 import type { Column } from "../table/column.ts"
 import * as say from "./notices.ts"
 import { offsetFinding, offsetOf } from "./offset.ts"
+import { ownLinkOf } from "./own-link.ts"
 import { fitNotices, remarks } from "./remarks.ts"
 import { labelOf, numbersOf, responseOf } from "./response.ts"
 import { type TableHere, tableOf } from "./table.ts"
 import { rowsUsed, weightFaults } from "./used-rows.ts"
 import { clusterCodes, keptRows, numbersAt, variableOf } from "./variables.ts"
-import { type CallSaid, columnsOf, type ModelSaid } from "./words.ts"
+import { columnsOf, isOwnName, type ModelSaid } from "./words.ts"
 
 type Inputs = ReadonlyMap<Name, Input>
 type Say = (notice: Notice) => void
@@ -39,7 +40,7 @@ export async function found(said: ModelSaid, inputs: Inputs, work: Work): Promis
   }
   const family = familySaid.name
   missingColumns(said, table, notice)
-  const link = linkOf(said.link, family, inputs, notice)
+  const link = linkOf(said, family, inputs, notice)
   const response = responseOf(responseSaid, family, table, notice)
   const terms = predictor.terms as readonly Term[]
   const predictors = predictorColumns(said, table, notice)
@@ -125,10 +126,15 @@ function missingColumns(said: ModelSaid, table: TableHere, notice: Say): void {
 type LinkHere = { readonly spec: LinkSpec; readonly says: string; readonly chosen: boolean }
 
 /** The link with numbers for its dials; null once a fault was said. */
-function linkOf(said: CallSaid | null, family: string, inputs: Inputs, notice: Say): LinkHere | null {
+function linkOf(model: ModelSaid, family: string, inputs: Inputs, notice: Say): LinkHere | null {
+  const said = model.link
   if (said === null) {
     const name = canonicalLink(family)
     return name === null ? null : { spec: { name, parameters: [] }, says: name, chosen: false }
+  }
+  if (isOwnName(said.name)) {
+    const spec = ownLinkOf(said, family, model, inputs, notice)
+    return spec === null ? null : { spec, says: said.name, chosen: true }
   }
   const parameters = said.parameters.map((bound) => parameterOf(bound, inputs, notice))
   if (parameters.includes(null)) return null

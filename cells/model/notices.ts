@@ -163,6 +163,42 @@ export const linkNotLegal = (link: string, family: string, legal: readonly strin
     legal[0] === undefined ? null : writes("link", legal[0]),
   )
 
+export const notALink = (name: Name, at: Place): Notice =>
+  fault("not-a-link", "link", at, `${name} is not a link.`, "Name a link of the language, or a cell that begins with the word link.")
+
+/** `constants` are those of the link that are to be estimated. */
+export const constantEstimateNotYet = (name: Name, constants: readonly Name[], at: Place): Notice =>
+  fault(
+    "not-available-yet",
+    "link",
+    at,
+    `Estimating ${list(constants)} of the link ${name} is not available yet.`,
+    `Give ${list(constants)} a number in ${name}, or the name of a dial.`,
+  )
+
+export const linkUndecided = (name: Name, properties: readonly string[], at: Place): Notice =>
+  notice(
+    "warning",
+    "link-undecided",
+    "link",
+    at,
+    `Whether ${name} is ${list(properties)} was not decided, and this fit rests on it.`,
+    `${name} says where the doubt is.`,
+  )
+
+/** Ends of the possible means that the link goes beyond; null where it does not. */
+export const linkReachesBeyond = (name: Name, family: string, low: number | null, high: number | null, at: Place): Notice => {
+  const ends = [...(low === null ? [] : [`below ${low}`]), ...(high === null ? [] : [`above ${high}`])]
+  return notice(
+    "remark",
+    "link-reaches-beyond",
+    "link",
+    at,
+    `${name} is a link, but some η give it means ${list(ends, "or")}, which ${family} cannot have.`,
+    "The fit keeps to the others; beyond the data a line may leave them.",
+  )
+}
+
 export const linkNotChosen = (link: string, family: string): Notice =>
   notice(
     "remark",

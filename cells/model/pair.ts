@@ -41,6 +41,8 @@ export function linkSaid(slot: CallSlot, family: CallSaid | null, statement: Sta
   const { call, at } = slot
   const known = Object.hasOwn(links, call.name) ? links[call.name] : undefined
   const legal = family === null ? Object.keys(links).filter((name) => links[name]?.later === false) : legalLinks(family.name)
+  // A link of the user's own is made by a cell; whether there is one of this name, the evaluation knows.
+  if (known === undefined && call.bounds === null && call.expression === null) return { name: call.name, parameters: [], at }
   if (known === undefined) {
     const near = nearest(call.name, Object.keys(links))
     notices.push(say.noSuchLink(call.name, near, legal, clauseOf(statement, "link"), { ...at, to: at.from + 1 }))

@@ -8,7 +8,7 @@ import type { Name } from "../../runtime/value.ts"
 import { type Expression, namesIn } from "../language/expression.ts"
 import { type Bound, type Filled, type Matched, readClauses } from "../language/form.ts"
 import { type Terms, variablesOf } from "../language/predictor.ts"
-import { canonicalLink } from "../language/vocabulary.ts"
+import { canonicalLink, links } from "../language/vocabulary.ts"
 import { rowsPart } from "../table/column.ts"
 import * as say from "./notices.ts"
 import { familySaid, linkSaid } from "./pair.ts"
@@ -136,6 +136,9 @@ export const modelWords: Words<ModelSaid> = {
     for (const bound of [...(said.family?.parameters ?? []), ...(said.link?.parameters ?? [])]) {
       if (bound.type === "cell") uses.push({ name: bound.name, parts: "all", either: false, at: bound.at })
     }
+    // A cell that is not there is for the evaluation to say: the name may be a misspelt link of the language.
+    if (said.link !== null && isOwnName(said.link.name) && said.link.name !== said.name)
+      uses.push({ name: said.link.name, parts: "all", either: true, at: said.link.at })
     return { defines: said.name, uses, files: [] }
   },
 }
@@ -151,6 +154,9 @@ function together(said: ModelSaid, notices: Notice[]): void {
   const linked = link?.name ?? canonicalLink(family.name)
   if (family.name === "binomial" && linked !== null && linked !== "cloglog") notices.push(say.exposureNotOfLink(linked, exposure.at))
 }
+
+/** Whether a link by this name is none of the language, and so that of a cell. */
+export const isOwnName = (name: string): boolean => !Object.hasOwn(links, name)
 
 /** Every column that a clause names outside of the offset, with the clause it stands in. */
 export function columnsOf(said: ModelSaid): readonly (Named & { readonly clause: string })[] {

@@ -11,6 +11,7 @@ import { familyOf, fit } from "../statistics/index.ts"
 import type { LinkSpec } from "../statistics/problem.ts"
 import type { CandidateFound, ScalesFinding } from "./finding.ts"
 import * as say from "./notices.ts"
+import { ownLinkOf } from "./own-link.ts"
 import { type Inputs, numberOf, planOf, rounded } from "./plan.ts"
 import { Plot } from "./plot.ts"
 import { troubleOf } from "./trouble.ts"
@@ -118,8 +119,10 @@ function candidateLinks(
   const made: { spec: LinkSpec; says: string }[] = []
   for (const { call, at } of said.beside) {
     const known = links[call.name]
-    if (known === undefined) fault(say.noSuchLink(call.name, nearest(call.name, Object.keys(links)), at))
-    else if (known.later) fault(say.linkNotYet(call.name, at))
+    if (known === undefined) {
+      const spec = ownLinkOf(call, at, family, inputs, fault)
+      if (spec !== null && !made.some((other) => other.says === spec.name)) made.push({ spec, says: spec.name })
+    } else if (known.later) fault(say.linkNotYet(call.name, at))
     else if (!legal.includes(call.name)) fault(say.linkNotLegal(call.name, families[family]?.name ?? family, legal, at))
     else if ((call.bounds?.length ?? 0) !== known.parameters.length) fault(say.linkParameters(call.name, known.parameters.length, at))
     else {

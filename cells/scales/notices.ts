@@ -116,6 +116,19 @@ export const noSuchLink = (name: string, nearest: string | null, at: Place): Not
     nearest === null ? "Name a link of the language." : `The nearest name is ${nearest}.`,
   )
 
+export const notALink = (name: Name, at: Place): Notice =>
+  fault("not-a-link", "beside", at, `${name} is not a link.`, "Name a link of the language, or a cell that begins with the word link.")
+
+/** A link of the user's own with a constant that is still to be estimated. */
+export const estimateNotYet = (name: Name, at: Place): Notice =>
+  fault(
+    "not-available-yet",
+    "beside",
+    at,
+    `Estimating a constant of the link ${name} is not available yet.`,
+    `Give it a number in ${name}.`,
+  )
+
 export const linkNotYet = (name: string, at: Place): Notice =>
   fault("not-available-yet", "beside", at, `The link ${name} is not available yet.`, "Leave it out for now.")
 

@@ -72,7 +72,7 @@ export class Plot {
     const mean = overallMean(model)
     return {
       link: says,
-      formula: linkFormula(says),
+      formula: spec.own?.formula ?? linkFormula(says),
       own,
       aic: of.aic,
       deviance: of.deviance,
@@ -97,7 +97,7 @@ export class Plot {
     const { model } = this
     return {
       link: says,
-      formula: linkFormula(says),
+      formula: spec.own?.formula ?? linkFormula(says),
       own: false,
       aic: null,
       deviance: null,

@@ -5,6 +5,7 @@ import type { Notice, Place } from "../../runtime/notice.ts"
 import type { Name } from "../../runtime/value.ts"
 import type { Bound, Call, Choice, Filled, Matched } from "../language/form.ts"
 import { readClauses } from "../language/form.ts"
+import { links } from "../language/vocabulary.ts"
 import { noModel } from "./notices.ts"
 
 export type Named = { readonly name: Name; readonly at: Place }
@@ -82,6 +83,9 @@ export const scalesWords: Words<ScalesSaid> = {
       ...said.hold.map(({ value }) => value),
       ...(said.beside ?? []).flatMap(({ call }) => call.bounds ?? []),
     ]
+    // Links of the language are no cells; any other name is one, or misspelt, which the evaluation says.
+    for (const { call, at } of said.beside ?? [])
+      if (!Object.hasOwn(links, call.name)) uses.push({ name: call.name, parts: "all", either: true, at: { ...at, to: at.from + 1 } })
     for (const item of bounds) if (item.type === "cell") uses.push({ name: item.name, parts: "all", either: false, at: item.at })
     return { defines: null, uses, files: [] }
   },

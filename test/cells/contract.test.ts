@@ -40,6 +40,7 @@ const members: Readonly<Record<string, readonly string[]>> = {
     "goodness_of_link",
     "mean_range",
   ],
+  link: ["defined", "strictly_monotone", "differentiable", "slope", "reach", "canonical_for"],
   scales: ["across", "held", "curves", "points", "strip"],
   dial: ["value"],
   value: ["value"],
