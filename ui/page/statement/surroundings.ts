@@ -3,6 +3,7 @@
 
 import type { Block } from "../../../cells/block.ts"
 import { functions, modelFunctions } from "../../../cells/language/functions.ts"
+import { makers } from "../../../cells/language/predictor.ts"
 import { families, legalLinks, links } from "../../../cells/language/vocabulary.ts"
 import { words } from "../../../cells/words.ts"
 import type { Cell, CellId } from "../../../runtime/document.ts"
@@ -29,7 +30,7 @@ export function surroundings(desk: Desk, id: CellId): Surroundings | null {
     families: Object.values(families).filter(({ later }) => !later),
     links: (family) => linksFor(family === null ? Object.keys(links) : legalLinks(family)),
     functions: [...functions, ...modelFunctions].map(([name, { form, says }]) => ({ name, says: `${form}: ${says}` })),
-    predictorCalls,
+    predictorCalls: [...makers].map(([name, { form, says }]) => ({ name, says: `${form}: ${says}` })),
     family:
       model === undefined ? null : (reading(model).statement.clauses.find(({ keyword }) => keyword === "family")?.tokens[0]?.text ?? null),
   }
@@ -43,16 +44,6 @@ function linksFor(names: readonly string[]): ReturnType<Surroundings["links"]> {
       later ? [] : [{ name, says: `${formula} · ${says}`, takes: parameters.length > 0 }],
     )
 }
-
-const predictorCalls = [
-  { name: "log", says: "log(x): its natural logarithm" },
-  { name: "square_root", says: "square_root(x)" },
-  { name: "power", says: "power(x, 2): a power of it" },
-  { name: "polynomial", says: "polynomial(x, degree 3): orthogonal over the rows used" },
-  { name: "natural_spline", says: "natural_spline(x, knots 3)" },
-  { name: "periodic", says: "periodic(x, period 365): a sine and a cosine" },
-  { name: "category", says: "category(x): each value a level" },
-]
 
 /** The cell itself and all it reads, however distantly, nearest first. */
 function upstream(cells: readonly Cell[], cell: Cell): readonly Cell[] {
