@@ -1,10 +1,11 @@
 // What a model finds, as far as other kinds may rely on it: the one place where `model` and its readers (scales, value, and later
 // compare, effects and the like) meet, since kinds do not import each other. Plain data, so that a reader can refit with another link.
 
-import type { Name } from "../runtime/value.ts"
+import type { Name, Value } from "../runtime/value.ts"
 import type { Expression } from "./language/expression.ts"
 import type { Fit } from "./statistics/fit.ts"
 import type { Problem, Variable } from "./statistics/problem.ts"
+import type { ProfileInterval } from "./statistics/profile.ts"
 
 /** How a column is called on axes and in sentences. */
 export type Label = { readonly label: string; readonly unit: string | null }
@@ -16,6 +17,30 @@ export type OffsetFinding = {
   readonly variables: { readonly [name: Name]: Variable }
   /** Dials and values it reads. */
   readonly numbers: { readonly [name: Name]: number }
+}
+
+/** The part of a model's finding that its readers read: it is there before the intervals, and stays as it is when they come. */
+export const fitPart = "fit"
+
+/** Intervals of the coefficients, in their order; `ends` is null until they have been found. */
+export type IntervalsFound = {
+  readonly by: "profile" | "wald"
+  readonly ends: readonly (ProfileInterval | null)[] | null
+}
+
+/** The whole of what a model finds. */
+export type ModelFound = { readonly parts: { readonly fit: ModelFinding }; readonly intervals: IntervalsFound }
+
+/** The fit in what was read of a cell, whether the part or the whole was asked for; null where the cell is no model. */
+export function modelIn(value: Value | undefined): ModelFinding | null {
+  const whole = memberOf(value, "parts")
+  const fit = memberOf(whole === null ? value : whole, fitPart)
+  return memberOf(fit, "problem") === null ? null : (fit as unknown as ModelFinding)
+}
+
+function memberOf(value: Value | undefined, member: string): Value {
+  if (typeof value !== "object" || value === null || Array.isArray(value) || ArrayBuffer.isView(value)) return null
+  return (value as { readonly [member: string]: Value })[member] ?? null
 }
 
 export type ModelFinding = {

@@ -9,7 +9,7 @@ import { evaluated } from "./language/evaluate.ts"
 import { type Expression, printed, type Scalar, type Trouble } from "./language/expression.ts"
 import { modelFunctions } from "./language/functions.ts"
 import { listed } from "./language/notices.ts"
-import type { ModelFinding } from "./model-finding.ts"
+import { type ModelFinding, modelIn } from "./model-finding.ts"
 import { linkOf, predicted } from "./statistics/index.ts"
 import type { Variable } from "./statistics/problem.ts"
 
@@ -99,7 +99,7 @@ class ModelReading {
   private single(expression: Expression & { readonly type: "name" }): Expression | null {
     const input = this.inputs.get(expression.name)
     if (input === undefined || scalarOf(input) !== null) return expression
-    const isModel = modelIn(input) !== null
+    const isModel = modelIn(input.value) !== null
     return this.trouble(
       expression,
       "value/not-a-number",
@@ -113,7 +113,7 @@ class ModelReading {
   private number(expression: Call): Expression | null {
     const [first, ...more] = expression.of
     const input = first?.type === "name" ? this.inputs.get(first.name) : undefined
-    const model = input === undefined ? null : modelIn(input)
+    const model = modelIn(input?.value)
     if (first === undefined || first.type !== "name" || model === null)
       return this.trouble(
         first ?? expression,
@@ -280,12 +280,6 @@ class ModelReading {
     this.troubles.push({ at: expression.at, code, text, hint })
     return null
   }
-}
-
-/** A model's finding; null where the cell is of another kind. */
-function modelIn({ value }: Input): ModelFinding | null {
-  const is = typeof value === "object" && value !== null && "fit" in value && "problem" in value
-  return is ? (value as unknown as ModelFinding) : null
 }
 
 const numberAt = (like: Expression, value: number): Expression => ({ type: "number", value, text: `${value}`, at: like.at })

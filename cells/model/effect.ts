@@ -2,24 +2,25 @@
 // itself: its column enters in one way only, and in no interaction.
 
 import { written, writtenRange, writtenShare } from "../figure/number.ts"
-import type { ModelFinding } from "../model-finding.ts"
+import type { IntervalsFound, ModelFinding, ModelFound } from "../model-finding.ts"
 import type { Coefficient } from "../statistics/fit.ts"
 import { exp } from "../statistics/index.ts"
 import type { Term } from "../statistics/problem.ts"
+import type { IntervalEnd } from "../statistics/profile.ts"
 
 /** Sentences for at most so many coefficients. */
 const mostSentences = 3
 
 /** One sentence an effect, in the order of the predictor. */
-export function effectSentences(found: ModelFinding): readonly string[] {
+export function effectSentences({ parts: { fit: found }, intervals }: ModelFound): readonly string[] {
   const { terms } = found.problem
   const sentences: string[] = []
   terms.forEach((term, t) => {
     const piece = term.pieces[0]
     if (piece === undefined || term.pieces.length !== 1 || !speaksAlone(terms, piece.variable, t)) return
-    for (const coefficient of found.fit.coefficients) {
+    for (const [j, coefficient] of found.fit.coefficients.entries()) {
       if (coefficient.term !== t || coefficient.beta === null || sentences.length === mostSentences) continue
-      const sentence = effectSentence(found, piece.variable, piece.as, coefficient)
+      const sentence = effectSentence(found, piece.variable, piece.as, coefficient, intervals.ends?.[j] ?? null)
       if (sentence !== null) sentences.push(sentence)
     }
   })
@@ -29,7 +30,9 @@ export function effectSentences(found: ModelFinding): readonly string[] {
 const speaksAlone = (terms: readonly Term[], variable: string, own: number): boolean =>
   terms.every((term, t) => t === own || term.pieces.every((piece) => piece.variable !== variable))
 
-function effectSentence(found: ModelFinding, variable: string, as: string, coefficient: Coefficient): string | null {
+type Interval = NonNullable<IntervalsFound["ends"]>[number]
+
+function effectSentence(found: ModelFinding, variable: string, as: string, coefficient: Coefficient, interval: Interval): string | null {
   const of = found.problem.variables[variable]
   const label = found.labels[variable]
   if (of === undefined || coefficient.beta === null) return null
@@ -39,12 +42,12 @@ function effectSentence(found: ModelFinding, variable: string, as: string, coeff
     const corner = of.coding === "corner" && found.problem.intercept
     if (as !== "itself" || !corner || !coefficient.of.startsWith(`${variable} is `)) return null
     const level = coefficient.of.slice(variable.length + 4)
-    return `${called} ${level} against ${of.levels[0]} ${changed(found, verb, coefficient, 1)}.`
+    return `${called} ${level} against ${of.levels[0]} ${changed(found, verb, coefficient.beta, interval, 1)}.`
   }
   if (as !== "itself") return null
   const step = stepOf(of.values, coefficient.beta, verb.multiplies)
   const unit = label?.unit === null || label?.unit === undefined ? "" : ` ${label.unit}`
-  return `Each ${written(step, 1)}${unit} more of ${called} ${changed(found, verb, coefficient, step)}.`
+  return `Each ${written(step, 1)}${unit} more of ${called} ${changed(found, verb, coefficient.beta, interval, step)}.`
 }
 
 type Verb = { readonly says: string; readonly what: string; readonly multiplies: boolean; readonly sign: 1 | -1 }
@@ -78,9 +81,10 @@ function verbOf({ problem }: ModelFinding): Verb {
   }
 }
 
-function changed(found: ModelFinding, verb: Verb, { beta, low, high }: Coefficient, step: number): string {
+function changed(found: ModelFinding, verb: Verb, beta: number, between: Interval, step: number): string {
   const scaled = (value: number): number => (verb.multiplies ? exp(verb.sign * step * value) : step * value)
-  const value = scaled(beta as number)
+  const value = scaled(beta)
+  const [low, high] = [placed(between?.low), placed(between?.high)]
   const ends = low === null || high === null ? null : [scaled(low), scaled(high)].sort((a, b) => a - b)
   const interval =
     ends === null ? "" : ` (${writtenShare(found.problem.confidence)} interval ${writtenRange(ends[0] as number, ends[1] as number, 3)})`
@@ -90,6 +94,10 @@ function changed(found: ModelFinding, verb: Verb, { beta, low, high }: Coefficie
 /** The logarithm of a factor beyond these is no longer something one can picture. */
 const largestLogFactor = 4
 const leastLogFactor = 0.05
+
+/** An end as a number; null where there is none, or where it is not known beyond the edge. */
+const placed = (end: IntervalEnd | undefined): number | null =>
+  end === "infinity" ? Infinity : end === "-infinity" ? -Infinity : typeof end === "number" ? end : null
 
 /**
  * A step along a column in which its effect can be pictured: one where that is a step within the data and neither huge nor tiny in effect,

@@ -8,11 +8,12 @@ import type { Name, Value } from "../../runtime/value.ts"
 import type { Bound } from "../language/form.ts"
 import { variablesOf } from "../language/predictor.ts"
 import { canonicalLink } from "../language/vocabulary.ts"
-import type { Label, ModelFinding } from "../model-finding.ts"
+import { fitPart, type Label, type ModelFinding, type ModelFound, modelIn } from "../model-finding.ts"
 import type { Fit, Fitted } from "../statistics/fit.ts"
 import { fit } from "../statistics/index.ts"
 import type { LinkSpec, Problem, Term, Variable } from "../statistics/problem.ts"
 import type { Column } from "../table/column.ts"
+import { withIntervals } from "./intervals.ts"
 import * as say from "./notices.ts"
 import { offsetFinding, offsetOf } from "./offset.ts"
 import { ownLinkOf } from "./own-link.ts"
@@ -26,10 +27,10 @@ import { columnsOf, isOwnName, type ModelSaid } from "./words.ts"
 type Inputs = ReadonlyMap<Name, Input>
 type Say = (notice: Notice) => void
 
-export async function found(said: ModelSaid, inputs: Inputs, work: Work): Promise<Outcome<ModelFinding>> {
+export async function found(said: ModelSaid, inputs: Inputs, work: Work): Promise<Outcome<ModelFound>> {
   const notices: Notice[] = []
   const notice: Say = (one) => notices.push(one)
-  const nothing = (): Outcome<ModelFinding> => ({ ok: false, found: null, notices })
+  const nothing = (): Outcome<ModelFound> => ({ ok: false, found: null, notices })
   const { data, response: responseSaid, family: familySaid, predictor } = said
   // What is not said at all the parse has said.
   if (data === null || responseSaid === null || familySaid === null || predictor === null) return nothing()
@@ -108,7 +109,8 @@ export async function found(said: ModelSaid, inputs: Inputs, work: Work): Promis
     records: Uint32Array.from(kept, (row) => table.records[row] as number),
     unused: choice.unused,
   }
-  return { ok: true, found: finding, notices }
+  work.publish(fitPart, finding)
+  return withIntervals(said, finding, notices, work)
 }
 
 const hasFault = (notices: readonly Notice[]): boolean => notices.some(({ level }) => level === "fault")
@@ -171,8 +173,8 @@ function predictorColumns(said: ModelSaid, table: TableHere, notice: Say): Reado
 
 /** The last fit as a start: only where it has the same coefficients. */
 function nearFit(near: Value | null, problem: Problem): Fit | null {
-  if (typeof near !== "object" || near === null || !("fit" in near) || !("problem" in near)) return null
-  const last = near as unknown as ModelFinding
+  const last = modelIn(near)
+  if (last === null) return null
   const shape = (of: Problem): string =>
     JSON.stringify([
       of.intercept,

@@ -633,13 +633,50 @@ export const atInfinity = (terms: readonly { readonly of: string; readonly towar
 export const severalMaxima = (): Notice =>
   notice("warning", "several-maxima", null, heading, "The likelihood has more than one maximum; the highest one found is shown.", null)
 
-export const profileNotYet = (at: Place): Notice =>
+const predictorPlace = (clause: number): Place => ({ clause, from: 0, to: 1 })
+
+/** Wald's ratio falls as the coefficient grows, so that it measures nothing any more. */
+export const waldCollapses = (terms: readonly string[], clause: number): Notice =>
+  notice(
+    "warning",
+    "wald-collapses",
+    "predictor",
+    predictorPlace(clause),
+    `The Wald ratio of ${several(terms, 6)} would fall if the estimate were farther from 0, so its p says little.`,
+    "Go by the profile interval, or by a cell terms, which compares fits with and without the term.",
+  )
+
+export const waldDisagrees = (terms: readonly string[], confidence: number, clause: number): Notice =>
   notice(
     "remark",
-    "profile-not-yet",
+    "wald-disagrees",
+    "predictor",
+    predictorPlace(clause),
+    `By its Wald p ${several(terms, 6)} ${terms.length === 1 ? "is" : "are"} on the other side of ${shareSays(1 - confidence)} than by the profile interval.`,
+    "Where the two disagree the profile is nearer to the truth.",
+  )
+
+/** A small share as a percentage, such as `5 %` or `0.1 %`, without the rounding of 1 − 0.999. */
+const shareSays = (share: number): string => `${numberSays(Number((share * 100).toPrecision(6)))}\u202f%`
+
+export const profilesOnRequest = (rows: number, rank: number): Notice =>
+  notice(
+    "remark",
+    "profiles-on-request",
+    null,
+    heading,
+    `Wald intervals are shown, since profiles of ${writtenCount(rank)} coefficients over ${writtenCount(rows)} rows take long.`,
+    "Write interval profile to have them all the same.",
+    writes("interval", "profile"),
+  )
+
+export const noProfileUnderSandwich = (at: Place): Notice =>
+  notice(
+    "remark",
+    "no-profile-under-sandwich",
     "interval",
     at,
-    "Profile intervals are not available yet, so Wald intervals are shown.",
+    "Wald intervals are shown: a profile goes by the likelihood, which sandwich errors do not trust.",
     "Write interval wald to mean these.",
     writes("interval", "wald"),
   )

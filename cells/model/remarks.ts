@@ -27,7 +27,6 @@ export function remarks(
   const [first] = problem.y
   if (said.response !== null && problem.rows > 1 && first !== undefined && problem.y.every((value) => value === first))
     notice(say.constantResponse(response.finding.label, constantSays(first, response), responsePlace(said)))
-  if (said.interval?.by === "profile") notice(say.profileNotYet(said.interval.at))
 }
 
 const constantSays = (value: number, response: Response): string =>

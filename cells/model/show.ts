@@ -2,21 +2,23 @@
 // stands on and what is certified about it.
 
 import type { Block, TableBlock, TableEntry } from "../block.ts"
-import { written, writtenCount, writtenProbability, writtenShare } from "../figure/number.ts"
-import type { ModelFinding } from "../model-finding.ts"
+import { absent, written, writtenCount, writtenProbability, writtenShare } from "../figure/number.ts"
+import type { IntervalsFound, ModelFinding, ModelFound } from "../model-finding.ts"
 import type { Coefficient } from "../statistics/fit.ts"
+import type { IntervalEnd } from "../statistics/profile.ts"
 import { effectSentences } from "./effect.ts"
 import { coefficientName, equation } from "./equation.ts"
 import { list, rows } from "./notices.ts"
 
-export function shown(found: ModelFinding): readonly Block[] {
-  const effects = effectSentences(found)
+export function shown(whole: ModelFound): readonly Block[] {
+  const found = whole.parts.fit
+  const effects = effectSentences(whole)
   const blocks: Block[] = []
   if (effects.length > 0) blocks.push({ type: "sentence", text: effects.join(" "), tone: "lead" })
   return [
     ...blocks,
     { type: "formula", ...equation(found) },
-    coefficients(found),
+    coefficients(found, whole.intervals),
     { type: "sentence", text: fitSays(found), tone: "plain" },
     { type: "sentence", text: `${rowsSay(found)} ${certificateSays(found)} ${errorsSay(found)}`, tone: "quiet" },
   ]
@@ -26,7 +28,7 @@ export function shown(found: ModelFinding): readonly Block[] {
 const errorDigits = 3
 const mostDigits = 8
 
-function coefficients(found: ModelFinding): TableBlock {
+function coefficients(found: ModelFinding, intervals: IntervalsFound): TableBlock {
   const first = found.fit.coefficients[0]?.of === "intercept" ? 0 : 1
   const share = writtenShare(found.problem.confidence, Number.isInteger(found.problem.confidence * 100) ? 0 : 1)
   const law = found.fit.lawDf === null ? "the normal law" : `the t law on ${writtenCount(found.fit.lawDf)} degrees of freedom`
@@ -37,31 +39,51 @@ function coefficients(found: ModelFinding): TableBlock {
       { head: "", says: "The coefficient and the column it belongs to", align: "text" },
       { head: "estimate", says: null, align: "number" },
       { head: "standard error", says: null, align: "number" },
-      { head: `${share} interval`, says: `The estimate and so many standard errors to both sides, by ${law} (Wald)`, align: "number" },
+      { head: `${share} interval`, says: intervalSays(found, intervals, law), align: "number" },
       { head: "ratio", says: "The estimate over its standard error", align: "number" },
       { head: "p", says: `Two-sided, by ${law}`, align: "number" },
     ],
-    rows: found.fit.coefficients.map((of, j) => coefficientRow(of, j + first)),
+    rows: found.fit.coefficients.map((of, j) => coefficientRow(of, j + first, intervals.ends?.[j] ?? null)),
     folded: false,
   }
 }
 
-function coefficientRow(of: Coefficient, index: number): readonly TableEntry[] {
+function intervalSays({ fit }: ModelFinding, { by, ends }: IntervalsFound, law: string): string {
+  if (by === "wald") return `The estimate and so many standard errors to both sides, by ${law} (Wald)`
+  const rise = fit.dispersion.estimated ? `the F law on 1 and ${writtenCount(fit.df)} degrees of freedom` : "the χ² law"
+  const says = `Where the deviance, at its least over all other coefficients, has risen as far as ${rise} allows (profile)`
+  return ends === null ? `${says}; still to come` : says
+}
+
+function coefficientRow(of: Coefficient, index: number, interval: Interval): readonly TableEntry[] {
   const head = `${coefficientName(index)} ${of.of}`
   if (of.beta === null) {
     const why = of.toward === null ? "not told apart" : of.toward === "infinity" ? "∞" : "−∞"
-    return [head, why, null, null, null, null]
+    return [head, why, null, intervalEntry(interval, errorDigits), null, null]
   }
   const digits = estimateDigits(of.beta, of.standardError)
   return [
     head,
     { value: of.beta, digits },
     of.standardError === null ? null : { value: of.standardError, digits: errorDigits },
-    of.low === null || of.high === null ? null : { from: of.low, to: of.high, digits },
+    intervalEntry(interval, digits),
     of.ratio === null ? null : { value: of.ratio, digits: 3 },
     of.p === null ? null : writtenProbability(of.p),
   ]
 }
+
+type Interval = NonNullable<IntervalsFound["ends"]>[number]
+
+/** An interval whose ends are numbers is written by them; else each end has its word. */
+function intervalEntry(interval: Interval, digits: number): TableEntry {
+  if (interval === null || (interval.low === null && interval.high === null)) return null
+  const { low, high } = interval
+  if (typeof low === "number" && typeof high === "number") return { from: low, to: high, digits }
+  return `${endSays(low, digits)} to ${endSays(high, digits)}`
+}
+
+const endSays = (end: IntervalEnd, digits: number): string =>
+  end === null ? absent : end === "edge" ? "the edge" : end === "infinity" ? "∞" : end === "-infinity" ? "−∞" : written(end, digits)
 
 /** An estimate is written to where its standard error has its second digit. */
 function estimateDigits(beta: number, error: number | null): number {

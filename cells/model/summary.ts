@@ -2,15 +2,16 @@
 // infinity is a word, since JSON has no number for it.
 
 import type { Json } from "../../runtime/value.ts"
-import type { ModelFinding } from "../model-finding.ts"
+import type { IntervalsFound, ModelFinding, ModelFound } from "../model-finding.ts"
 import type { Coefficient, Fit } from "../statistics/fit.ts"
+import type { IntervalEnd } from "../statistics/profile.ts"
 
 /** Covariances of more coefficients than this would be most of the file. */
 const mostCovariances = 100
 /** Arrays in a summary are no longer than this. */
 const mostRows = 2000
 
-export function summary(found: ModelFinding): Json {
+export function summary({ parts: { fit: found }, intervals }: ModelFound): Json {
   const { fit, problem } = found
   return {
     rows: fit.rows,
@@ -20,7 +21,7 @@ export function summary(found: ModelFinding): Json {
     family: problem.family.name,
     link: found.link,
     parameters: [],
-    coefficients: fit.coefficients.map(coefficient),
+    coefficients: fit.coefficients.map((of, j) => coefficient(of, intervals, j)),
     covariance: covariance(fit),
     fit: { deviance: number(fit.deviance), df: fit.df, log_likelihood: number(fit.logLikelihood) },
     intercept_only: fit.interceptOnly === null ? null : { deviance: number(fit.interceptOnly.deviance), df: fit.interceptOnly.df },
@@ -51,7 +52,7 @@ export function summary(found: ModelFinding): Json {
 }
 
 /** What the trail notes of a fit that was shown. */
-export function tried(found: ModelFinding): readonly Json[] {
+export function tried({ parts: { fit: found } }: ModelFound): readonly Json[] {
   const { fit, problem } = found
   return [
     {
@@ -95,15 +96,16 @@ function evidence({ fit, records }: ModelFinding): Json {
   }
 }
 
-function coefficient(of: Coefficient): Json {
+function coefficient(of: Coefficient, { by, ends }: IntervalsFound, index: number): Json {
+  const interval = ends?.[index] ?? null
   return {
     of: of.of,
     beta: number(of.beta),
     toward: of.toward,
     standard_error: number(of.standardError),
     wald: { ratio: number(of.ratio), p: number(of.p) },
-    interval: of.low === null || of.high === null ? null : [number(of.low), number(of.high)],
-    interval_by: "wald",
+    interval: interval === null ? null : [end(interval.low), end(interval.high)],
+    interval_by: by,
   }
 }
 
@@ -117,3 +119,4 @@ function covariance({ covariance: lower, coefficients }: Fit): Json {
 
 const number = (value: number | null): Json =>
   value === null || Number.isNaN(value) ? null : value === Infinity ? "infinity" : value === -Infinity ? "-infinity" : value
+const end = (value: IntervalEnd): Json => (typeof value === "number" ? number(value) : value)

@@ -1,9 +1,8 @@
 // The words of a note: CommonMark text with live values in it.
 
 import type { Use, Words } from "../../runtime/kind.ts"
-import type { Name } from "../../runtime/value.ts"
-import { namesIn } from "../language/expression.ts"
 import { readClauses } from "../language/form.ts"
+import { usesOf } from "../model-uses.ts"
 import { type Mark, marksIn } from "./marks.ts"
 import { bracesAreText, placeOf } from "./notices.ts"
 
@@ -22,10 +21,13 @@ export const noteWords: Words<NoteSaid> = {
     return { said: { body, marks }, notices: [...notices, ...odd.map((braces) => bracesAreText(placeOf(braces), braces.why))] }
   },
   names(said) {
-    const uses = new Map<Name, Use>()
-    for (const mark of said.marks)
-      for (const { name } of namesIn(mark.expression))
-        if (!uses.has(name)) uses.set(name, { name, parts: "all", either: false, at: placeOf(mark) })
+    const uses = new Map<string, Use>()
+    for (const mark of said.marks) {
+      for (const use of usesOf(mark.expression)) {
+        const { name, parts } = use
+        if (!uses.has(`${name} ${parts}`)) uses.set(`${name} ${parts}`, { ...use, at: placeOf(mark) })
+      }
+    }
     return { defines: null, uses: [...uses.values()], files: [] }
   },
 }

@@ -6,7 +6,7 @@ import { nearest } from "../../runtime/nearest.ts"
 import type { Notice } from "../../runtime/notice.ts"
 import type { Name, Value } from "../../runtime/value.ts"
 import { families, legalLinks, links } from "../language/vocabulary.ts"
-import type { ModelFinding } from "../model-finding.ts"
+import { type ModelFinding, modelIn } from "../model-finding.ts"
 import { familyOf, fit } from "../statistics/index.ts"
 import type { LinkSpec } from "../statistics/problem.ts"
 import type { CandidateFound, ScalesFinding } from "./finding.ts"
@@ -23,7 +23,7 @@ export async function found(said: ScalesSaid, inputs: Inputs, work: Work): Promi
     notices.push(notice)
     return null
   }
-  const model = said.model === null ? null : modelIn(inputs, said.model.name)
+  const model = said.model === null ? null : modelIn(inputs.get(said.model.name)?.value)
   if (said.model === null) return { ok: false, found: null, notices }
   if (model === null) return { ok: false, found: null, notices: [say.notAModel(said.model.name, said.model.at)] }
   const setting = planOf(said, said.model.name, model, inputs, fault)
@@ -91,13 +91,6 @@ const markOf = ({ fit: own, problem }: ModelFinding): Float64Array =>
   Float64Array.of(problem.rows, own.n, own.deviance ?? Number.NaN, own.pearson, ...own.coefficients.map(({ beta }) => beta ?? Number.NaN))
 
 const isSame = (a: Float64Array, b: Float64Array): boolean => a.length === b.length && a.every((value, i) => Object.is(value, b[i]))
-
-/** A model's finding among the inputs, null where the cell is of another kind. */
-function modelIn(inputs: Inputs, name: Name): ModelFinding | null {
-  const value = inputs.get(name)?.value
-  const is = typeof value === "object" && value !== null && "fit" in value && "problem" in value
-  return is ? (value as unknown as ModelFinding) : null
-}
 
 /** The candidates on the strip: those stated, else the named links legal for the family; null once a fault was said. */
 function candidateLinks(

@@ -6,6 +6,7 @@ import type { Name } from "../../runtime/value.ts"
 import type { Bound, Call, Choice, Filled, Matched } from "../language/form.ts"
 import { readClauses } from "../language/form.ts"
 import { links } from "../language/vocabulary.ts"
+import { fitPart } from "../model-finding.ts"
 import { noModel } from "./notices.ts"
 
 export type Named = { readonly name: Name; readonly at: Place }
@@ -77,7 +78,7 @@ export const scalesWords: Words<ScalesSaid> = {
   },
   names(said): Names {
     const uses: Use[] = []
-    if (said.model !== null) uses.push({ name: said.model.name, parts: "all", either: false, at: said.model.at })
+    if (said.model !== null) uses.push({ name: said.model.name, parts: [fitPart], either: false, at: said.model.at })
     const bounds: readonly (Bound | Choice)[] = [
       ...(said.range === null ? [] : [said.range.from, said.range.to]),
       ...said.hold.map(({ value }) => value),

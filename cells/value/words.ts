@@ -1,9 +1,10 @@
 // The words of a value: one number (or text, or truth) with a name, made of dials, other values and numbers of models.
 
-import type { Use, Words } from "../../runtime/kind.ts"
+import type { Words } from "../../runtime/kind.ts"
 import type { Name } from "../../runtime/value.ts"
-import { type Expression, namesIn } from "../language/expression.ts"
+import type { Expression } from "../language/expression.ts"
 import { readClauses } from "../language/form.ts"
+import { usesOf } from "../model-uses.ts"
 
 export type ValueSaid = { readonly name: Name | null; readonly expression: Expression | null }
 
@@ -20,7 +21,6 @@ export const valueWords: Words<ValueSaid> = {
     return { said: { name: statement.name, expression: filled?.type === "EXPR" ? filled.expression : null }, notices }
   },
   names(said) {
-    const uses = said.expression === null ? [] : namesIn(said.expression)
-    return { defines: said.name, uses: uses.map(({ name, at }): Use => ({ name, parts: "all", either: false, at })), files: [] }
+    return { defines: said.name, uses: said.expression === null ? [] : usesOf(said.expression), files: [] }
   },
 }

@@ -2,7 +2,7 @@
 
 import { model } from "../../../cells/model/index.ts"
 import { modelWords } from "../../../cells/model/words.ts"
-import type { ModelFinding } from "../../../cells/model-finding.ts"
+import type { ModelFinding, ModelFound } from "../../../cells/model-finding.ts"
 import type { Column, NumberColumn } from "../../../cells/table/column.ts"
 import { rowsPart } from "../../../cells/table/column.ts"
 import type { Input, Work } from "../../../runtime/kind.ts"
@@ -51,7 +51,7 @@ export type Table = Readonly<Record<string, Column>>
 
 export type Found = {
   readonly ok: boolean
-  readonly found: ModelFinding | null
+  readonly found: ModelFound | null
   readonly notices: readonly Notice[]
   readonly text: string
 }
@@ -86,13 +86,16 @@ export async function finding(
 }
 
 /** The fit of a model that has one. */
-export const fitOf = ({ found, notices }: Found): ModelFinding => {
+export const fitOf = (outcome: Found): ModelFinding => wholeOf(outcome).parts.fit
+
+/** All that a model that has a fit found. */
+export const wholeOf = ({ found, notices }: Found): ModelFound => {
   if (found === null) throw new Error(notices.map(({ text: says }) => says).join("\n"))
   return found
 }
 
 export const summaryOf = (outcome: Found): { readonly [member: string]: Json } =>
-  model.summary(fitOf(outcome)) as { readonly [member: string]: Json }
+  model.summary(wholeOf(outcome)) as { readonly [member: string]: Json }
 
 /** `level code, at the words it stands on: what it says`. */
 export const told = (outcome: Found): readonly string[] =>

@@ -326,9 +326,35 @@ describe("warnings and remarks", () => {
     ])
   })
 
-  it("says that profile intervals are not available yet, only where they were asked for", async () => {
-    expect(codes(await finding(`${counts}\ninterval profile`, beds))).toEqual(["profile-not-yet"])
+  it("says that sandwich errors have no profile, only where profiles were asked for", async () => {
+    expect(told(await finding(`${counts}\nstandard_errors sandwich\ninterval profile`, beds))).toEqual([
+      'remark no-profile-under-sandwich at "profile": Wald intervals are shown: a profile goes by the likelihood, which sandwich errors do not trust.',
+    ])
+    expect(codes(await finding(`${counts}\nstandard_errors sandwich`, beds))).toEqual([])
     expect(codes(await finding(`${counts}\ninterval wald`, beds))).toEqual([])
+  })
+
+  it("says where a Wald ratio falls as the effect grows, and where its p disagrees with the profile", async () => {
+    // Of 100 pots half live in lot a, and all but one in lot b.
+    const pots = { lot: category(["a", "b"]), alive: count(50, 99), of: count(100, 100) }
+    const far = await finding("response alive out of of\nfamily binomial\nlink logit\npredictor lot\nconfidence 99.9999%", pots)
+    expect(told(far)).toEqual([
+      'warning wald-collapses at "predictor": The Wald ratio of lot is b would fall if the estimate were farther from 0, so its p says little.',
+      'remark wald-disagrees at "predictor": By its Wald p lot is b is on the other side of 0.0001\u202f% than by the profile interval.',
+    ])
+    const near = { ...pots, alive: count(50, 70) }
+    expect(codes(await finding("response alive out of of\nfamily binomial\nlink logit\npredictor lot", near))).toEqual([])
+  })
+
+  it("offers profiles that would take long", async () => {
+    const rows = 4001
+    const levels = Array.from({ length: rows }, (_, i) => `l${i % 50}`)
+    const table = { lot: category(levels), alive: count(...levels.map((_, i) => (i * 7) % 11)) }
+    const outcome = await finding("response alive\nfamily poisson\nlink log\npredictor lot", table)
+    expect(told(outcome)).toEqual([
+      "remark profiles-on-request: Wald intervals are shown, since profiles of 50 coefficients over 4001 rows take long.",
+    ])
+    expect(mended(outcome, outcome.notices[0]?.mend ?? null)).toMatch(/interval profile/)
   })
 
   it("says which term says nothing that others do not", async () => {
@@ -362,7 +388,7 @@ describe("warnings and remarks", () => {
     expect(told(outcome)).toEqual([
       'warning piece-lost at "log(frost)": log(frost) has no finite value in 2 rows (first: row 10 of terrace.csv, with 0); they are not used.',
     ])
-    expect(outcome.found?.unused).toEqual([{ by: "log(frost) has no value", rows: 2 }])
+    expect(outcome.found?.parts.fit.unused).toEqual([{ by: "log(frost) has no value", rows: 2 }])
   })
 
   it("says where the offset has no value", async () => {
@@ -370,7 +396,7 @@ describe("warnings and remarks", () => {
     expect(told(outcome)).toEqual([
       'warning offset-lost at "log(h)": In 1 row the offset has no finite value although its columns are there; it is not used.',
     ])
-    expect(outcome.found?.unused).toEqual([{ by: "the offset is missing", rows: 2 }])
+    expect(outcome.found?.parts.fit.unused).toEqual([{ by: "the offset is missing", rows: 2 }])
   })
 
   it("says which coefficients run to infinity, and why", async () => {

@@ -6,7 +6,7 @@ import { model } from "../../../cells/model/index.ts"
 import { modelWords } from "../../../cells/model/words.ts"
 import { read } from "../../../runtime/statement.ts"
 import type { Value } from "../../../runtime/value.ts"
-import { category, count, type Found, finding, fitOf, number, type Table, truth } from "./laboratory.ts"
+import { category, count, type Found, finding, fitOf, number, type Table, truth, wholeOf } from "./laboratory.ts"
 
 const beds: Table = {
   frost: { ...number(1, 2, 3, 4, 5, 6, 7, 8), called: "hours of frost", unit: "h" },
@@ -20,7 +20,7 @@ const beds: Table = {
 }
 
 const blocks = (outcome: Found): readonly Block[] =>
-  model.show(fitOf(outcome), modelWords.parse(read(outcome.text)).said) as readonly Block[]
+  model.show(wholeOf(outcome), modelWords.parse(read(outcome.text)).said) as readonly Block[]
 const sentences = (outcome: Found, tone: string): readonly string[] =>
   blocks(outcome).flatMap((block) => (block.type === "sentence" && block.tone === tone ? [block.text] : []))
 const formula = (outcome: Found): string => blocks(outcome).flatMap((block) => (block.type === "formula" ? [block.text] : []))[0] ?? ""
@@ -160,7 +160,7 @@ describe("what qualifies a finding", () => {
 describe("the trail", () => {
   it("notes a fit with its predictor as a clause would say it", async () => {
     const tried = async (predictor: string) =>
-      model.tried(fitOf(await finding(`response buds\nfamily poisson\nlink log\npredictor ${predictor}`, beds)))[0]
+      model.tried(wholeOf(await finding(`response buds\nfamily poisson\nlink log\npredictor ${predictor}`, beds)))[0]
     expect(await tried("lot*frost - intercept")).toMatchObject({
       family: "poisson",
       link: "log",
@@ -173,17 +173,20 @@ describe("the trail", () => {
 })
 
 it("writes infinities as words and what is not available as null", async () => {
-  const found = fitOf(await finding("response buds\nfamily poisson\nlink log\npredictor frost", beds))
+  const found = wholeOf(await finding("response buds\nfamily poisson\nlink log\npredictor frost", beds)).parts.fit
   const [first, ...rest] = found.fit.coefficients
   const bent = {
     ...found,
     fit: {
       ...found.fit,
       deviance: Infinity,
-      coefficients: [{ ...first, beta: null, toward: "infinity", low: -Infinity, high: Number.NaN }, ...rest],
+      coefficients: [{ ...first, beta: null, toward: "infinity" }, ...rest],
     },
   }
-  const summary = model.summary(bent as unknown as typeof found) as { readonly [member: string]: Value }
+  const ends = [{ low: -Infinity, high: Number.NaN }]
+  const summary = model.summary({ parts: { fit: bent as unknown as typeof found }, intervals: { by: "wald", ends } }) as {
+    readonly [member: string]: Value
+  }
   expect(summary["fit"]).toMatchObject({ deviance: "infinity" })
   expect((summary["coefficients"] as readonly Value[])[0]).toMatchObject({ beta: null, toward: "infinity", interval: ["-infinity", null] })
   expect(summary["mean_range"]).toMatchObject({ possible: [0, "infinity"] })
