@@ -100,7 +100,9 @@ function candidateLinks(
   fault: (notice: Notice) => null,
 ): readonly { readonly spec: LinkSpec; readonly says: string }[] | null {
   const family = model.problem.family.name
-  const legal = legalLinks(family)
+  // A binomial mean has a value per unit of exposure under cloglog only, so no other link can stand beside it.
+  const perUnit = family === "binomial" ? model.exposure : null
+  const legal = legalLinks(family).filter((name) => perUnit === null || name === "cloglog")
   if (said.beside === null) {
     // Links made for the family's own means first: on a share, those that reach every share and nothing else.
     const made = (name: string): number => (links[name]?.mean === families[family]?.mean ? 0 : 1)
@@ -111,6 +113,10 @@ function candidateLinks(
   }
   const made: { spec: LinkSpec; says: string }[] = []
   for (const { call, at } of said.beside) {
+    if (perUnit !== null && call.name !== "cloglog") {
+      fault(say.linkNotPerUnit(call.name, perUnit.label, at))
+      continue
+    }
     const known = links[call.name]
     if (known === undefined) {
       const spec = ownLinkOf(call, at, family, inputs, fault)

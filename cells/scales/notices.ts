@@ -141,6 +141,16 @@ export const linkNotLegal = (link: string, family: string, legal: readonly strin
     `Links that are: ${list(legal)}.`,
   )
 
+/** A binomial model with an exposure has cloglog alone. */
+export const linkNotPerUnit = (link: string, exposure: string, at: Place): Notice =>
+  fault(
+    "link-not-per-unit",
+    "beside",
+    at,
+    `Under the link ${link} a binomial mean has no value per unit of ${exposure}.`,
+    "Under an exposure only cloglog has one: leave the others out.",
+  )
+
 /** The number of parameters a link wants: none or one here. */
 export const linkParameters = (name: string, wants: number, at: Place): Notice =>
   fault(

@@ -11,6 +11,7 @@ const others = [
   "model m\n  data d\n  response k out of n\n  family binomial\n  link logit\n  predictor x + lot",
   "model bare\n  data d\n  response k out of n\n  family binomial\n  link logit\n  predictor intercept",
   "model line\n  data d\n  response k\n  family poisson\n  link identity\n  predictor x",
+  "model rate\n  data d\n  response k out of n\n  family binomial\n  link cloglog\n  predictor x\n  exposure x",
   'value word = "a"',
   "value one = 1",
 ]
@@ -46,6 +47,7 @@ describe("a notice of scales", () => {
     ["refuses a link of other means", "scales\n  model line\n  across x\n  beside logit", 'scales/link-not-legal at "logit"'],
     ["wants a parameter", "scales\n  model line\n  across x\n  beside power", 'scales/link-parameters at "power"'],
     ["wants no parameter", "scales\n  model line\n  across x\n  beside log(2)", 'scales/link-parameters at "log(2)"'],
+    ["refuses a link that has no mean per unit", "scales\n  model rate\n  beside cloglog, logit", 'scales/link-not-per-unit at "logit"'],
     ["says where a line leaves the means", "scales\n  model line\n  across x\n  from -9 to 3", 'scales/leaves-range at ""'],
   ])("%s", async (_, text, expected) => {
     expect(await noticesOf(text)).toEqual([expected])
@@ -54,5 +56,11 @@ describe("a notice of scales", () => {
   it("offers the nearest column as a mend", async () => {
     const book = await settledBook([...others, "scales\n  model m\n  across lott"], { "d.csv": csv })
     expect(book.notices("scales")[0]?.mend?.edits).toEqual([{ cell: null, clause: "across", nth: 0, says: "lot" }])
+  })
+
+  it("puts cloglog alone on the strip of a binomial model with an exposure", async () => {
+    const book = await settledBook([...others, "scales\n  model rate\n  across x"], { "d.csv": csv })
+    expect(book.notices("scales")).toEqual([])
+    expect(book.summary("scales").strip).toEqual([{ link: "cloglog", delta_aic: 0 }])
   })
 })
