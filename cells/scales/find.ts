@@ -55,7 +55,7 @@ export async function found(said: ScalesSaid, inputs: Inputs, work: Work): Promi
     complete,
   })
   const left = leaving(own, setting.axis.label)
-  if (left !== null) notices.push(say.leavesRange(own.link, left))
+  if (left !== null) notices.push(say.leavesRange(own.link, left, said.range?.at ?? null))
   // In a gesture that leaves the model as it was, the candidates fitted before are drawn again: only the plot has changed.
   const before = new Map<string, CandidateFound>()
   if (isScales(work.near) && isSame(work.near.mark, mark)) for (const each of work.near.candidates) before.set(each.link, each)

@@ -162,11 +162,11 @@ export const linkParameters = (name: string, wants: number, at: Place): Notice =
   )
 
 /** The curve leaves the means that are possible somewhere on the plot. */
-export const leavesRange = (link: string, from: string): Notice => ({
+export const leavesRange = (link: string, from: string, stated: Place | null): Notice => ({
   level: "warning",
   code: "scales/leaves-range",
-  clause: "from",
-  at: heading,
+  clause: stated === null ? null : "from",
+  at: stated ?? heading,
   text: `Under ${link} the line leaves the means that are possible ${from}; there the curve is cut.`,
   hint: "Choose a link that reaches only possible means, or a shorter range.",
   mend: null,

@@ -66,7 +66,9 @@ export class Plot {
         : heldLine(model, of, plan.of, grid, code)
       curves.push(curveOf(link, this.possible, line, c, grid, level, inside))
       if (!plan.points || rows.length === 0) continue
-      const at = (x: Float64Array): Float64Array => (plan.averaged ? along(grid, line.eta, x) : heldLine(model, of, plan.of, x, code).eta)
+      const known = plan.averaged ? await this.averagedAt(of, link, rows, code, line) : null
+      const at = (x: Float64Array): Float64Array =>
+        known === null ? heldLine(model, of, plan.of, x, code).eta : along(known.x, known.eta, x)
       points.push(pointsOf(model, of, spec, rows, plan.x, at, level, plan.axis.levels !== null))
     }
     const mean = overallMean(model)
@@ -85,6 +87,24 @@ export class Plot {
       middle: { eta: link.eta(mean), slope: 1 / link.slope(link.eta(mean)) },
       fit: own || model.problem.rows > keptRows ? null : of,
     }
+  }
+
+  /**
+   * The averaged curve at every x of these rows; where that is too much work, or a hand waits for it, the curve on the grid, between whose
+   * points a circle is then off by less than can be seen.
+   */
+  private async averagedAt(
+    of: Fit,
+    link: Link,
+    rows: Uint32Array,
+    code: number | null,
+    line: Line,
+  ): Promise<{ readonly x: Float64Array; readonly eta: Float64Array }> {
+    const { model, plan, grid, work } = this
+    const places = Float64Array.from(new Set(Float64Array.from(rows, (row) => plan.x[row] as number))).sort()
+    if (work.near !== null || places.length * model.problem.rows > averagedWork) return { x: grid, eta: line.eta }
+    const { eta } = await averagedLine(model, of, link, plan.of, places, code, () => work.checkpoint())
+    return { x: places, eta }
   }
 
   /** The link as the fit has it: the reciprocal on the side of zero its means are on. */
@@ -136,6 +156,9 @@ function along(x: Float64Array, y: Float64Array, at: Float64Array): Float64Array
     }
     const [from, to] = [x[low] as number, x[high] as number]
     const share = to > from ? Math.min(1, Math.max(0, (place - from) / (to - from))) : 0
+    // At a place of the grid nothing is mixed, so that an infinite neighbour does no harm.
+    if (share === 0) return y[low] as number
+    if (share === 1) return y[high] as number
     return (y[low] as number) + share * ((y[high] as number) - (y[low] as number))
   })
 }

@@ -48,7 +48,7 @@ describe("a notice of scales", () => {
     ["wants a parameter", "scales\n  model line\n  across x\n  beside power", 'scales/link-parameters at "power"'],
     ["wants no parameter", "scales\n  model line\n  across x\n  beside log(2)", 'scales/link-parameters at "log(2)"'],
     ["refuses a link that has no mean per unit", "scales\n  model rate\n  beside cloglog, logit", 'scales/link-not-per-unit at "logit"'],
-    ["says where a line leaves the means", "scales\n  model line\n  across x\n  from -9 to 3", 'scales/leaves-range at ""'],
+    ["says where a line leaves the means", "scales\n  model line\n  across x\n  from -9 to 3", 'scales/leaves-range at "from -9 to 3"'],
   ])("%s", async (_, text, expected) => {
     expect(await noticesOf(text)).toEqual([expected])
   })
