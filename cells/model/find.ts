@@ -9,7 +9,7 @@ import type { Bound } from "../language/form.ts"
 import { variablesOf } from "../language/predictor.ts"
 import { canonicalLink } from "../language/vocabulary.ts"
 import { fitPart, type Label, type ModelFinding, type ModelFound, modelIn } from "../model-finding.ts"
-import type { Fit, Fitted } from "../statistics/fit.ts"
+import type { Fit } from "../statistics/fit.ts"
 import { fit } from "../statistics/index.ts"
 import type { LinkSpec, Problem, Term, Variable } from "../statistics/problem.ts"
 import type { Column } from "../table/column.ts"
@@ -59,7 +59,7 @@ export async function found(said: ModelSaid, inputs: Inputs, work: Work): Promis
   const rows = choice.used.reduce((count, is) => count + is, 0)
   if (hasFault(notices)) return nothing()
   if (rows === 0) {
-    notice(say.noRows(table.name, choice.unused))
+    notice(say.noRows(table.name, choice.unused, data.at))
     return nothing()
   }
   await work.checkpoint()
@@ -91,7 +91,7 @@ export async function found(said: ModelSaid, inputs: Inputs, work: Work): Promis
   remarks(said, problem, response, link, notice)
   const fitted = await fit(problem, () => work.checkpoint(), nearFit(work.near, problem))
   if (!fitted.ok) {
-    notice(noFitNotice(fitted, table, choice.unused))
+    notice(fitted.why === "no_rows" ? say.noRows(table.name, choice.unused, data.at) : say.noFit(fitted.why, fitted.detail))
     return nothing()
   }
   fitNotices(said, problem, fitted.fit, (row) => table.rowName(kept[row] as number), notice)
@@ -182,10 +182,6 @@ function nearFit(near: Value | null, problem: Problem): Fit | null {
       Object.values(of.variables).map((variable) => (variable.type === "factor" ? variable.levels : null)),
     ])
   return shape(last.problem) === shape(problem) ? last.fit : null
-}
-
-function noFitNotice(fitted: Extract<Fitted, { ok: false }>, table: TableHere, unused: ModelFinding["unused"]): Notice {
-  return fitted.why === "no_rows" ? say.noRows(table.name, unused) : say.noFit(fitted.why, fitted.detail)
 }
 
 const labelsOf = (table: TableHere, names: readonly Name[]): { readonly [name: Name]: Label } =>

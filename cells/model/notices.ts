@@ -500,11 +500,11 @@ export const pieceLost = (says: string, at: RowsAt, row: RowName, place: Place):
 
 // The rows used.
 
-export const noRows = (table: Name, unused: readonly { readonly by: string; readonly rows: number }[]): Notice =>
+export const noRows = (table: Name, unused: readonly { readonly by: string; readonly rows: number }[], at: Place): Notice =>
   fault(
     "no-rows",
-    null,
-    heading,
+    "data",
+    at,
     unused.length === 0
       ? `${table} has no rows.`
       : `No row of ${table} has everything the model needs: ${list(unused.map(({ by, rows: count }) => `${by} in ${rows(count)}`))}.`,
@@ -594,13 +594,13 @@ export const gaveUp = (iterations: number, score: number): Notice =>
     fitHints.gave_up,
   )
 
-/** `edge` are the rows whose mean is at the end of its range. */
-export const atBoundary = (edge: readonly number[], row: RowName): Notice =>
+/** `edge` are the rows whose mean is at the end of its range; `at` is the link clause, null where there is none. */
+export const atBoundary = (edge: readonly number[], row: RowName, at: Place | null): Notice =>
   notice(
     "warning",
     "boundary",
-    "link",
-    heading,
+    at === null ? null : "link",
+    at ?? heading,
     edge[0] === undefined
       ? "The best fit lies where a mean reaches the end of what is possible, so errors in the usual sense do not exist."
       : `The best fit lies where the mean of ${edge.length === 1 ? row(edge[0]) : `${rows(edge.length)} (first: ${row(edge[0])})`} reaches the end of what is possible, so errors in the usual sense do not exist.`,
@@ -613,12 +613,16 @@ const infiniteHints: Readonly<Record<string, string>> = {
 }
 
 /** `terms` with where each goes. */
-export const atInfinity = (terms: readonly { readonly of: string; readonly toward: "infinity" | "-infinity" }[], family: string): Notice =>
+export const atInfinity = (
+  terms: readonly { readonly of: string; readonly toward: "infinity" | "-infinity" }[],
+  family: string,
+  at: Place,
+): Notice =>
   notice(
     "warning",
     "infinite",
     "predictor",
-    heading,
+    at,
     `The fit gets ever better as ${
       terms.length === 0
         ? "a coefficient goes to infinity"

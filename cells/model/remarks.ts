@@ -48,13 +48,18 @@ const namedDependences = 4
 export function fitNotices(said: ModelSaid, problem: Problem, of: Fit, rowName: say.RowName, notice: Say): void {
   const { certificate } = of
   const at: Place = { clause: said.predictorAt, from: 0, to: 1 }
+  const placeOf = (term: number): Place => {
+    const places = said.predictor?.terms[term]?.pieces.map((piece) => piece.at) ?? []
+    if (places.length === 0) return at
+    return { ...at, from: Math.min(...places.map(({ from }) => from)), to: Math.max(...places.map(({ to }) => to)) }
+  }
   const dependent = certificate.evidence?.dependent ?? []
   for (const { column, on } of dependent.slice(0, namedDependences)) {
     notice(
       say.dependentTerm(
         column,
         on.map((part) => part.column),
-        at,
+        placeOf(of.coefficients.find((coefficient) => coefficient.of === column)?.term ?? -1),
       ),
     )
   }
@@ -71,12 +76,13 @@ export function fitNotices(said: ModelSaid, problem: Problem, of: Fit, rowName: 
       say.atBoundary(
         (certificate.evidence?.edge ?? []).map(({ row }) => row),
         rowName,
+        said.link?.at ?? null,
       ),
     )
   }
   if (certificate.class === "infinite") {
     const moved = of.coefficients.flatMap(({ of: term, toward }) => (toward === null ? [] : [{ of: term, toward }]))
-    notice(say.atInfinity(moved, problem.family.name))
+    notice(say.atInfinity(moved, problem.family.name, at))
   }
   if (certificate.class === "several_maxima") notice(say.severalMaxima())
   if (of.df === 0 && of.dispersion.estimated && of.dispersion.value === null) notice(say.nothingLeft())

@@ -70,7 +70,12 @@ export async function rowsUsed(
       await work.checkpoint()
     }
   }
-  if (response.trials !== null) without("there are no trials", response.trials, isNought)
+  if (response.trials !== null) {
+    // Successes out of no trials are infinite as a share: such a row stays, and is a fault that names it.
+    const { trials, y } = response
+    const none = trials.map((count, row) => (count === 0 && Math.abs(y[row] as number) !== Infinity ? 1 : 0))
+    without("there are no trials", none, (is) => is === 1)
+  }
   if (repeat !== null) without("repeat is 0", repeat, isNought)
   if (precision !== null) without("precision is 0", precision, isNought)
   return { used, unused }

@@ -361,8 +361,8 @@ function combination(
   })
 }
 
-/** A whole number where it is one but for rounding. */
-const tidy = (x: number): number => (Math.abs(x - Math.round(x)) < 1e-9 ? Math.round(x) : x)
+/** A whole number other than 0 where it is one but for rounding: a part of 1e-12 may be all of a column in another unit. */
+const tidy = (x: number): number => (Math.round(x) !== 0 && Math.abs(x - Math.round(x)) < 1e-9 ? Math.round(x) : x)
 
 function orthogonalBasis(written: readonly Float64Array[], kept: readonly number[], change: Change & { type: "orthogonal" }): Basis {
   const n = written[0]?.length ?? 0

@@ -261,6 +261,9 @@ describe("faults of rows", () => {
       'fault not-whole at "k": k counts something, but it is 2.5 in row 15 of terrace.csv.',
       'fault more-than-trials at "k": Row 13 of terrace.csv has k 9 out of n 4.',
     ])
+    expect(await rows(shares, { k: number(1, 2, 0, 1, 2, 2), n: number(4, 4, 0, 0, 4, 4) })).toEqual([
+      'fault more-than-trials at "k": Row 13 of terrace.csv has k 1 out of n 0.',
+    ])
     expect(await rows(shares, { k: number(1, 2, -1, 2, 2, 2), n: number(4, 4.5, 4, 4, 4, -2) })).toEqual([
       'fault count-negative at "k": k counts something, but it is −1 in row 12 of terrace.csv.',
       'fault not-whole at "n": n counts something, but it is 4.5 in row 11 of terrace.csv.',
@@ -303,7 +306,7 @@ describe("faults of rows", () => {
 
   it("says that no row is left, and why", async () => {
     expect(await rows(counts, { frost: number(null, null, null, 1, null, null), buds: count(1, 2, 3, null, 4, 5) })).toEqual([
-      "fault no-rows: No row of d has everything the model needs: buds is missing in 1 row and frost is missing in 5 rows.",
+      'fault no-rows at "d": No row of d has everything the model needs: buds is missing in 1 row and frost is missing in 5 rows.',
     ])
   })
 })
@@ -362,8 +365,19 @@ describe("warnings and remarks", () => {
       ...beds,
       twice: number(4, 6, 10, 12, 16, 18),
     })
-    expect(told(outcome)).toEqual(['warning dependent-term at "predictor": The term twice says nothing that frost does not already say.'])
+    expect(told(outcome)).toEqual(['warning dependent-term at "twice": The term twice says nothing that frost does not already say.'])
     expect(outcome.ok).toBe(true)
+  })
+
+  it("says of what a term is a multiple, however small", async () => {
+    const outcome = await finding("response buds\nfamily poisson\nlink log\npredictor frost + lot.tiny", {
+      ...beds,
+      lot: category(Array(6).fill("a")),
+      tiny: number(...[2, 3, 5, 6, 8, 9].map((frost) => frost * 1e-12)),
+    })
+    expect(told(outcome).at(-1)).toBe(
+      'warning dependent-term at "lot.tiny": The term lot is a . tiny says nothing that frost does not already say.',
+    )
   })
 
   it("says which levels were left out, and which column has one level only", async () => {
@@ -402,7 +416,7 @@ describe("warnings and remarks", () => {
   it("says which coefficients run to infinity, and why", async () => {
     const apart = await finding("response y\nfamily binomial\nlink logit\npredictor x", { x: number(1, 2, 3, 4), y: truth(0, 0, 1, 1) })
     expect(told(apart)).toEqual([
-      "warning infinite: The fit gets ever better as intercept goes to −∞ and x goes to ∞; what is shown is the limit.",
+      'warning infinite at "predictor": The fit gets ever better as intercept goes to −∞ and x goes to ∞; what is shown is the limit.',
     ])
     expect(apart.notices[0]?.hint).toBe(
       "Something separates successes from failures wholly; only data where both occur could say how much.",
@@ -415,7 +429,7 @@ describe("warnings and remarks", () => {
       y: count(9, 3, 1, 0, 0, 0),
     })
     expect(told(edge)).toEqual([
-      "warning boundary: The best fit lies where the mean of row 15 of terrace.csv reaches the end of what is possible, so errors in the usual sense do not exist.",
+      'warning boundary at "identity": The best fit lies where the mean of row 15 of terrace.csv reaches the end of what is possible, so errors in the usual sense do not exist.',
     ])
   })
 
