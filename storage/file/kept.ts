@@ -35,6 +35,11 @@ export interface Kept {
   readonly trail: readonly Entry[]
   /** As it was read; null for a notebook that comes from no sealed file. */
   readonly seal: Seal | null
+  /**
+   * The first place that is not as it was written or sealed, in words: it is only read until the person decides. Null where all is whole, or
+   * where that was decided. It is kept on the shelf and never in a file, since a file shows it by itself.
+   */
+  readonly doubt: string | null
 }
 
 /** A notebook that begins now, with the first entry of its trail. */
@@ -58,5 +63,6 @@ export function newlyKept(start: {
     findings: [],
     trail: appended([], { time, by, kind: "start", body: { id, title, writer } }),
     seal: null,
+    doubt: null,
   }
 }

@@ -136,6 +136,7 @@ class Reading {
         findings: [...this.#findings.values()],
         trail: this.#trail,
         seal: this.#seal?.seal ?? null,
+        doubt: this.#first === null ? null : [this.#first.text, this.#first.hint].join(" ").trim(),
       },
       bytes,
       standing: this.#first !== null ? { status: "broken", first: this.#first } : { status: this.#seal === null ? "unsealed" : "sealed" },

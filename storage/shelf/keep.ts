@@ -45,6 +45,7 @@ export async function stored(database: Database, id: string): Promise<Stored | n
       findings: [...head.order.flatMap((cell) => found.get(cell) ?? []), ...[...found.values()].filter(({ cell }) => !texts.has(cell))],
       trail: trail.map(({ entry }) => entry),
       seal: head.seal,
+      doubt: head.doubt ?? null,
     },
     revision: head.revision,
   }
@@ -168,10 +169,10 @@ const encoder = new TextEncoder()
 
 function headOf(kept: Kept, revision: number): HeadRecord {
   const { id, title, cells, enclosures } = kept.notebook
-  const { made, changed, writer, seal } = kept
+  const { made, changed, writer, seal, doubt } = kept
   const texts = cells.reduce((sum, cell) => sum + encoder.encode(cell.text).length, 0)
   const size = enclosures.reduce((sum, file) => sum + file.size, texts)
-  return { id, title, made, changed, writer, order: cells.map((cell) => cell.id), enclosures, seal, revision, size }
+  return { id, title, made, changed, writer, order: cells.map((cell) => cell.id), enclosures, seal, doubt, revision, size }
 }
 
 /** A cell that was not written to is the same object, so most are passed over without looking at their text. */

@@ -18,6 +18,8 @@ export interface HeadRecord {
   readonly order: readonly CellId[]
   readonly enclosures: readonly Enclosed[]
   readonly seal: Seal | null
+  /** Left out by notebooks kept before there was one. */
+  readonly doubt?: string | null
   /** One more with each save, so that a save over somebody else's is noticed. */
   readonly revision: number
   /** Bytes of its texts and enclosures. */

@@ -11,8 +11,6 @@ export interface Book {
   readonly bytes: ReadonlyMap<string, Blob>
   /** About the file as a whole, the gravest first. */
   readonly notices: readonly Notice[]
-  /** Not as it was sealed: it is read only until the person decides. */
-  readonly broken: boolean
 }
 
 /** A sample as the list of samples has it. */
@@ -33,10 +31,9 @@ export async function bookOfFile(file: File): Promise<{ readonly book: Book | nu
     const texts = cells.map(({ text }) => text)
     return { book: { ...(await bookOfTexts(titleOf(texts, file.name), texts, new Map())), notices }, notices }
   }
-  const { kept, bytes, standing, notices } = await readNotebook(file)
+  const { kept, bytes, notices } = await readNotebook(file)
   if (kept === null) return { book: null, notices }
-  const grave = notices.filter(({ level }) => level !== "remark")
-  return { book: { kept: withoutLost(kept, bytes), bytes, notices: grave, broken: standing.status === "broken" }, notices }
+  return { book: { kept, bytes, notices: notices.filter(({ level }) => level !== "remark") }, notices }
 }
 
 /** The samples that come with the program. */
@@ -76,13 +73,7 @@ async function bookOfTexts(title: string, texts: readonly string[], files: Reado
   }
   const cells = texts.map((text): Cell => ({ id: randomId(), text }))
   const kept = newlyKept({ id: crypto.randomUUID(), title, cells, enclosures, time: now(), by: "this browser", writer })
-  return { kept, bytes, notices: [], broken: false }
-}
-
-/** Enclosures without bytes are left out, so that the cell that reads them asks for the file by name. */
-function withoutLost(kept: Kept, bytes: ReadonlyMap<string, Blob>): Kept {
-  const enclosures = kept.notebook.enclosures.filter(({ sha256 }) => bytes.has(sha256))
-  return enclosures.length === kept.notebook.enclosures.length ? kept : { ...kept, notebook: { ...kept.notebook, enclosures } }
+  return { kept, bytes, notices: [] }
 }
 
 /** What a note's first title says, else the name of the file. */

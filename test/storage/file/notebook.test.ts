@@ -291,6 +291,7 @@ describe("a file that is not whole", () => {
     const opened = await readText(text)
     expect(opened.standing).toMatchObject({ status: "broken", first: { code: "file/broken-seal", line: 4 } })
     expect(opened.kept?.notebook.cells[0]?.text).toBe("data e")
+    expect(opened.kept?.doubt).toContain("not as it was sealed")
   })
 
   it.each([

@@ -103,6 +103,17 @@ describe("the shelf", () => {
     ])
   })
 
+  it("keeps what stands against writing in a notebook until that is decided", async () => {
+    const browser = newBrowser()
+    const shelf = await shelfOf(browser)
+    value(await shelf.add({ ...book(["data d"]), doubt: "It is not as it was sealed." }))
+    const loan = value(await shelf.take(id, quiet))
+    expect(loan.kept.doubt).toBe("It is not as it was sealed.")
+    value(await loan.save({ ...loan.kept, doubt: null }))
+    await shelf.close()
+    expect(value(await (await shelfOf(browser)).take(id, quiet)).kept.doubt).toBeNull()
+  })
+
   it("refuses a notebook that is there already", async () => {
     const shelf = await shelfOf()
     value(await shelf.add(book(["data d"])))
