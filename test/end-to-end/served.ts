@@ -45,8 +45,8 @@ export interface Window {
   readonly wrong: readonly string[]
 }
 
-/** A window at an address, once its first row is there. */
-export async function windowAt(context: BrowserContext, address: string): Promise<Window> {
+/** A window at an address, once its first row is there, or whatever else is waited for. */
+export async function windowAt(context: BrowserContext, address: string, there = "etamu-row"): Promise<Window> {
   const page = await context.newPage()
   const wrong: string[] = []
   page.on("console", (message) => {
@@ -59,6 +59,6 @@ export async function windowAt(context: BrowserContext, address: string): Promis
     addEventListener("securitypolicyviolation", (event) => tell(`${event.violatedDirective} ${event.blockedURI} ${event.sourceFile}`))
   })
   await page.goto(address)
-  await page.waitForSelector("etamu-row")
+  await page.waitForSelector(there)
   return { page, wrong }
 }

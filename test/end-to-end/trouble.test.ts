@@ -67,8 +67,80 @@ describe("trouble", () => {
     await opened(page, path)
     await saysBand(page, /not as it was sealed|changed after it was written/)
     await expect.poll(() => page.locator("etamu-menu.tools").count()).toBe(0)
+
+    // Nothing is decided by loading the page again, nor can the break be sealed over.
+    await page.reload()
+    await page.waitForSelector("etamu-row")
+    await saysBand(page, /not as it was sealed|changed after it was written/)
+    expect(await page.locator("span.saved").textContent()).toBe("read only until you decide")
+    expect(await page.locator("etamu-menu.tools").count()).toBe(0)
+    await page.getByRole("button", { name: "Hand over" }).click()
+    await saysBand(page, /Not handed over/)
+
     await page.getByRole("button", { name: "Write in it all the same" }).click()
     await expect.poll(() => page.locator("etamu-menu.tools").count()).toBeGreaterThan(0)
+    await expect.poll(() => page.locator("span.saved").textContent()).toMatch(/^saved and read back/)
+    await page.reload()
+    await expect.poll(() => page.locator("etamu-menu.tools").count()).toBeGreaterThan(0)
+    expect(await bands(page)).toEqual([])
+    // From then on the trail says that it was written in although it was not whole.
+    expect(await readFile(await handedOver(page), "utf8")).toMatch(
+      /"@record":"trail","body":\{"first":"[^"]+","intact":false.*"kind":"opened"/,
+    )
+    expect(wrong).toEqual([])
+    await context.close()
+  })
+
+  it("with an enclosure whose bytes are missing takes the file that was meant, and says so of another", async () => {
+    const first = await browser.newContext()
+    const whole = await handedOver((await windowAt(first, server.address)).page)
+    await first.close()
+    const records = (await readFile(whole, "utf8")).split("\n")
+    const csv = (JSON.parse(records.find((line) => line.startsWith('{"@record":"bytes"')) ?? "{}") as { data: string }).data
+    const id = "00000000-0000-4000-8000-000000000001"
+    const withoutBytes = join(folder, "without-bytes.etamu")
+    const left = records.filter((line) => !/^{"@record":"(bytes|seal)"/.test(line)).join("\n")
+    await writeFile(withoutBytes, left.replaceAll(/"id":"[0-9a-f-]{36}"/g, `"id":"${id}"`).replaceAll(/^{"@record":"trail".*\n/gm, ""))
+    // A browser that has never held these bytes, so that it cannot know them.
+    const context = await browser.newContext()
+    await context.route("**/samples/index.json", (route) => route.fulfill({ json: [] }))
+    const { page, wrong } = await windowAt(context, server.address, ".adder.end")
+    await opened(page, withoutBytes)
+    const asks = page.locator("etamu-row.kind-data .missing")
+    await expect.poll(() => asks.textContent()).toMatch(/was written with\s+bottles\.csv/)
+
+    // Another file of that name is not taken in silence.
+    const other = join(folder, "bottles.csv")
+    await writeFile(other, `${csv + csv.split("\n").at(-2)}\n`)
+    const choosing = page.waitForEvent("filechooser")
+    await asks.getByRole("button", { name: "choose it" }).click()
+    await (await choosing).setFiles(other)
+    await saysBand(page, /This is not the bottles\.csv that the notebook was written with.*SHA-256/)
+    expect(await asks.count()).toBe(1)
+
+    // What the notebook states outlives the page, bytes or no bytes.
+    await page.reload()
+    await expect.poll(() => asks.textContent()).toMatch(/was written with/)
+
+    // The file that was meant is known by its bytes, whatever it is called by now.
+    await page.evaluate((text) => {
+      const transfer = new DataTransfer()
+      transfer.items.add(new File([text], "copy of bottles (1).csv", { type: "text/csv" }))
+      dispatchEvent(new DragEvent("drop", { dataTransfer: transfer, bubbles: true, cancelable: true }))
+    }, csv)
+    await expect.poll(() => asks.count()).toBe(0)
+    await expect.poll(() => page.locator("etamu-row.kind-data").getAttribute("aria-label"), { timeout: 10_000 }).toMatch(/: ready/)
+    expect(await page.locator("etamu-row.kind-data").count()).toBe(1)
+
+    // It is an edit like others: undone, the cell asks again, and another file can be used all the same.
+    await page.getByRole("button", { name: "Undo" }).click()
+    await expect.poll(() => asks.count()).toBe(1)
+    const again = page.waitForEvent("filechooser")
+    await asks.getByRole("button", { name: "choose it" }).click()
+    await (await again).setFiles(other)
+    await page.getByRole("button", { name: "Use it all the same" }).click()
+    await expect.poll(() => asks.count()).toBe(0)
+    await expect.poll(() => page.locator("etamu-row.kind-data").getAttribute("aria-label"), { timeout: 10_000 }).toMatch(/: ready/)
     expect(wrong).toEqual([])
     await context.close()
   })

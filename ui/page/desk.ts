@@ -27,19 +27,27 @@ export type DeskEvent =
   | { readonly type: "settled" }
   | { readonly type: "writable" }
 
+/** What came of enclosing a file. `stated` is what the notebook states where the file is another. */
+export type Enclosing =
+  | { readonly ok: true; readonly cell: CellId | null; readonly replaced: boolean }
+  | { readonly ok: false; readonly why: string; readonly stated: Enclosed | null }
+
 export class Desk {
   readonly engine: Engine
   readonly bytes: Bytes
   #readOnly: boolean
+  readonly #stated: readonly Enclosed[]
   #due: ReturnType<typeof setTimeout> | undefined
   readonly #cells = new Map<CellId, Set<() => void>>()
   readonly #listeners = new Set<(event: DeskEvent) => void>()
   readonly #leave: () => void
 
-  constructor(engine: Engine, bytes: Bytes, readOnly: boolean) {
+  /** `stated` are the enclosures that the notebook names and whose bytes are not here. */
+  constructor(engine: Engine, bytes: Bytes, readOnly: boolean, stated: readonly Enclosed[] = []) {
     this.engine = engine
     this.bytes = bytes
     this.#readOnly = readOnly
+    this.#stated = stated
     this.#leave = engine.subscribe((event) => this.#heard(event))
   }
 
@@ -47,7 +55,13 @@ export class Desk {
     return this.engine.notebook
   }
 
-  /** True where another tab writes this notebook. */
+  /** Enclosures whose bytes are still not here. */
+  get stated(): readonly Enclosed[] {
+    const held = new Set(this.notebook.enclosures.map(({ name }) => name))
+    return this.#stated.filter(({ name }) => !held.has(name))
+  }
+
+  /** True where another tab writes this notebook, or where it is not as it was written and nobody has decided yet. */
   get readOnly(): boolean {
     return this.#readOnly
   }
@@ -141,19 +155,31 @@ export class Desk {
     if (title !== this.notebook.title) this.#step([{ type: "title", title }], "name the notebook")
   }
 
+  /** The file under the name by which the notebook states the same bytes, if it does: a file may have been renamed on its way. */
+  async asStated(file: File): Promise<File> {
+    const { stated } = this
+    if (stated.every(({ size }) => size !== file.size) || stated.some(({ name }) => name === file.name)) return file
+    const sha256 = await blobDigest(file)
+    const known = stated.find((each) => each.sha256 === sha256)
+    return known === undefined ? file : new File([file], known.name, { type: file.type })
+  }
+
   /**
    * Encloses a file, in the place of one with the same name; `cell` is a new cell that reads it. One step of undo. Gives the reason in a
-   * sentence where it cannot.
+   * sentence where it cannot. A file whose bytes are not those that the notebook states under its name is not taken unless that is `meant`.
    */
-  async enclose(
-    file: File,
-    cell: { readonly at: number; readonly text: string } | null,
-  ): Promise<{ readonly ok: true; readonly cell: CellId | null } | { readonly ok: false; readonly why: string }> {
-    if (this.#readOnly) return { ok: false, why: "This notebook is only read here, so nothing can be enclosed." }
+  async enclose(file: File, cell: { readonly at: number; readonly text: string } | null, meant = false): Promise<Enclosing> {
+    if (this.#readOnly) return { ok: false, why: "This notebook is only read here, so nothing can be enclosed.", stated: null }
     if (file.size > mostEnclosureBytes) {
-      return { ok: false, why: `${file.name} is larger than ${mostEnclosureBytes / 2 ** 20} MiB, the most a notebook encloses.` }
+      return {
+        ok: false,
+        why: `${file.name} is larger than ${mostEnclosureBytes / 2 ** 20} MiB, the most a notebook encloses.`,
+        stated: null,
+      }
     }
     const sha256 = await blobDigest(file)
+    const stated = this.stated.find(({ name }) => name === file.name) ?? null
+    if (stated !== null && stated.sha256 !== sha256 && !meant) return { ok: false, why: otherFile(file, sha256, stated), stated }
     this.bytes.put(sha256, file)
     const enclosed: Enclosed = { name: file.name, media: mediaOf(file.name), size: file.size, sha256 }
     const known = this.notebook.enclosures.find(({ name }) => name === file.name)
@@ -163,7 +189,7 @@ export class Desk {
     const made = cell === null ? null : { id: newCellId(this.notebook), text: cell.text }
     if (cell !== null && made !== null) changes.push({ type: "insert", at: cell.at, cell: made })
     this.#step(changes, `enclose ${file.name}`)
-    return { ok: true, cell: made?.id ?? null }
+    return { ok: true, cell: made?.id ?? null, replaced: known !== undefined && known.sha256 !== sha256 }
   }
 
   undo(): void {
@@ -248,6 +274,12 @@ export class Desk {
   #tell(event: DeskEvent): void {
     for (const told of this.#listeners) told(event)
   }
+}
+
+function otherFile(file: File, sha256: string, stated: Enclosed): string {
+  const size = (bytes: number): string => `${bytes.toString().replace(/\B(?=(\d{3})+$)/g, ",")} bytes`
+  const sizes = file.size === stated.size ? "" : ` It has ${size(file.size)}, and that one has ${size(stated.size)}.`
+  return `This is not the ${stated.name} that the notebook was written with: the SHA-256 of its bytes begins with ${sha256.slice(0, 8)}, and the notebook states ${stated.sha256.slice(0, 8)}.${sizes}`
 }
 
 /** Short, and not in use here; that it was never used here before is as good as certain. */

@@ -4,6 +4,7 @@
 import { html, LitElement, nothing, type TemplateResult } from "lit"
 import { createRef, ref } from "lit/directives/ref.js"
 import { words } from "../../cells/words.ts"
+import type { Enclosed } from "../../runtime/document.ts"
 import { createEngine } from "../../runtime/index.ts"
 import { type Kept, notebookFile } from "../../storage/file/index.ts"
 import { type Listed, type Loan, openShelf, type Room, type Shelf } from "../../storage/shelf/index.ts"
@@ -30,6 +31,8 @@ interface Band {
   readonly id: string
   readonly text: string
   readonly trouble: boolean
+  /** It cannot be put away: it is true until something is done. */
+  readonly stays?: true
   readonly acts: readonly { readonly label: string; act(): void }[]
 }
 
@@ -157,7 +160,7 @@ export class Page extends LitElement {
     return html`<div class=${band.trouble ? "band trouble" : "band"} role=${band.trouble ? "alert" : "status"}>
       <p>${band.text}</p>
       ${band.acts.map(({ label, act }) => html`<button type="button" @click=${act}>${label}</button>`)}
-      <button type="button" @click=${() => this.#unsay(band.id)}>Put away</button>
+      ${band.stays ? nothing : html`<button type="button" @click=${() => this.#unsay(band.id)}>Put away</button>`}
     </div>`
   }
 
@@ -219,8 +222,8 @@ export class Page extends LitElement {
       }
       if (!did.ok) this.#say({ id: "shelf", text: `${did.notice.text} ${did.notice.hint ?? ""}`, trouble: true, acts: [] })
     }
-    await this.#lay(made, bytes, null, book.broken)
-    this.#sayNotices(notices, book.broken)
+    await this.#lay(made, bytes, null)
+    this.#sayNotices(notices)
   }
 
   #alreadyThere(book: Book): void {
@@ -265,7 +268,7 @@ export class Page extends LitElement {
       } else {
         this.#say({ id: "writing", text: "The other tab is done: this one writes from here on.", trouble: false, acts: [] })
         this.#unsay("reading")
-        void this.#lay(event.kept, new Map(), loan, false)
+        void this.#lay(event.kept, new Map(), loan)
       }
     })
     if (!did.ok) {
@@ -274,8 +277,8 @@ export class Page extends LitElement {
     }
     const loan = did.value
     this.bands = []
-    await this.#lay(loan.kept, from?.bytes ?? new Map(), loan, from?.broken ?? false)
-    if (from !== null) this.#sayNotices(from.notices, from.broken)
+    await this.#lay(loan.kept, from?.bytes ?? new Map(), loan)
+    if (from !== null) this.#sayNotices(from.notices)
     if (loan.role === "reading") {
       this.#say({
         id: "reading",
@@ -289,7 +292,7 @@ export class Page extends LitElement {
   }
 
   /** Lays a notebook on the desk: engine, bytes, keeping. */
-  async #lay(book: Kept, bytes: ReadonlyMap<string, Blob>, loan: Loan | null, readOnly: boolean): Promise<void> {
+  async #lay(book: Kept, bytes: ReadonlyMap<string, Blob>, loan: Loan | null): Promise<void> {
     const started = this.#started
     if (started === null) return
     await this.#close(loan)
@@ -297,10 +300,12 @@ export class Page extends LitElement {
       const blob = bytes.get(sha256) ?? started.bytes.get(sha256) ?? (await this.#fromShelf(sha256))
       if (blob !== null) started.bytes.put(sha256, blob)
     }
-    const enclosures = book.notebook.enclosures.filter(({ sha256 }) => started.bytes.get(sha256) !== null)
-    const notebook = enclosures.length === book.notebook.enclosures.length ? book.notebook : { ...book.notebook, enclosures }
+    // What has no bytes here is left out of what is evaluated, so that the cell that reads it asks for the file by name.
+    const isHere = ({ sha256 }: Enclosed): boolean => started.bytes.get(sha256) !== null
+    const stated = book.notebook.enclosures.filter((file) => !isHere(file))
+    const notebook = stated.length === 0 ? book.notebook : { ...book.notebook, enclosures: book.notebook.enclosures.filter(isHere) }
     const engine = createEngine({ words, notebook, evaluator: started.evaluator })
-    const desk = new Desk(engine, started.bytes, readOnly || loan?.role === "reading")
+    const desk = new Desk(engine, started.bytes, book.doubt !== null || loan?.role === "reading", stated)
     const why =
       loan === null && this.#shelfTrouble !== null
         ? ({
@@ -313,7 +318,7 @@ export class Page extends LitElement {
             mend: null,
           } as const)
         : null
-    this.#keeping = new Keeping(desk, { ...book, notebook }, loan, why, (saved) => {
+    this.#keeping = new Keeping(desk, book, loan, why, (saved) => {
       this.saved = saved
       if (saved.status === "trouble") {
         this.#say({
@@ -329,6 +334,7 @@ export class Page extends LitElement {
       if (event.type === "settled" && desk.isAtRest) this.spoken = this.#ledger.value?.spoken ?? ""
     })
     this.desk = desk
+    if (book.doubt !== null && loan?.role !== "reading") this.#sayDoubt(book.doubt)
     desk.rest()
     scrollTo(0, 0)
   }
@@ -387,7 +393,7 @@ export class Page extends LitElement {
     const [only] = files
     if (wanted !== null && only !== undefined && only.name !== wanted) {
       // The cell asks by a name of its own: the file is enclosed under that name.
-      await this.#enclose(new File([only], wanted, { type: only.type }))
+      await this.#enclose(renamed(only, wanted))
     } else await this.#takeIn(files)
   }
 
@@ -414,15 +420,29 @@ export class Page extends LitElement {
   }
 
   /** Encloses a data file; where no cell reads it yet, a data cell is proposed that does. */
-  async #enclose(file: File): Promise<void> {
+  async #enclose(given: File, meant = false): Promise<void> {
     const desk = this.desk
     if (desk === null) return
+    const file = await desk.asStated(given)
     const at = desk.notebook.cells.length
     const start = await dataStart(file, desk.notebook)
-    const did = await desk.enclose(file, start === null ? null : { at, text: start })
+    const did = await desk.enclose(file, start === null ? null : { at, text: start }, meant)
+    const id = `enclose ${file.name}`
     if (!did.ok) {
-      this.#say({ id: "enclose", text: did.why, trouble: true, acts: [] })
+      const { stated } = did
+      const use = { label: "Use it all the same", act: () => void this.#enclose(file, true) }
+      const other = { label: "Choose another", act: () => this.#choose(file.name) }
+      this.#say({ id, text: did.why, trouble: true, acts: stated === null ? [] : [use, other] })
       return
+    }
+    this.#unsay(id)
+    if (did.replaced) {
+      this.#say({
+        id,
+        text: `${file.name} has taken the place of the file of that name; undo brings that one back.`,
+        trouble: false,
+        acts: [],
+      })
     }
     this.spoken = did.cell === null ? `${file.name} is enclosed.` : `${file.name} is enclosed, and a cell was added that reads it.`
     if (did.cell === null) return
@@ -435,6 +455,15 @@ export class Page extends LitElement {
     const { desk } = this
     const keeping = this.#keeping
     if (desk === null || keeping === null) return
+    if (keeping.doubt !== null) {
+      this.#say({
+        id: "file",
+        text: "Not handed over: a new seal would hide that this notebook is not as it was. Decide first; the file you opened is untouched.",
+        trouble: true,
+        acts: [],
+      })
+      return
+    }
     desk.rest()
     await desk.engine.settled()
     const file = await notebookFile(keeping.kept, async (sha256) => desk.bytes.get(sha256))
@@ -524,19 +553,32 @@ export class Page extends LitElement {
     if (this.bands.some((band) => band.id === id)) this.bands = this.bands.filter((band) => band.id !== id)
   }
 
-  #sayNotices(notices: Book["notices"], broken: boolean): void {
-    const [first, ...others] = notices
-    if (first === undefined) return
-    const more =
-      others.length === 0 ? "" : ` There ${others.length === 1 ? "is one more such place" : `are ${others.length} more such places`}.`
+  /** It stays said, and the notebook is only read, until the person has decided: after loading the page again too. */
+  #sayDoubt(doubt: string): void {
     const write = {
       label: "Write in it all the same",
       act: () => {
-        if (this.desk !== null) this.desk.readOnly = false
-        this.#unsay("file")
+        this.#keeping?.decide()
+        this.#unsay("doubt")
       },
     }
-    this.#say({ id: "file", text: `${first.text} ${first.hint ?? ""}${more}`, trouble: true, acts: broken ? [write] : [] })
+    this.#say({
+      id: "doubt",
+      text: `${doubt} Until you decide, this notebook is only read here.`,
+      trouble: true,
+      stays: true,
+      acts: [write],
+    })
+  }
+
+  /** What there is to say about a file that was opened, but for what is said as long as it is in doubt. */
+  #sayNotices(notices: Book["notices"]): void {
+    const doubt = this.#keeping?.doubt ?? null
+    const [first, ...others] = notices.filter(({ text, hint }) => `${text} ${hint ?? ""}`.trim() !== doubt)
+    if (first === undefined) return
+    const more =
+      others.length === 0 ? "" : ` There ${others.length === 1 ? "is one more such place" : `are ${others.length} more such places`}.`
+    this.#say({ id: "file", text: `${first.text} ${first.hint ?? ""}${more}`, trouble: true, acts: [] })
   }
 
   #failed(why: string): void {
@@ -561,10 +603,14 @@ function savedSays(saved: Saved | null): string {
       return `saved and read back ${clock(saved.at)}`
     case "reading":
       return "read only: another tab writes"
+    case "undecided":
+      return "read only until you decide"
     case "trouble":
       return "not saved"
   }
 }
+
+const renamed = (file: File, name: string): File => new File([file], name, { type: file.type })
 
 /** A title as the name of a file. */
 function fileName(title: string): string {

@@ -267,8 +267,10 @@ export class Row extends LitElement {
     const held = new Set(this.desk.notebook.enclosures.map(({ name }) => name))
     const missing = reading(this.cell).names.files.filter((name) => !held.has(name))
     if (missing.length === 0 || this.desk.readOnly) return nothing
+    const stated = new Set(this.desk.stated.map(({ name }) => name))
     return html`${missing.map(
-      (name) => html`<p class="missing">The notebook does not hold <strong>${name}</strong>. Drop the file here, or
+      (name) => html`<p class="missing">${stated.has(name) ? "The notebook was written with" : "The notebook does not hold"}
+        <strong>${name}</strong>${stated.has(name) ? " and does not hold its bytes" : ""}. Drop the file here, or
         <button type="button" class="link" @click=${() => this.#ask({ type: "enclose", name })}>choose it</button>.</p>`,
     )}`
   }
