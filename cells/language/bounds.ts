@@ -160,6 +160,8 @@ export class Bounding {
     if (left === null || (b >= 0 && right === null)) return null
     if (right === null)
       return limitOfOne(operation, left, all[a] as Bounds, turns < 0 ? null : { at: side(all[turns]), all: all[turns] as Bounds })
+    const n = operation === "power" ? wholeExponent(this.steps[b] as Step) : null
+    if (n !== null) return limitOfWholePower(left, n, all[a] as Bounds)
     return limitOfTwo(operation, left, right, all[a] as Bounds, all[b] as Bounds)
   }
 
@@ -483,6 +485,16 @@ const functionsAtLimits: Readonly<Partial<Record<Operation, of.Monotone>>> = {
 const ofOneLimit = (operation: Operation, u: Interval): Interval | null => {
   const value = functionsAtLimits[operation]
   return value === undefined ? null : value(u)
+}
+
+function limitOfWholePower(u: Interval, n: number, over: Bounds): Interval | null {
+  if (n === 0) return point(1)
+  const even = n % 2 === 0
+  if (isInfinite(u)) return n < 0 ? point(0) : infinite(u.lo > 0 || even ? 1 : -1)
+  if (n > 0 || of.withoutZero(u)) return of.wholePower(u, n)
+  // From which side the base comes to 0 decides the sign.
+  const sign = isOne(u, 0) ? certainSign(over.values) : 0
+  return sign === 0 ? null : infinite(even ? 1 : sign)
 }
 
 /** Null where the limit depends on how fast both go: ∞ − ∞, 0·∞, 0/0 and their like. */

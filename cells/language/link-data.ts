@@ -64,11 +64,40 @@ export function linkData(parts: LinkParts): { readonly own: OwnLink; readonly fl
 const restName = "rest"
 
 /** η and both derivatives with respect to μ. What has a derivative has a second one: its parts are smooth. */
-const derived = ({ expression, slope }: ProvedPiece, variable: Name): readonly Expression[] => [
-  expression,
-  slope,
-  derivative(slope, variable) ?? slope,
-]
+const derived = ({ expression, slope }: ProvedPiece, variable: Name): readonly Expression[] =>
+  [expression, slope, derivative(slope, variable) ?? slope].map(careful)
+
+/**
+ * The same function where doubles lose no digits: log(1 − x) as log1p(−x), and exp(x) − 1 as expm1(x). Who writes log(-log(1 - mu)) means rare
+ * events too, of which 1 − μ has lost all but a few digits.
+ */
+function careful(expression: Expression): Expression {
+  const isOne = (part: Expression): boolean => part.type === "number" && part.value === 1
+  const { at } = expression
+  switch (expression.type) {
+    case "minus":
+      return { ...expression, of: careful(expression.of) }
+    case "pair": {
+      const [left, right] = [careful(expression.left), careful(expression.right)]
+      const power = (part: Expression): Expression => ({ ...part, type: "call", name: "expm1" }) as Expression
+      if (expression.sign === "-" && isOne(right) && left.type === "call" && left.name === "exp") return power(left)
+      if (expression.sign === "-" && isOne(left) && right.type === "call" && right.name === "exp")
+        return { type: "minus", of: power(right), at }
+      return { ...expression, left, right }
+    }
+    case "call": {
+      const of = expression.of.map(careful)
+      const [first] = of
+      if (expression.name === "log" && first?.type === "pair" && isOne(first.left)) {
+        if (first.sign === "-") return { ...expression, name: "log1p", of: [{ type: "minus", of: first.right, at }] }
+        if (first.sign === "+") return { ...expression, name: "log1p", of: [first.right] }
+      }
+      return { ...expression, of }
+    }
+    default:
+      return expression
+  }
+}
 
 /** The expression with 1 − rest in place of μ, and rest itself wherever 1 − μ stood. */
 function inRest(expression: Expression, variable: Name): Expression {
@@ -155,12 +184,14 @@ export function knotsBetween(low: number, high: number): readonly number[] {
   const towards = (end: number, sign: 1 | -1, widest: number): void => {
     for (let away = widest; away > 0; away /= stride) {
       const x = end + sign * away
-      if (x === end) return
+      if (x === end) break
       places.add(x)
     }
+    if (end === 0) places.add(sign * Number.MIN_VALUE)
   }
   const outwards = (from: number, sign: 1 | -1): void => {
     for (let away = 1; away < Infinity; away *= stride) places.add(from + sign * away)
+    places.add(sign * Number.MAX_VALUE)
   }
   if (low === -Infinity && high === Infinity) {
     places.add(0)

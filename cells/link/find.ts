@@ -50,7 +50,12 @@ export async function found(said: LinkSaid, inputs: Inputs, work: Work): Promise
   const isRefuted = notices.some(({ level }) => level === "fault")
   const estimated = constants.ranges.size > 0
   const limits = proof.ends.map(limitOf) as [number | null, number | null]
-  const reach: readonly [number | null, number | null] = proof.rising === false ? [limits[1], limits[0]] : [limits[0], limits[1]]
+  // What turns or is not everywhere defined reaches what it reaches, but its limits do not say what that is.
+  const reach: readonly [number | null, number | null] = isRefuted
+    ? [null, null]
+    : proof.rising === false
+      ? [limits[1], limits[0]]
+      : [limits[0], limits[1]]
   const made =
     isRefuted || estimated
       ? null

@@ -16,7 +16,8 @@ export const asText = (text: string): string =>
     .replace(/\bnormal_quantile\(/g, "Φ⁻¹(")
     .replace(/\bnormal_cdf\(/g, "Φ(")
     .replace(/\bsquare_root\(/g, "√(")
-    .replace(/-/g, "−")
+    .replaceAll("*", "·")
+    .replaceAll("-", "−")
 
 /** The expression as a formula tree. */
 export function formulaOf(expression: Expression): Formula {

@@ -17,7 +17,7 @@ export function shown(found: LinkFinding, said: LinkSaid): readonly Block[] {
       text: `η = ${asText(found.eta)}`,
     },
     { type: "sentence", tone: "plain", text: verdictsSay(found) },
-    { type: "sentence", tone: "plain", text: `${derivativeSays(found)} ${reachSays(found)}` },
+    { type: "sentence", tone: "plain", text: `${derivativeSays(found)} ${reachSays(found)}`.trim() },
     ...(givenSays(found) === "" ? [] : [{ type: "sentence" as const, tone: "quiet" as const, text: givenSays(found) }]),
     figure(found),
   ]
@@ -46,7 +46,7 @@ function verdictsSay(found: LinkFinding): string {
     ["differentiable", found.differentiable],
   ]
   const proved = all.filter(([, { verdict }]) => verdict === "proved").map(([says]) => says)
-  const sentences = proved.length === 0 ? [] : [`Proved over the whole range: ${list(proved)}.`]
+  const sentences = proved.length === 0 ? [] : [`Proved over the whole range: ${proved.join(", ")}.`]
   for (const [says, { verdict, witness }] of all) {
     if (verdict === "refuted")
       sentences.push(`Refuted: it is not ${says} at μ = ${typeof witness === "number" ? number(witness) : "a point"}.`)

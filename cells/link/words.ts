@@ -56,7 +56,10 @@ export const linkWords: Words<LinkSaid> = {
       all,
     )
     const [eta, inverse] = [formula(one("eta"), "eta"), formula(one("inverse"), "inverse")]
-    const names = given.map((each) => each.name)
+    // A constant whose clause has a fault is a constant all the same.
+    const names = statement.clauses.flatMap(({ keyword, tokens }) =>
+      keyword === "given" && tokens[0] !== undefined ? [tokens[0].text.normalize("NFC")] : [],
+    )
     if (eta !== null) hasPlace(eta.expression, "eta", ["mu", ...names], all)
     if (inverse !== null) hasPlace(inverse.expression, "inverse", ["eta", ...names], all)
     return { said: { name, range: rangeSaid(one("mean")), given, eta, inverse }, notices: all }
