@@ -61,7 +61,7 @@ export class Layout {
 /**
  * Adds the rows from … to of Σ w·xx' and Σ s·x to `sums`.
  * @param w, s     weight and score of each row of the whole
- * @param scratch  at least blockRows·(blocks + 1) numbers
+ * @param scratch  at least blockRows numbers
  */
 export function addRows(
   layout: Layout,
@@ -78,15 +78,15 @@ export function addRows(
 /** Adds the rows from … to of Σ s·x alone. */
 function addScores(layout: Layout, from: number, to: number, s: Float64Array, sums: Float64Array): void {
   const { plain, blocks } = layout.shape
+  const first = plain[0] === null ? 1 : 0
+  const P = plain.length
   for (let low = from; low < to; low += blockRows) {
     const high = Math.min(to, low + blockRows)
-    for (let i = 0; i < plain.length; i++) {
-      const x = plain[i] as Float64Array | null
-      let sum = 0
-      if (x === null) for (let row = low; row < high; row++) sum += s[row] as number
-      else for (let row = low; row < high; row++) sum += (s[row] as number) * (x[row] as number)
-      sums[i] = (sums[i] as number) + sum
-    }
+    if (first === 1) addSum(s, low, high, sums, 0)
+    let j = first
+    for (; j + 3 < P; j += 4)
+      add1x4(s, columnAt(plain, j), columnAt(plain, j + 1), columnAt(plain, j + 2), columnAt(plain, j + 3), low, high, sums, j)
+    for (; j < P; j++) add1x1(s, columnAt(plain, j), low, high, sums, j)
     for (let b = 0; b < blocks.length; b++) {
       const { cells, multiplier } = blocks[b] as Cells
       const { score } = layout.blocksAt[b] as { score: number }
@@ -98,7 +98,11 @@ function addScores(layout: Layout, from: number, to: number, s: Float64Array, su
   }
 }
 
-function addBlock(
+/** A column that is not the constant, which is only ever the first. */
+const columnAt = (plain: Shape["plain"], j: number): Float64Array => plain[j] as Float64Array
+
+/** One block: it stays in the nearest cache while its columns are gone over four at a time. */
+export function addBlock(
   layout: Layout,
   from: number,
   to: number,
@@ -108,92 +112,127 @@ function addBlock(
   scratch: Float64Array,
 ): void {
   const { plain, blocks } = layout.shape
+  const { gramAt } = layout
+  const P = plain.length
+  const first = plain[0] === null ? 1 : 0
+  // The constant: its products with a column are the sums of the weighted column, found beside the scores.
+  if (first === 1) {
+    addSum(w, from, to, sums, gramAt)
+    addSum(s, from, to, sums, 0)
+    let j = 1
+    for (; j + 3 < P; j += 4) {
+      const [a, b, c, d] = [columnAt(plain, j), columnAt(plain, j + 1), columnAt(plain, j + 2), columnAt(plain, j + 3)]
+      const [ga, gb] = [gramAt + triangle(j), gramAt + triangle(j + 1)]
+      const [gc, gd] = [gramAt + triangle(j + 2), gramAt + triangle(j + 3)]
+      addConstant4(w, s, a, b, c, d, from, to, sums, j, ga, gb, gc, gd)
+    }
+    for (; j < P; j++) {
+      add1x1(w, columnAt(plain, j), from, to, sums, gramAt + triangle(j))
+      add1x1(s, columnAt(plain, j), from, to, sums, j)
+    }
+  } else {
+    let j = 0
+    for (; j + 3 < P; j += 4)
+      add1x4(s, columnAt(plain, j), columnAt(plain, j + 1), columnAt(plain, j + 2), columnAt(plain, j + 3), from, to, sums, j)
+    for (; j < P; j++) add1x1(s, columnAt(plain, j), from, to, sums, j)
+  }
+  // Four columns with themselves, then with the rest of the columns two at a time.
+  let j = first
+  for (; j + 3 < P; j += 4) {
+    const [a, b, c, d] = [columnAt(plain, j), columnAt(plain, j + 1), columnAt(plain, j + 2), columnAt(plain, j + 3)]
+    addCorner(
+      w,
+      a,
+      b,
+      c,
+      d,
+      from,
+      to,
+      sums,
+      gramAt + triangle(j) + j,
+      gramAt + triangle(j + 1) + j,
+      gramAt + triangle(j + 2) + j,
+      gramAt + triangle(j + 3) + j,
+    )
+    let i = j + 4
+    for (; i + 1 < P; i += 2)
+      add2x4(
+        w,
+        columnAt(plain, i),
+        columnAt(plain, i + 1),
+        a,
+        b,
+        c,
+        d,
+        from,
+        to,
+        sums,
+        gramAt + triangle(i) + j,
+        gramAt + triangle(i + 1) + j,
+      )
+    if (i < P) addWeighted1x4(w, columnAt(plain, i), a, b, c, d, from, to, sums, gramAt + triangle(i) + j)
+  }
+  for (; j < P; j++)
+    for (let i = j; i < P; i++) addWeighted1x1(w, columnAt(plain, i), columnAt(plain, j), from, to, sums, gramAt + triangle(i) + j)
+  if (blocks.length > 0) addCells(layout, from, to, w, s, sums, scratch)
+}
+
+/** Where row i of a lower triangle by rows begins. */
+const triangle = (i: number): number => (i * (i + 1)) / 2
+
+/** The sums by cell of every factor: of scores, of weights, crossed with the plain columns, and with the cells of other factors. */
+function addCells(
+  layout: Layout,
+  from: number,
+  to: number,
+  w: Float64Array,
+  s: Float64Array,
+  sums: Float64Array,
+  weighted: Float64Array,
+): void {
+  const { plain, blocks } = layout.shape
   const P = plain.length
   const m = to - from
-  let g = layout.gramAt
-  for (let i = 0; i < P; i++) {
-    const x = plain[i] as Float64Array | null
-    let score = 0
-    if (x === null) {
-      for (let k = 0; k < m; k++) {
-        scratch[k] = w[from + k] as number
-        score += s[from + k] as number
-      }
-    } else {
-      for (let k = 0; k < m; k++) {
-        const v = x[from + k] as number
-        scratch[k] = (w[from + k] as number) * v
-        score += (s[from + k] as number) * v
-      }
-    }
-    sums[i] = (sums[i] as number) + score
-    let j = 0
-    // A constant among the columns is the first; its product with a column is the sum of the weighted column.
-    if (j <= i && plain[0] === null) {
-      let sum = 0
-      for (let k = 0; k < m; k++) sum += scratch[k] as number
-      sums[g] = (sums[g] as number) + sum
-      j = 1
-    }
-    for (; j + 3 <= i; j += 4) {
-      const a = plain[j] as Float64Array
-      const b = plain[j + 1] as Float64Array
-      const c = plain[j + 2] as Float64Array
-      const d = plain[j + 3] as Float64Array
-      let sa = 0
-      let sb = 0
-      let sc = 0
-      let sd = 0
-      for (let k = 0; k < m; k++) {
-        const t = scratch[k] as number
-        const row = from + k
-        sa += t * (a[row] as number)
-        sb += t * (b[row] as number)
-        sc += t * (c[row] as number)
-        sd += t * (d[row] as number)
-      }
-      sums[g + j] = (sums[g + j] as number) + sa
-      sums[g + j + 1] = (sums[g + j + 1] as number) + sb
-      sums[g + j + 2] = (sums[g + j + 2] as number) + sc
-      sums[g + j + 3] = (sums[g + j + 3] as number) + sd
-    }
-    for (; j <= i; j++) {
-      const a = plain[j] as Float64Array
-      let sum = 0
-      for (let k = 0; k < m; k++) sum += (scratch[k] as number) * (a[from + k] as number)
-      sums[g + j] = (sums[g + j] as number) + sum
-    }
-    g += i + 1
-  }
-  if (blocks.length === 0) return
   let pair = 0
   for (let b = 0; b < blocks.length; b++) {
-    const { cells, multiplier, count } = blocks[b] as Cells
+    const { cells, multiplier } = blocks[b] as Cells
     const { score, diagonal, cross } = layout.blocksAt[b] as { score: number; diagonal: number; cross: number }
-    const own = (b + 1) * blockRows
     for (let k = 0; k < m; k++) {
       const row = from + k
       const cell = cells[row] as number
       const times = multiplier === null ? 1 : (multiplier[row] as number)
-      const weighted = (w[row] as number) * times
-      scratch[own + k] = weighted
+      const own = (w[row] as number) * times
+      weighted[k] = own
       sums[score + cell] = (sums[score + cell] as number) + (s[row] as number) * times
-      sums[diagonal + cell] = (sums[diagonal + cell] as number) + weighted * times
+      sums[diagonal + cell] = (sums[diagonal + cell] as number) + own * times
     }
-    // Crossed with the plain columns, a column at a time: the sums of one column lie together.
-    for (let j = 0; j < P; j++) {
-      const x = plain[j] as Float64Array | null
-      const base = cross + j * count
-      if (x === null) {
-        for (let k = 0; k < m; k++) {
-          const at = base + (cells[from + k] as number)
-          sums[at] = (sums[at] as number) + (scratch[own + k] as number)
-        }
-      } else {
-        for (let k = 0; k < m; k++) {
-          const at = base + (cells[from + k] as number)
-          sums[at] = (sums[at] as number) + (scratch[own + k] as number) * (x[from + k] as number)
-        }
+    let j = 0
+    if (P > 0 && plain[0] === null) {
+      for (let k = 0; k < m; k++) {
+        const at = cross + (cells[from + k] as number) * P
+        sums[at] = (sums[at] as number) + (weighted[k] as number)
+      }
+      j = 1
+    }
+    for (; j + 3 < P; j += 4)
+      addCross4(
+        weighted,
+        cells,
+        columnAt(plain, j),
+        columnAt(plain, j + 1),
+        columnAt(plain, j + 2),
+        columnAt(plain, j + 3),
+        from,
+        m,
+        sums,
+        cross + j,
+        P,
+      )
+    for (; j < P; j++) {
+      const x = columnAt(plain, j)
+      for (let k = 0; k < m; k++) {
+        const at = cross + (cells[from + k] as number) * P + j
+        sums[at] = (sums[at] as number) + (weighted[k] as number) * (x[from + k] as number)
       }
     }
     for (let c = 0; c < b; c++) {
@@ -203,16 +242,252 @@ function addBlock(
         const row = from + k
         const at = base + (cells[row] as number) * other.count + (other.cells[row] as number)
         const times = other.multiplier === null ? 1 : (other.multiplier[row] as number)
-        sums[at] = (sums[at] as number) + (scratch[own + k] as number) * times
+        sums[at] = (sums[at] as number) + (weighted[k] as number) * times
       }
     }
+  }
+}
+
+// Kernels: sums over the rows of a block that take several columns at once, so that a number read serves several products and no sum has to
+// wait for the one before. Which products go together changes no result but in its last digits, and is the same everywhere.
+
+function addSum(v: Float64Array, from: number, to: number, sums: Float64Array, at: number): void {
+  let sum = 0
+  for (let k = from; k < to; k++) sum += v[k] as number
+  sums[at] = (sums[at] as number) + sum
+}
+
+function add1x1(v: Float64Array, a: Float64Array, from: number, to: number, sums: Float64Array, at: number): void {
+  let sum = 0
+  for (let k = from; k < to; k++) sum += (v[k] as number) * (a[k] as number)
+  sums[at] = (sums[at] as number) + sum
+}
+
+function add1x4(
+  v: Float64Array,
+  a: Float64Array,
+  b: Float64Array,
+  c: Float64Array,
+  d: Float64Array,
+  from: number,
+  to: number,
+  sums: Float64Array,
+  at: number,
+): void {
+  let [va, vb, vc, vd] = [0, 0, 0, 0]
+  for (let k = from; k < to; k++) {
+    const t = v[k] as number
+    va += t * (a[k] as number)
+    vb += t * (b[k] as number)
+    vc += t * (c[k] as number)
+    vd += t * (d[k] as number)
+  }
+  sums[at] = (sums[at] as number) + va
+  sums[at + 1] = (sums[at + 1] as number) + vb
+  sums[at + 2] = (sums[at + 2] as number) + vc
+  sums[at + 3] = (sums[at + 3] as number) + vd
+}
+
+/** Weights and scores with four columns: the constant's products, and the columns' scores. */
+function addConstant4(
+  w: Float64Array,
+  s: Float64Array,
+  a: Float64Array,
+  b: Float64Array,
+  c: Float64Array,
+  d: Float64Array,
+  from: number,
+  to: number,
+  sums: Float64Array,
+  scoresAt: number,
+  aAt: number,
+  bAt: number,
+  cAt: number,
+  dAt: number,
+): void {
+  let [wa, wb, wc, wd] = [0, 0, 0, 0]
+  let [sa, sb, sc, sd] = [0, 0, 0, 0]
+  for (let k = from; k < to; k++) {
+    const t = w[k] as number
+    const u = s[k] as number
+    const x = a[k] as number
+    const y = b[k] as number
+    const z = c[k] as number
+    const v = d[k] as number
+    wa += t * x
+    wb += t * y
+    wc += t * z
+    wd += t * v
+    sa += u * x
+    sb += u * y
+    sc += u * z
+    sd += u * v
+  }
+  sums[aAt] = (sums[aAt] as number) + wa
+  sums[bAt] = (sums[bAt] as number) + wb
+  sums[cAt] = (sums[cAt] as number) + wc
+  sums[dAt] = (sums[dAt] as number) + wd
+  sums[scoresAt] = (sums[scoresAt] as number) + sa
+  sums[scoresAt + 1] = (sums[scoresAt + 1] as number) + sb
+  sums[scoresAt + 2] = (sums[scoresAt + 2] as number) + sc
+  sums[scoresAt + 3] = (sums[scoresAt + 3] as number) + sd
+}
+
+/** The lower triangle of four weighted columns. */
+function addCorner(
+  w: Float64Array,
+  a: Float64Array,
+  b: Float64Array,
+  c: Float64Array,
+  d: Float64Array,
+  from: number,
+  to: number,
+  sums: Float64Array,
+  aAt: number,
+  bAt: number,
+  cAt: number,
+  dAt: number,
+): void {
+  let [aa, ba, ca, da] = [0, 0, 0, 0]
+  let [bb, cb, db] = [0, 0, 0]
+  let [cc, dc, dd] = [0, 0, 0]
+  for (let k = from; k < to; k++) {
+    const own = w[k] as number
+    const x = a[k] as number
+    const y = b[k] as number
+    const z = c[k] as number
+    const v = d[k] as number
+    const wx = own * x
+    aa += wx * x
+    ba += wx * y
+    ca += wx * z
+    da += wx * v
+    const wy = own * y
+    bb += wy * y
+    cb += wy * z
+    db += wy * v
+    const wz = own * z
+    cc += wz * z
+    dc += wz * v
+    dd += own * v * v
+  }
+  sums[aAt] = (sums[aAt] as number) + aa
+  sums[bAt] = (sums[bAt] as number) + ba
+  sums[bAt + 1] = (sums[bAt + 1] as number) + bb
+  sums[cAt] = (sums[cAt] as number) + ca
+  sums[cAt + 1] = (sums[cAt + 1] as number) + cb
+  sums[cAt + 2] = (sums[cAt + 2] as number) + cc
+  sums[dAt] = (sums[dAt] as number) + da
+  sums[dAt + 1] = (sums[dAt + 1] as number) + db
+  sums[dAt + 2] = (sums[dAt + 2] as number) + dc
+  sums[dAt + 3] = (sums[dAt + 3] as number) + dd
+}
+
+/** Two weighted columns e, f with four others. */
+function add2x4(
+  w: Float64Array,
+  e: Float64Array,
+  f: Float64Array,
+  a: Float64Array,
+  b: Float64Array,
+  c: Float64Array,
+  d: Float64Array,
+  from: number,
+  to: number,
+  sums: Float64Array,
+  eAt: number,
+  fAt: number,
+): void {
+  let [ea, eb, ec, ed] = [0, 0, 0, 0]
+  let [fa, fb, fc, fd] = [0, 0, 0, 0]
+  for (let k = from; k < to; k++) {
+    const own = w[k] as number
+    const t = own * (e[k] as number)
+    const u = own * (f[k] as number)
+    const x = a[k] as number
+    const y = b[k] as number
+    const z = c[k] as number
+    const v = d[k] as number
+    ea += t * x
+    eb += t * y
+    ec += t * z
+    ed += t * v
+    fa += u * x
+    fb += u * y
+    fc += u * z
+    fd += u * v
+  }
+  sums[eAt] = (sums[eAt] as number) + ea
+  sums[eAt + 1] = (sums[eAt + 1] as number) + eb
+  sums[eAt + 2] = (sums[eAt + 2] as number) + ec
+  sums[eAt + 3] = (sums[eAt + 3] as number) + ed
+  sums[fAt] = (sums[fAt] as number) + fa
+  sums[fAt + 1] = (sums[fAt + 1] as number) + fb
+  sums[fAt + 2] = (sums[fAt + 2] as number) + fc
+  sums[fAt + 3] = (sums[fAt + 3] as number) + fd
+}
+
+function addWeighted1x4(
+  w: Float64Array,
+  e: Float64Array,
+  a: Float64Array,
+  b: Float64Array,
+  c: Float64Array,
+  d: Float64Array,
+  from: number,
+  to: number,
+  sums: Float64Array,
+  at: number,
+): void {
+  let [ea, eb, ec, ed] = [0, 0, 0, 0]
+  for (let k = from; k < to; k++) {
+    const t = (w[k] as number) * (e[k] as number)
+    ea += t * (a[k] as number)
+    eb += t * (b[k] as number)
+    ec += t * (c[k] as number)
+    ed += t * (d[k] as number)
+  }
+  sums[at] = (sums[at] as number) + ea
+  sums[at + 1] = (sums[at + 1] as number) + eb
+  sums[at + 2] = (sums[at + 2] as number) + ec
+  sums[at + 3] = (sums[at + 3] as number) + ed
+}
+
+function addWeighted1x1(w: Float64Array, e: Float64Array, a: Float64Array, from: number, to: number, sums: Float64Array, at: number): void {
+  let sum = 0
+  for (let k = from; k < to; k++) sum += (w[k] as number) * (e[k] as number) * (a[k] as number)
+  sums[at] = (sums[at] as number) + sum
+}
+
+/** Four columns crossed with the cells of a factor: the sums of a cell lie together. */
+function addCross4(
+  weighted: Float64Array,
+  cells: Int32Array,
+  a: Float64Array,
+  b: Float64Array,
+  c: Float64Array,
+  d: Float64Array,
+  from: number,
+  m: number,
+  sums: Float64Array,
+  cross: number,
+  P: number,
+): void {
+  for (let k = 0; k < m; k++) {
+    const row = from + k
+    const at = cross + (cells[row] as number) * P
+    const t = weighted[k] as number
+    sums[at] = (sums[at] as number) + t * (a[row] as number)
+    sums[at + 1] = (sums[at + 1] as number) + t * (b[row] as number)
+    sums[at + 2] = (sums[at + 2] as number) + t * (c[row] as number)
+    sums[at + 3] = (sums[at + 3] as number) + t * (d[row] as number)
   }
 }
 
 /** All sums of a basis at once, for designs and tests; the fitting loop goes chunk by chunk so that it can be interrupted. */
 export function rangeSums(layout: Layout, w: Float64Array, s: Float64Array): Float64Array {
   const tree = new SumTree(layout.length)
-  const scratch = new Float64Array(blockRows * (layout.shape.blocks.length + 1))
+  const scratch = new Float64Array(blockRows)
   for (let chunk = 0; chunk < layout.chunks; chunk++) {
     addRows(layout, layout.chunkStart(chunk), layout.chunkStart(chunk + 1), w, s, tree.next(), scratch)
     tree.push()
@@ -228,7 +503,7 @@ export async function pacedSums(
   pace: { due(work: number): boolean; rest(): Promise<void> },
 ): Promise<Float64Array> {
   const tree = new SumTree(layout.length)
-  const scratch = new Float64Array(blockRows * (layout.shape.blocks.length + 1))
+  const scratch = new Float64Array(blockRows)
   const workOfRow = 10 + layout.plain * layout.plain + layout.shape.blocks.length * 10
   for (let chunk = 0; chunk < layout.chunks; chunk++) {
     const [from, to] = [layout.chunkStart(chunk), layout.chunkStart(chunk + 1)]
@@ -407,7 +682,7 @@ export function gramOf(layout: Layout, sums: Float64Array): Gram {
         const column = block.column[e] as number
         const value = block.value[e] as number
         for (let f = low; f <= e; f++) add(column, block.column[f] as number, weight * value * (block.value[f] as number))
-        for (let j = 0; j < layout.plain; j++) add(column, j, value * (sums[at.cross + j * block.count + cell] as number))
+        for (let j = 0; j < layout.plain; j++) add(column, j, value * (sums[at.cross + cell * layout.plain + j] as number))
       }
     }
     for (let c = 0; c < b; c++) {

@@ -4,7 +4,7 @@
 
 import type { Basis, Cells } from "./basis.ts"
 import { productError, WideSum } from "./double-double.ts"
-import { addRows, blockRows, Factor, Gram, gramOf, type Layout, rangeSums, SumTree, scoreOf, scoreSums } from "./gram.ts"
+import { addBlock, blockRows, Factor, Gram, gramOf, type Layout, rangeSums, SumTree, scoreOf, scoreSums } from "./gram.ts"
 import { fillRows, type Information, type Responses, type RowState, rowState } from "./rows.ts"
 
 /** A point of the parameters with everything a pass over the rows gave. */
@@ -80,7 +80,7 @@ export class Equations {
     this.layout = basis.layout
     // Deviance and Pearson's X² go before the sums of the basis.
     this.tree = new SumTree(basis.layout.length + 2)
-    this.scratch = new Float64Array(blockRows * (basis.blocks.length + 1))
+    this.scratch = new Float64Array(blockRows)
     const P = basis.plain.length
     const B = basis.blocks.length
     this.workOfRow = 120 + P * P + B * (6 + 3 * P + 3 * B)
@@ -113,17 +113,11 @@ export class Equations {
       const from = layout.chunkStart(chunk)
       const to = layout.chunkStart(chunk + 1)
       const sums = tree.next()
-      if (sharp) exactEta(basis, sharp, this.responses.offset, from, to, point.state)
-      else {
-        linearPredictor(basis, point.gamma, cellValues, this.responses.offset, from, to, point.state.eta)
-        point.state.etaLow?.fill(0, from, to)
-      }
-      if (!fillRows(this.responses, information, from, to, point.state, sums)) {
+      if (!this.fillChunk(point, information, from, to, cellValues, sharp, sums)) {
         tree.push()
         tree.total()
         return false
       }
-      addRows(layout, from, to, point.state.weight, point.state.score, sums.subarray(2), this.scratch)
       tree.push()
       if (this.pace.due((to - from) * this.workOfRow)) await this.pace.rest()
     }
@@ -136,6 +130,32 @@ export class Equations {
     const p = basis.size
     if (this.pace.due(p * p * (p / 3 + 10))) await this.pace.rest()
     return Number.isFinite(point.deviance)
+  }
+
+  /** The rows of a chunk, block by block: what a block needs stays in the nearest cache from η to the sums. */
+  private fillChunk(
+    point: Point,
+    information: Information,
+    from: number,
+    to: number,
+    cellValues: readonly Float64Array[],
+    sharp: Float64Array | null,
+    sums: Float64Array,
+  ): boolean {
+    const { basis, layout, responses, scratch } = this
+    const { state, gamma } = point
+    const own = sums.subarray(2)
+    for (let low = from; low < to; low += blockRows) {
+      const high = Math.min(to, low + blockRows)
+      if (sharp) exactEta(basis, sharp, responses.offset, low, high, state)
+      else {
+        linearPredictor(basis, gamma, cellValues, responses.offset, low, high, state.eta)
+        state.etaLow?.fill(0, low, high)
+      }
+      if (!fillRows(responses, information, low, high, state, sums)) return false
+      addBlock(layout, low, high, state.weight, state.score, own, scratch)
+    }
+    return true
   }
 
   /** Σ w·xx' for other weights, such as those of a sandwich. */
@@ -264,14 +284,17 @@ export function linearPredictor(
   to: number,
   eta: Float64Array,
 ): void {
-  if (offset) for (let i = from; i < to; i++) eta[i] = offset[i] as number
-  else eta.fill(0, from, to)
-  for (let j = 0; j < basis.plain.length; j++) {
-    const x = basis.plain[j] as Float64Array | null
+  const { plain } = basis
+  const first = plain[0] === null ? 1 : 0
+  const constant = first === 1 ? (gamma[0] as number) : 0
+  if (offset) for (let i = from; i < to; i++) eta[i] = (offset[i] as number) + constant
+  else eta.fill(constant, from, to)
+  let j = first
+  for (; j + 3 < plain.length; j += 4) addColumns4(plain, gamma, j, from, to, eta)
+  for (; j < plain.length; j++) {
+    const x = plain[j] as Float64Array
     const b = gamma[j] as number
-    if (b === 0) continue
-    if (x === null) for (let i = from; i < to; i++) eta[i] = (eta[i] as number) + b
-    else for (let i = from; i < to; i++) eta[i] = (eta[i] as number) + b * (x[i] as number)
+    if (b !== 0) for (let i = from; i < to; i++) eta[i] = (eta[i] as number) + b * (x[i] as number)
   }
   basis.blocks.forEach((block, b) => {
     const values = cellValues[b] as Float64Array
@@ -279,6 +302,17 @@ export function linearPredictor(
     if (multiplier === null) for (let i = from; i < to; i++) eta[i] = (eta[i] as number) + (values[cells[i] as number] as number)
     else for (let i = from; i < to; i++) eta[i] = (eta[i] as number) + (values[cells[i] as number] as number) * (multiplier[i] as number)
   })
+}
+
+/** Four columns from j on, times their coefficients, added to η. */
+function addColumns4(plain: Basis["plain"], gamma: Float64Array, j: number, from: number, to: number, eta: Float64Array): void {
+  const [a, b, c, d] = [plain[j], plain[j + 1], plain[j + 2], plain[j + 3]] as [Float64Array, Float64Array, Float64Array, Float64Array]
+  const ga = gamma[j] as number
+  const gb = gamma[j + 1] as number
+  const gc = gamma[j + 2] as number
+  const gd = gamma[j + 3] as number
+  for (let i = from; i < to; i++)
+    eta[i] = (eta[i] as number) + (ga * (a[i] as number) + gb * (b[i] as number) + (gc * (c[i] as number) + gd * (d[i] as number)))
 }
 
 /** What each cell of a block adds to η. */
