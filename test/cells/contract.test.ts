@@ -42,6 +42,7 @@ const members: Readonly<Record<string, readonly string[]>> = {
   ],
   link: ["defined", "strictly_monotone", "differentiable", "slope", "reach", "canonical_for"],
   scales: ["across", "held", "curves", "points", "strip"],
+  terms: ["rows"],
   dial: ["value"],
   value: ["value"],
   note: ["values"],
