@@ -389,8 +389,23 @@ export const noSuchColumn = (
     "column",
     at,
     head === null ? `${file} has no column headed ${name}.` : `${file} has no column headed ${entry(head)} for ${name}.`,
-    near === null ? `Its columns are ${listed(there.slice(0, 20))}${there.length > 20 ? " and more" : ""}.` : `The nearest is ${near}.`,
+    near !== null
+      ? `The nearest is ${near}.`
+      : there.length === 0
+        ? "Every column of the file has a clause already."
+        : `Its columns are ${listed(there.slice(0, 20))}${there.length > 20 ? " and more" : ""}.`,
     edit === null ? null : mending(`Write column ${edit.says}`, edit),
+  )
+
+/** A second column clause for one column of the file. */
+export const columnClaimed = (name: Name, by: Name, head: string, at: Place): Notice =>
+  notice(
+    "fault",
+    "column-claimed",
+    "column",
+    at,
+    `The column headed ${entry(head)} is called ${by} already, so it cannot be ${name} too.`,
+    `A second one like it is made by make ${name} = ${by}.`,
   )
 
 const unfit = {

@@ -179,9 +179,15 @@ function fileNotices(notices: Notice[], said: DataSaid, from: File, reading: Rea
   if (said.header && heads.every((head) => head !== null && /^[+-]?\d+([.,]\d+)?$/.test(head)))
     notices.push(say.headerLikeData(file, at, edit("header", 0, "no")))
   for (const clause of placed.absent) {
+    const head = clause.headed ?? clause.name
+    const claimed = placed.columns.find((column) => column.said !== null && column.head === head)
+    if (claimed !== undefined) {
+      notices.push(say.columnClaimed(clause.name, claimed.name, head, clause.at))
+      continue
+    }
     const unclaimed = placed.columns.filter((column) => column.said === null)
     const near = nearest(
-      clause.headed ?? clause.name,
+      head,
       unclaimed.map(({ head, name }) => head ?? name),
     )
     const better =

@@ -68,7 +68,7 @@ export const nameMissing = (kind: string): Slip =>
   fault(
     "heading/name-missing",
     { clause: -1, from: 0, to: 0 },
-    `A ${kind} needs a name, by which other cells use it.`,
+    `A ${kind} cell needs a name, by which other cells use it.`,
     `The name follows the word ${kind}: it starts with a letter, then come letters, digits or _.`,
   )
 
@@ -77,7 +77,7 @@ export const moreInHeading = (at: Place, found: string, kind: string): Slip =>
     "heading/more",
     at,
     `The heading ends with the name, but ${found} follows.`,
-    `What a ${kind} says stands in clauses, each on a line of its own below the heading.`,
+    `What a ${kind} cell says stands in clauses, each on a line of its own below the heading.`,
   )
 
 export const reservedName = (at: Place, name: string, where: "heading" | "name" | "expression" | "predictor"): Slip =>

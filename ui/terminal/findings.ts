@@ -62,7 +62,8 @@ function findingOf(engine: Engine, cell: Cell): Finding {
 
 function placed(statement: Statement, { level, code, clause, text, hint, at }: Notice): PlacedNotice {
   const { line, column } = lineAndColumn(statement.text, textRange(statement, at).from)
-  return { level, code, clause, text, hint, line, column }
+  // A notice that names no clause and stands in one is of that clause all the same.
+  return { level, code, clause: clause ?? statement.clauses[at.clause]?.keyword ?? null, text, hint, line, column }
 }
 
 /** A fault may still show something: a refuted link says where. */

@@ -225,6 +225,18 @@ const cases: readonly Case[] = [
     written: cell('column lot headed "bed" category'),
   },
   {
+    code: "no-such-column",
+    cell: cell("column bed category", "column sown count", "column buds count", "column w count"),
+    at: [4, 1, 2],
+    text: /no column headed w/,
+  },
+  {
+    code: "column-claimed",
+    cell: cell("column bed category", 'column lot headed "bed" category'),
+    at: [2, 1, 2],
+    text: /The column headed "bed" is called bed already, so it cannot be lot too\./,
+  },
+  {
     code: "misfit",
     cell: cell("column sown count"),
     files: csv("bed,sown\na,1\nb,abc\nc,2\nd,x\n"),

@@ -98,6 +98,14 @@ describe("etamu run", () => {
     expect(code).toBe(0)
   })
 
+  it("names the clause a notice stands in, and none at the heading", () => {
+    put("beetles.cells", cells.replace("  link logit\n", ""))
+    const { findings } = JSON.parse(etamu("run", "beetles.cells", "--json").out) as Output
+    const noticeOf = (name: string): unknown => ((findings.find((finding) => finding["name"] === name)?.["notices"] ?? []) as Json[])[0]
+    expect(noticeOf("beetles")).toMatchObject({ code: "data/types-proposed", clause: "from", line: 2, column: 8 })
+    expect(noticeOf("kill")).toMatchObject({ code: "model/link-not-chosen", clause: null, line: 1, column: 1 })
+  })
+
   it("says line and column of a fault, who waits for it, and ends with 1", () => {
     put("beetles.cells", cells.replace("link logit", "link lgit").concat("---\nscales\n  model kill\n  across dose\n"))
     const { code, out } = etamu("run", "beetles.cells", "--json")
