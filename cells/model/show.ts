@@ -20,7 +20,7 @@ export function shown(whole: ModelFound): readonly Block[] {
     { type: "formula", ...equation(found) },
     coefficients(found, whole.intervals),
     { type: "sentence", text: fitSays(found), tone: "plain" },
-    { type: "sentence", text: `${rowsSay(found)} ${certificateSays(found)} ${errorsSay(found)}`, tone: "quiet" },
+    { type: "sentence", text: `${meanSays(found)} ${rowsSay(found)} ${certificateSays(found)} ${errorsSay(found)}`, tone: "quiet" },
   ]
 }
 
@@ -125,6 +125,18 @@ const doubtful = 0.05
 
 const linkVerdict = (p: number): string =>
   p < doubtful ? "these data speak against the link, or for curvature" : "no sign against the link"
+
+/** What μ is the mean of: above all, which of two outcomes counts as success. */
+function meanSays({ response: { label, measured, unit } }: ModelFinding): string {
+  switch (measured) {
+    case "truth":
+      return / is /.test(label) ? `μ is the chance that ${label}.` : `μ is the chance of ${label}: true, or 1, counts as success.`
+    case "share":
+      return `μ is the expected share, ${label}.`
+    default:
+      return `μ is the mean of ${label}${unit === null ? "" : `, in ${unit}`}.`
+  }
+}
 
 function rowsSay({ fit, unused, problem }: ModelFinding): string {
   const counted = problem.repeat === null ? "" : `, standing for n = ${writtenCount(fit.n)}`

@@ -128,8 +128,17 @@ describe("what qualifies a finding", () => {
     const table = { ...beds, frost: number(1, null, 3, 4, 5, 6, 7, 8) }
     const outcome = await finding("response buds\nfamily poisson\nlink log\npredictor frost\nstandard_errors sandwich by lot", table)
     expect(sentences(outcome, "quiet")[0]).toMatch(
-      /^7 rows used; not used: 1 row where frost is missing\. The maximum of the likelihood, reached in \d+ steps; there is no other\. Sandwich standard errors by 3 clusters\.$/,
+      /^μ is the mean of buds\. 7 rows used; not used: 1 row where frost is missing\. The maximum of the likelihood, reached in \d+ steps; there is no other\. Sandwich standard errors by 3 clusters\.$/,
     )
+  })
+
+  it.each([
+    ["response buds out of pots", "μ is the expected share, buds out of pots."],
+    ["response alive", "μ is the chance of alive: true, or 1, counts as success."],
+    ["response alive is false", "μ is the chance that alive is false."],
+  ])("says what μ is under %j", async (response, says) => {
+    const outcome = await finding(`${response}\nfamily binomial\nlink logit\npredictor intercept`, beds)
+    expect(sentences(outcome, "quiet")[0]?.startsWith(`${says} `)).toBe(true)
   })
 
   it("says where there may be another maximum", async () => {
