@@ -6,7 +6,7 @@ import type { FamilySpec, LinkSpec } from "./problem.ts"
 export function isConcave(family: FamilySpec, link: LinkSpec): boolean {
   // Of a link of one's own no more is known than whether it is the canonical one.
   if (link.own !== undefined) return link.own.canonical === family.name
-  if ((family.estimated?.length ?? 0) + (link.estimated?.length ?? 0) > 0) return false
+  if ((family.estimated?.length ?? 0) + (link.estimated?.length ?? 0) > 0 || link.limits) return false
   const a = powerOf(link)
   switch (family.name) {
     case "binomial":

@@ -30,7 +30,9 @@ export const familyOf = (spec: FamilySpec): Family => {
   const { name, parameters } = spec
   if (!isFamilyName(name) || parameters.length !== familyParameters[name])
     throw new RangeError(`There is no family ${name} with ${parameters.length} parameters.`)
-  if (name === "negative_binomial") return negativeBinomial(parameters[0] as number)
+  // With k at infinity it is Poisson's law.
+  if (name === "negative_binomial")
+    return parameters[0] === Infinity ? { ...poisson, name: "negative_binomial(∞)" } : negativeBinomial(parameters[0] as number)
   if (name === "tweedie") return tweedie(parameters[0] as number)
   return families[name]
 }

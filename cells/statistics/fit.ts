@@ -6,13 +6,16 @@ import { basisCoefficients, designCoefficients } from "./change.ts"
 import { isConcave } from "./concavity.ts"
 import { columnsNeeded, type Design, designOf, mostColumns, recipeOf } from "./design.ts"
 import { dispersionRule } from "./dispersion.ts"
+import { bestParameters, type Estimated, Surface, startingValues } from "./estimated.ts"
+import { familyOf } from "./families.ts"
 import { Factor } from "./gram.ts"
 import { type Findings, findings, scaledScore } from "./inference.ts"
+import { estimatedParameters, problemAt } from "./joint-information.ts"
 import { type Climb, limitOf } from "./limits.ts"
 import { nullModel } from "./null-model.ts"
-import type { Problem } from "./problem.ts"
+import type { FamilySpec, LinkSpec, Problem } from "./problem.ts"
 import type { Recipe } from "./recipe.ts"
-import { type Responses, responsesOf } from "./rows.ts"
+import { responsesOf } from "./rows.ts"
 import { Equations, type Maximum, maximum, Pace, type Point, polished, sameWeights } from "./scoring.ts"
 import { linkedLeastSquares, startingPoint } from "./start.ts"
 
@@ -30,6 +33,17 @@ export type Coefficient = {
   readonly p: number | null
   readonly low: number | null
   readonly high: number | null
+}
+
+/** A parameter of link or family that was estimated. */
+export type Parameter = {
+  /** `a`, `b`, `lower limit`, `upper limit`, `k`, `p`. */
+  readonly of: string
+  /** Null where it ran to infinity. */
+  readonly value: number | null
+  readonly standardError: number | null
+  /** Whether it is at an end of what it can be: −1 the lower, 1 the upper. */
+  readonly end: -1 | 0 | 1
 }
 
 export type Certificate = {
@@ -70,6 +84,11 @@ export type Fit = {
   readonly coefficients: readonly Coefficient[]
   /** Lower triangle by rows over all coefficients; NaN for those left out. */
   readonly covariance: Float64Array
+  /** What was estimated beside the coefficients, in the order of the link, its limits and the family. */
+  readonly parameters: readonly Parameter[]
+  /** As they were fitted: what was estimated of them in its place. */
+  readonly family: FamilySpec
+  readonly link: LinkSpec
   readonly deviance: number | null
   readonly logLikelihood: number | null
   readonly interceptOnly: { readonly deviance: number | null; readonly df: number } | null
@@ -131,10 +150,11 @@ export async function fit(problem: Problem, pause: () => Promise<void>, near: Fi
 
 /** The search itself, for whoever goes on from where it ended (profiles, tests of nested fits). */
 export async function searched(
-  problem: Problem,
+  asked: Problem,
   pause: () => Promise<void>,
   near: Fit | null = null,
 ): Promise<{ readonly ok: true; readonly found: Findings } | Extract<Fitted, { ok: false }>> {
+  let problem = asked
   if (problem.rows === 0) return { ok: false, why: "no_rows", detail: "no row has everything the model needs" }
   const needed = columnsNeeded(problem.terms, problem.intercept, problem.variables)
   if (needed > mostColumns)
@@ -147,22 +167,34 @@ export async function searched(
   )
   const unfit = missingIn(design)
   if (unfit !== null) return { ok: false, why: "gave_up", detail: unfit }
-  const responses = responsesOf(problem)
   if (pace.due(50 * problem.rows)) await pace.rest()
   const { basis, dependences } = await basisOf(design, pace)
-  const phi = provisionalDispersion(problem, responses)
-  const none = await nullModel(responses, pace, phi(1))
-  const equations = new Equations(basis, responses, pace)
+  const phi = provisionalDispersion(problem, familyOf(problem.family).discrete)
   const columns = design.recipe.columns.length
   const constant = design.constant ? 0 : -1
+  let estimated: Estimated | null = null
+  if (estimatedParameters(problem).length > 0) {
+    // Where a constant takes up scale and shift, a power is searched for as box_cox, which is continuous at 0.
+    const swapped = problem.link.name === "power" && design.constant && problem.offset === null
+    const of = swapped ? { ...problem, link: { ...problem.link, name: "box_cox" } } : problem
+    const surface = new Surface(of, basis, constant, columns, phi(basis.size), pace)
+    estimated = await bestParameters(surface, near ? await surface.at(startingValues(problem), null) : null)
+    if (!estimated) return { ok: false, why: "no_start", detail: "no coefficients were found under which every mean is possible" }
+    problem = problemAt(problem, surface.parameters, estimated.spot.values)
+  }
+  const responses = responsesOf(problem)
+  const none = await nullModel(responses, pace, phi(1))
+  const equations = new Equations(basis, responses, pace)
   const warm = near ? Float64Array.from(near.coefficients, ({ beta }) => beta ?? 0) : null
-  const start = await startingPoint(equations, constant, columns, none, warm)
+  const start =
+    (estimated && estimated.spot.problem.link.name === problem.link.name ? await filledAt(equations, estimated.spot.point) : null) ??
+    (await startingPoint(equations, constant, columns, none, warm))
   if (!start) return { ok: false, why: "no_start", detail: "no coefficients were found under which every mean is possible" }
   const measure = phi(basis.size)
   let climb: Climb = { problem, design, responses, equations, found: await maximum(equations, start, measure) }
   let limit = await limitOf(climb, measure)
   const others: number[] = []
-  if (!isConcave(problem.family, problem.link) && !near && limit.type !== "infinite") {
+  if (!isConcave(givenOnly(problem.family), givenOnly(problem.link)) && !near && limit.type !== "infinite") {
     const better = await fromOtherStarts(climb, measure, others)
     if (better) {
       climb = { ...climb, found: better }
@@ -177,7 +209,19 @@ export async function searched(
     const perfect = decrement <= 1e4 * responses.rounding && Number.isFinite(scaled)
     if (!perfect && !(scaled <= arrivedScore)) limit = { type: "gave_up" }
   }
-  return { ok: true, found: { climb, limit, dependences: named(dependences, design), none, others } }
+  if (estimated && !estimated.arrived && limit.type === "inside") limit = { type: "gave_up" }
+  if (estimated) others.push(...estimated.others)
+  return { ok: true, found: { climb, limit, dependences: named(dependences, design), none, others, estimated } }
+}
+
+/** The same with its parameters taken as given. */
+const givenOnly = <S extends FamilySpec | LinkSpec>(spec: S): S => ({ ...spec, estimated: [] })
+
+/** A point of these equations at the coefficients of another. */
+async function filledAt(equations: Equations, { gamma }: Point): Promise<Point | null> {
+  const point = equations.point()
+  point.gamma.set(gamma)
+  return (await equations.fill(point, "expected")) ? point : null
 }
 
 /**
@@ -222,12 +266,12 @@ async function fromOtherStarts({ equations, found }: Climb, phi: (point: Point) 
 }
 
 /** φ for stopping rules: the number said, or Pearson's X² over what is left, never taken as more than a first idea. */
-function provisionalDispersion(problem: Problem, responses: Responses): (rank: number) => (point: Point) => number {
+function provisionalDispersion(problem: Problem, discrete: boolean): (rank: number) => (point: Point) => number {
   const { given } = dispersionRule(problem)
   if (given !== null) return () => () => given
-  if (responses.family.discrete) return () => () => 1
+  if (discrete) return () => () => 1
   let n = 0
-  for (let i = 0; i < responses.rows; i++) n += problem.repeat ? (problem.repeat[i] as number) : 1
+  for (let i = 0; i < problem.rows; i++) n += problem.repeat ? (problem.repeat[i] as number) : 1
   return (rank) => (point) => point.pearson / Math.max(1, n - rank)
 }
 

@@ -5,9 +5,12 @@ import { changeMatrix, designCoefficients, designCovariance, designScore, intoBa
 import { isConcave } from "./concavity.ts"
 import { dispersionByLikelihood, dispersionRule } from "./dispersion.ts"
 import { log } from "./elementary.ts"
+import { controlDeviance, controlPearson, type Estimated } from "./estimated.ts"
 import type { Family } from "./family.ts"
-import type { Certificate, Coefficient, DependentTerms, Evidence, Fit, Frame } from "./fit.ts"
+import type { Certificate, Coefficient, DependentTerms, Evidence, Fit, Frame, Parameter } from "./fit.ts"
 import { cholesky, Factor, type Gram } from "./gram.ts"
+import { jointCovariance } from "./joint-covariance.ts"
+import { type EstimatedParameter, estimatedParameters, searchedValue, shownValue } from "./joint-information.ts"
 import type { Climb, Limit } from "./limits.ts"
 import type { NullModel } from "./null-model.ts"
 import type { Problem } from "./problem.ts"
@@ -27,6 +30,8 @@ export type Findings = {
   readonly none: NullModel | null
   /** Deviances of other maxima that other starts led to. */
   readonly others: readonly number[]
+  /** What was estimated beside the coefficients. */
+  readonly estimated?: Estimated | null
 }
 
 /** Below this index the data cannot tell a direction from the columns. */
@@ -41,7 +46,9 @@ export async function findings(given: Findings): Promise<Fit> {
   const { family, link } = responses
   const rank = climb.equations.basis.size
   const n = rowsCounted(problem)
-  const df = n - rank
+  const parameters = estimatedParameters(problem)
+  const ofLink = parameters.filter(({ part }) => part !== "family").length
+  const df = n - rank - ofLink
   const rule = dispersionRule(problem)
 
   // Likelihood and errors come from the rows whose means stay: all of them, unless coefficients run to infinity.
@@ -51,8 +58,9 @@ export async function findings(given: Findings): Promise<Fit> {
   const means = wholeMeans(given, point)
   const moved = limit.type === "infinite" ? movedRows(climb, limit.rows, means.mu) : { deviance: 0, pearson: 0 }
   const perfect = !family.discrete && isPerfect(responses, means.mu)
-  const deviance = perfect ? 0 : (point?.deviance ?? 0) + moved.deviance
-  const pearson = perfect ? 0 : (point?.pearson ?? 0) + moved.pearson
+  const control = controlSums(problem)
+  const deviance = perfect ? 0 : (point?.deviance ?? 0) + moved.deviance + control.deviance
+  const pearson = perfect ? 0 : (point?.pearson ?? 0) + moved.pearson + control.pearson
 
   const ml =
     problem.family.name === "tweedie" && deviance > 0
@@ -67,28 +75,52 @@ export async function findings(given: Findings): Promise<Fit> {
   const certificate = classOf(given)
   const factor = rest && point && limit.type !== "edge" ? Factor.of(point.gram) : null
   const hasErrors = (limit.type === "inside" || limit.type === "infinite") && phi !== null && factor !== null && rest !== null
-  const covariance = hasErrors ? await covarianceOf(rest, factor, phi, n, clusters) : null
+  // Parameters at an end of what they can be have no errors, and are taken as given for those of the others.
+  const ends = given.estimated?.ends ?? []
+  const joined = parameters.filter(({ part }, j) => ends[j] === 0 && !(part === "family" && problem.family.name === "tweedie"))
+  const joint = hasErrors && joined.length > 0 && point ? await jointCovariance(rest, point, joined, phi, n, clusters) : null
+  const covariance = !hasErrors
+    ? null
+    : joined.length > 0
+      ? (joint?.coefficients ?? null)
+      : await covarianceOf(rest, factor, phi, n, clusters)
   const { coefficients, lower } = coefficientsOf(given, rest, point, covariance, lawDf)
 
   const likely = perfect && rule.given === null ? null : point ? await logLikelihoodOf(rest as Climb, point, rule.given ?? ml) : 0
   const logLikelihood =
-    likely === null || limit.type !== "infinite" ? likely : likely + movedLikelihood(climb, limit.rows, means.mu, rule.given ?? ml)
-  const counted = rank + (family.discrete || rule.given !== null ? 0 : 1)
+    likely === null
+      ? null
+      : controlLikelihood(problem, family) +
+        (limit.type !== "infinite" ? likely : likely + movedLikelihood(climb, limit.rows, means.mu, rule.given ?? ml))
+  const counted = rank + parameters.length + (family.discrete || rule.given !== null ? 0 : 1)
   const criteria = logLikelihood !== null && limit.type !== "gave_up" && !(family.discrete && phi !== 1)
   const measured = rest && point ? rest.equations : null
   await climb.equations.pace.rest()
 
   return {
     n,
-    rows: problem.rows,
+    rows: problem.rows + (problem.control?.y.length ?? 0),
     rank,
     df,
     parametersCounted: counted,
     coefficients,
     covariance: lower,
+    parameters: parameters.map((parameter, j): Parameter => {
+      const [value, slope] = shownValue(problem, parameter, searchedValue(problem, parameter))
+      const at = joined.indexOf(parameter)
+      const variance = at >= 0 ? (joint?.variances[at] ?? Number.NaN) : powerVariance(given, parameter)
+      return {
+        of: parameter.of,
+        value: Number.isFinite(value) ? value : null,
+        standardError: variance > 0 && hasErrors ? Math.abs(slope) * Math.sqrt(variance) : null,
+        end: ends[j] ?? 0,
+      }
+    }),
+    family: problem.family,
+    link: problem.link,
     deviance: Number.isFinite(deviance) ? deviance : null,
     logLikelihood,
-    interceptOnly: constant ? { deviance: none ? none.deviance : null, df: n - 1 } : null,
+    interceptOnly: constant ? { deviance: none ? none.deviance + control.deviance : null, df: n - 1 } : null,
     aic: criteria ? 2 * counted - 2 * logLikelihood : null,
     bic: criteria ? log(trialsCounted(problem)) * counted - 2 * logLikelihood : null,
     pearson,
@@ -103,7 +135,9 @@ export async function findings(given: Findings): Promise<Fit> {
       evidence: evidenceOf(given, dependences),
     },
     goodnessOfLink:
-      certificate === "interior" && factor && phi !== null && phi > 0 ? await goodnessOf(climb, factor, phi, constant, df) : null,
+      certificate === "interior" && factor && phi !== null && phi > 0 && ofLink === 0
+        ? await goodnessOf(climb, factor, phi, constant, df)
+        : null,
     meanRange: {
       possible: [Math.max(link.range.low, family.range.low), Math.min(link.range.high, family.range.high)],
       fitted: meanRange(means.mu),
@@ -118,11 +152,11 @@ export async function findings(given: Findings): Promise<Fit> {
   }
 }
 
-function classOf({ limit, dependences, others }: Findings): Certificate["class"] {
+function classOf({ limit, dependences, others, estimated }: Findings): Certificate["class"] {
   if (limit.type === "gave_up") return "gave_up"
   if (dependences.length > 0) return "unidentified"
   if (limit.type === "infinite") return "infinite"
-  if (limit.type === "edge") return "boundary"
+  if (limit.type === "edge" || estimated?.ends.some((end) => end !== 0)) return "boundary"
   return others.length > 0 ? "several_maxima" : "interior"
 }
 
@@ -277,14 +311,42 @@ const twoSided = (ratio: number, df: number | null): number | null => {
 }
 
 /** n: rows used, or the sum of `repeat`. */
-const rowsCounted = (problem: Problem): number => (problem.repeat ? problem.repeat.reduce((sum, R) => sum + R, 0) : problem.rows)
+const rowsCounted = ({ repeat, rows, control }: Problem): number => {
+  const own = repeat ? repeat.reduce((sum, R) => sum + R, 0) : rows
+  return own + (control ? (control.repeat ? control.repeat.reduce((sum, R) => sum + R, 0) : control.y.length) : 0)
+}
 
 const trialsCounted = (problem: Problem): number => {
   let sum = 0
   for (let i = 0; i < problem.rows; i++)
     sum += (problem.repeat ? (problem.repeat[i] as number) : 1) * (problem.trials ? (problem.trials[i] as number) : 1)
+  const { control } = problem
+  control?.y.forEach((_, i) => {
+    sum += (control.repeat ? (control.repeat[i] as number) : 1) * (control.trials ? (control.trials[i] as number) : 1)
+  })
   return sum
 }
+
+/** What the rows of no dose add. */
+function controlSums({ control, link }: Problem): { readonly deviance: number; readonly pearson: number } {
+  const low = link.limits?.low ?? 0
+  return control ? { deviance: controlDeviance(control, low), pearson: controlPearson(control, low) } : { deviance: 0, pearson: 0 }
+}
+
+function controlLikelihood({ control, link }: Problem, family: Family): number {
+  if (!control) return 0
+  const low = link.limits?.low ?? 0
+  let sum = 0
+  control.y.forEach((y, i) => {
+    const times = (control.repeat ? (control.repeat[i] as number) : 1) * (control.precision ? (control.precision[i] as number) : 1)
+    sum += times * family.logDensity(y, low, 1 - low, control.trials ? (control.trials[i] as number) : 1, 1)
+  })
+  return sum
+}
+
+/** The variance of a Tweedie power, from how its slopes change along the profile; NaN for others. */
+const powerVariance = ({ estimated, climb }: Findings, { part }: EstimatedParameter): number =>
+  part === "family" && climb.problem.family.name === "tweedie" ? (estimated?.powerVariance ?? Number.NaN) : Number.NaN
 
 /** Whether what is left of every row is rounding. Under the normal law rounding goes by the largest response, else by each. */
 function isPerfect({ family, y, a, rows }: Responses, mu: Float64Array): boolean {

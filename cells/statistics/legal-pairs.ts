@@ -40,7 +40,7 @@ export const canonicalLink = (family: FamilySpec): LinkSpec => {
 /** Whether the link is canonical, up to a linear change: `power(−1)` is the reciprocal, and so is `box_cox(−1)`. */
 export const isCanonical = (family: FamilySpec, link: LinkSpec): boolean => {
   if (link.own !== undefined) return link.own.canonical === family.name
-  if (family.name === "negative_binomial") return false
+  if (family.name === "negative_binomial" || (link.limits && (link.limits.low !== 0 || link.limits.high !== 1))) return false
   if (family.name === "tweedie") return powerOf(link) === 1 - (family.parameters[0] ?? Number.NaN)
   return canonicalLink(family).name === plainLink(link).name
 }

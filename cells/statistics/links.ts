@@ -2,6 +2,7 @@
 // add a link is to add it here and to say in legal-pairs.ts for which families it is legal.
 
 import { atan, exp, expm1, log, log1p, pow, tan } from "./elementary.ts"
+import { limitedLink } from "./limited-link.ts"
 import type { Link, Range } from "./link.ts"
 import { ownLink } from "./own-link.ts"
 import { arandaOrdaz, boxCox, powerBend, stukel, symmetricPower } from "./parametric-links.ts"
@@ -39,6 +40,11 @@ export const isLinkName = (name: string): name is LinkName => Object.hasOwn(link
  * @throws RangeError for a name or parameters that are none: what a statement says is checked before
  */
 export const linkOf = (spec: LinkSpec, side: 1 | -1 = 1): Link => {
+  const link = unlimited(spec, side)
+  return spec.limits ? limitedLink(link, spec.limits.low, spec.limits.high) : link
+}
+
+const unlimited = (spec: LinkSpec, side: 1 | -1): Link => {
   if (spec.own !== undefined) return ownLink(spec.own, spec.name)
   if (!isLinkName(spec.name) || spec.parameters.length !== linkNames[spec.name].length)
     throw new RangeError(`There is no link ${spec.name} with ${spec.parameters.length} parameters.`)

@@ -42,7 +42,7 @@ export async function nullModel(responses: Responses, pace: Pace, phi: (point: P
     if (!(eta > low && eta < high)) {
       // The nearest comfortable place inside.
       const width = Math.min(high - low, 1 + Math.abs(low > Number.NEGATIVE_INFINITY ? low : high))
-      eta = low > Number.NEGATIVE_INFINITY ? low + width / 2 : high - width / 2
+      eta = low > Number.NEGATIVE_INFINITY ? low + width / 2 : high < Number.POSITIVE_INFINITY ? high - width / 2 : 0
     }
   }
   const shape: Shape = { rows, plain: [null], blocks: [], eliminated: -1, size: 1 }

@@ -14,7 +14,10 @@ export type LinkSpec = {
   readonly parameters: readonly number[]
   readonly estimated?: readonly number[]
   readonly own?: OwnLink
+  /** μ = low + (high − low)·F(η) for shares; those named are estimated. */
+  readonly limits?: Limits
 }
+export type Limits = { readonly low: number; readonly high: number; readonly estimated: readonly ("low" | "high")[] }
 
 export type Variable =
   | { readonly type: "number"; readonly values: Float64Array }
@@ -46,8 +49,17 @@ export type Problem = {
   readonly exposure: Float64Array | null
   /** Cluster codes for `sandwich by C`. */
   readonly cluster: Int32Array | null
+  /** Rows of no dose, beside the rows above: their mean is the lower limit, whatever the predictor. */
+  readonly control?: Control | null
   readonly dispersion: Dispersion
   readonly standardErrors: "expected" | "observed" | "sandwich"
   /** Level of the intervals, such as 0.95. */
   readonly confidence: number
+}
+
+export type Control = {
+  readonly y: Float64Array
+  readonly trials: Float64Array | null
+  readonly repeat: Float64Array | null
+  readonly precision: Float64Array | null
 }

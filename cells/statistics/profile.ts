@@ -7,6 +7,7 @@ import { dispersionRule } from "./dispersion.ts"
 import { type Fit, searched } from "./fit.ts"
 import { Factor } from "./gram.ts"
 import type { Findings } from "./inference.ts"
+import { jointIntervals } from "./joint-profile.ts"
 import type { Problem } from "./problem.ts"
 import { edgeProfile } from "./profile-at-edge.ts"
 import { directionOf } from "./recession.ts"
@@ -47,6 +48,7 @@ export async function profileIntervals(
   const phi = fit.dispersion.value
   const cut = profileCut(problem, fit)
   if (phi === null || !(phi > 0) || cut === null || fit.deviance === null || fit.certificate.class === "gave_up") return none
+  if (fit.parameters.length > 0) return jointIntervals(problem, fit, cut, pause)
   // From the coefficients of the fit, so that it is not searched for again.
   const search = await searched(problem, pause, fit)
   if (!search.ok || search.found.limit.type === "gave_up") return none

@@ -67,7 +67,7 @@ export function responsesOf(problem: Problem): Responses {
   let offset = problem.offset
   let scale: Float64Array | null = null
   if (exposure) {
-    if (link.name === "log" || link.name === "power(0)" || link.name === "cloglog") {
+    if (problem.link.name === "log" || link.name === "power(0)" || problem.link.name === "cloglog") {
       offset = exposure.map((e, i) => log(e) + (problem.offset ? (problem.offset[i] as number) : 0))
     } else if (family.name === "binomial") throw new RangeError(`an exposure means nothing under the link ${link.name}`)
     else scale = exposure

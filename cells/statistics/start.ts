@@ -69,10 +69,13 @@ export function linkedLeastSquares(equations: Equations): Float64Array | null {
     const own = a[i] as number
     if (own === 0) continue
     let mu = (y[i] as number) / (scale ? (scale[i] as number) : 1)
-    const onShares = link.range.high === 1 || family.name === "binomial"
+    const { low, high } = link.range
+    const onShares = high === 1 || family.name === "binomial"
     if (onShares) mu = family.name === "binomial" ? (own * mu + 0.5) / (own + 1) : Math.min(0.95, Math.max(0.05, mu))
     else if (link.range.low === 0 || family.range.low === 0) mu = mu > 0 ? mu : Math.min(small, 0.5 * Math.abs(mean) || small)
     else if (link.range.high === 0) mu = mu < 0 ? mu : -small
+    // Between limits a share may lie outside of what the link can take.
+    if (high - low < 1) mu = Math.min(high - 0.02 * (high - low), Math.max(low + 0.02 * (high - low), mu))
     const eta = link.eta(mu)
     const d = link.slope(eta)
     const v = family.variance(mu, 1 - mu)

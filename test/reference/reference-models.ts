@@ -94,7 +94,7 @@ export function problemOf(whole: ReferenceSet, model: ReferenceModel): Problem |
   const set: ReferenceSet = { ...whole, data }
   const family = families[model.family.name]
   const name = links[model.link.name]
-  if (family === undefined || name === undefined || model.family.k === "ml") return null
+  if (family === undefined || name === undefined) return null
   const link: LinkSpec = { name, parameters: model.link.lambda === undefined ? [] : [Number(model.link.lambda)] }
   const { k, p } = model.family
   // With k by maximum likelihood the search starts anywhere.
@@ -111,6 +111,12 @@ export function problemOf(whole: ReferenceSet, model: ReferenceModel): Problem |
   for (const { name: says, expr } of model.columns) {
     if (expr[0] === "num" && expr[1] === "1" && says === "(intercept)") {
       intercept = true
+      continue
+    }
+    const pieces = numericPieces(expr)
+    if (pieces !== null) {
+      for (const { variable } of pieces) variables[variable] = { type: "number", values: column(variable) }
+      terms.push({ says, pieces })
       continue
     }
     const values = Float64Array.from({ length: rows }, (_, i) => expressionValue(expr, set.data, i))
@@ -147,6 +153,17 @@ export function problemOf(whole: ReferenceSet, model: ReferenceModel): Problem |
     standardErrors: "expected",
     confidence: 0.95,
   }
+}
+
+/** Whole powers of columns and products of them as a predictor says them, since these have more digits than a double; null for all else. */
+function numericPieces(expression: Expression): Term["pieces"] | null {
+  const [what, left, right] = expression
+  if (what === "var") return [{ variable: left as string, as: "itself", setting: null }]
+  if (what === "pow" && left?.[0] === "var" && right?.[0] === "num" && Number.isInteger(Number(right[1])))
+    return [{ variable: left[1] as string, as: "power", setting: Number(right[1]) }]
+  if (what !== "mul") return null
+  const factors = [numericPieces(left as Expression), numericPieces(right as Expression)]
+  return factors.every((pieces) => pieces !== null) ? factors.flat() : null
 }
 
 /** The value of a nested expression in one row. */
