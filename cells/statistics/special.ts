@@ -74,6 +74,20 @@ export const chiSquareUpperQuantile = (p: number, df: number): number => {
   )
 }
 
+/** Both tails of the gamma law of shape a > 0 at x ≥ 0, lower and upper: the smaller is computed as such, the other is one minus it. */
+export const gammaTails = (a: number, x: number): readonly [number, number] => {
+  if (x === 0) return [0, 1]
+  if (x < a + 1) {
+    const lower = gammaFactor(a, x) * gammaSeries(a, x)
+    return [lower, 1 - lower]
+  }
+  const upper = upperGamma(a, x)
+  return [1 - upper, upper]
+}
+
+/** I_x(a, b), the share of the beta law below x, where x + y = 1: full precision however small it is. */
+export const betaCdf = (a: number, b: number, x: number, y: number): number => lowerBeta(a, b, x, y)
+
 /** P(T > x) for Student's t on `df` degrees of freedom. */
 export const tUpperTail = (x: number, df: number): number => {
   if (x < 0) return 1 - tUpperTail(-x, df)
@@ -208,16 +222,8 @@ const stirlingErrors: readonly number[] = [
  */
 const upperGamma = (a: number, x: number): number => {
   if (x === Infinity) return 0
-  const factor = exp(-devianceTerm(a, x) - stirlingError(a) - halfLogTwoPi - 0.5 * log(a))
-  if (x < a + 1) {
-    let term = 1
-    let sum = 1
-    for (let k = 1; term > sum * 1e-17; k++) {
-      term *= x / (a + k)
-      sum += term
-    }
-    return 1 - factor * sum
-  }
+  const factor = gammaFactor(a, x)
+  if (x < a + 1) return 1 - factor * gammaSeries(a, x)
   let b = x + 1 - a
   let c = Infinity
   let d = 1 / b
@@ -231,6 +237,20 @@ const upperGamma = (a: number, x: number): number => {
     if (arrived(c * d)) break
   }
   return factor * a * fraction
+}
+
+/** e^(−x)·x^a/Γ(a + 1). */
+const gammaFactor = (a: number, x: number): number => exp(-devianceTerm(a, x) - stirlingError(a) - halfLogTwoPi - 0.5 * log(a))
+
+/** Σ x^k/((a + 1)…(a + k)). */
+const gammaSeries = (a: number, x: number): number => {
+  let term = 1
+  let sum = 1
+  for (let k = 1; term > sum * 1e-17; k++) {
+    term *= x / (a + k)
+    sum += term
+  }
+  return sum
 }
 
 /**
