@@ -3,7 +3,7 @@
 // (Björck 1967, BIT 7:1, with 32 digits). Here columns that say nothing new are found, in the order of the terms, and named.
 
 import type { Design } from "./design.ts"
-import { denseColumns } from "./design.ts"
+import { type WrittenColumn, writtenColumns } from "./design.ts"
 import { productError, type Wide, wide, wideDivide, wideDot, wideRoot, wideSubtract } from "./double-double.ts"
 import { Factor, gramOf, Layout, pacedSums, rangeSums } from "./gram.ts"
 import type { Pace } from "./scoring.ts"
@@ -52,7 +52,7 @@ export type Basis = Shape & {
   readonly layout: Layout
   readonly change: Change
   /** The design's columns written out, for orthogonal bases only: η is then summed from them with 32 digits. */
-  readonly written: readonly Float64Array[] | null
+  readonly written: readonly WrittenColumn[] | null
 }
 
 export type Dependence = { readonly column: number; readonly on: readonly { readonly column: number; readonly times: number }[] }
@@ -85,7 +85,7 @@ export async function basisOf(
     if (most < mostInflation) return { basis: first, dependences: [] }
   }
   if (design.rows * p <= mostWritten) {
-    const written = denseColumns(design)
+    const written = writtenColumns(design)
     const { kept, dependences, change } = orthogonalised(written, null, order)
     if (dependences.length > 0) {
       const keep = new Uint8Array(p)
@@ -108,7 +108,7 @@ export async function basisOf(
 export function reweightedBasis(design: Design, basis: Basis, weight: Float64Array): Basis | null {
   if (design.rows * basis.size > mostWritten) return null
   const columns = [...basis.change.column].sort((a, b) => a - b)
-  const written = basis.written ?? denseColumns(design)
+  const written = basis.written ?? writtenColumns(design)
   const { kept, change } = orthogonalised(written, weight, columns)
   return kept.length === columns.length ? orthogonalBasis(written, kept, change) : null
 }
@@ -281,11 +281,11 @@ type Orthogonalised = {
 
 /** Modified Gram-Schmidt in 32 digits over the columns in order, leaving out those whose part beyond the earlier ones is nothing. */
 function orthogonalised(
-  written: readonly Float64Array[],
+  written: readonly WrittenColumn[],
   weight: Float64Array | null,
   only: readonly number[] | null = null,
 ): Orthogonalised {
-  const n = written[0]?.length ?? 0
+  const n = written[0]?.high.length ?? 0
   const roots = weight?.map((w) => Math.sqrt(w)) ?? null
   const q: Wide[] = []
   const kept: number[] = []
@@ -293,14 +293,15 @@ function orthogonalised(
   const dependences: Dependence[] = []
   const out = new Float64Array(2)
   for (const at of only ?? written.keys()) {
-    const source = written[at] as Float64Array
+    const source = written[at] as WrittenColumn
     const column = wide(n)
     for (let i = 0; i < n; i++) {
-      const x = source[i] as number
+      const x = source.high[i] as number
+      const rest = source.low ? (source.low[i] as number) : 0
       const root = roots ? (roots[i] as number) : 1
       const p = x * root
       column.high[i] = p
-      column.low[i] = roots ? productError(x, root, p) : 0
+      column.low[i] = roots ? productError(x, root, p) + rest * root : rest
     }
     wideDot(column, column, 0, n, out)
     const [length] = wideRoot(out[0] as number, out[1] as number)
@@ -342,7 +343,7 @@ function combination(
   entries: Float64Array,
   triangle: readonly Float64Array[],
   kept: readonly number[],
-  written: readonly Float64Array[],
+  written: readonly WrittenColumn[],
   length: number,
 ): Dependence["on"] {
   const p = triangle.length
@@ -356,7 +357,7 @@ function combination(
     const column = kept[k] as number
     const times = tidy(c[k] as number)
     let squares = 0
-    for (const x of written[column] as Float64Array) squares += x * x
+    for (const x of (written[column] as WrittenColumn).high) squares += x * x
     return Math.abs(times) * Math.sqrt(squares) > 1e-9 * length ? [{ column, times }] : []
   })
 }
@@ -364,14 +365,16 @@ function combination(
 /** A whole number other than 0 where it is one but for rounding: a part of 1e-12 may be all of a column in another unit. */
 const tidy = (x: number): number => (Math.round(x) !== 0 && Math.abs(x - Math.round(x)) < 1e-9 ? Math.round(x) : x)
 
-function orthogonalBasis(written: readonly Float64Array[], kept: readonly number[], change: Change & { type: "orthogonal" }): Basis {
-  const n = written[0]?.length ?? 0
+function orthogonalBasis(written: readonly WrittenColumn[], kept: readonly number[], change: Change & { type: "orthogonal" }): Basis {
+  const n = written[0]?.high.length ?? 0
   const p = kept.length
   // X = Q·R solved for Q, a column at a time and in 32 digits: under weights the columns at hand are those of √W·X.
   const columns: Wide[] = []
   for (let j = 0; j < p; j++) {
     const column = wide(n)
-    column.high.set(written[kept[j] as number] as Float64Array)
+    const source = written[kept[j] as number] as WrittenColumn
+    column.high.set(source.high)
+    if (source.low) column.low.set(source.low)
     for (let k = 0; k < j; k++) wideSubtract(column, columns[k] as Wide, change.high[k * p + j] as number, change.low[k * p + j] as number)
     wideDivide(column, change.high[j * p + j] as number, change.low[j * p + j] as number)
     columns.push(column)
@@ -456,7 +459,7 @@ export function basisOver(design: Design, columns: readonly number[]): Basis {
     if (!scaled) throw new RangeError("a column of the design is zero")
     return scaled
   }
-  const written = denseColumns(design)
+  const written = writtenColumns(design)
   const { kept, change } = orthogonalised(
     written,
     null,

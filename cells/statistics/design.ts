@@ -2,14 +2,25 @@
 // recipe, so that other rows get the same columns. Factors stay codes: a term with factors is a block of cells, each with the columns it
 // belongs to, and no column of zeros and ones is ever made here unless it is asked for.
 
+import { productError, widePower } from "./double-double.ts"
 import { cos, log, pow, sin } from "./elementary.ts"
 import type { Piece, Term, Variable } from "./problem.ts"
 import type { PieceRecipe, Recipe, TermRecipe } from "./recipe.ts"
 
 export type Variables = Readonly<Record<string, Variable>>
 
+/**
+ * What rounding took from the values of a column: powers and products have twice the digits of what they are made of. It is made only when
+ * it is asked for, and null where nothing was taken.
+ */
+type Rest = (() => Float64Array) | null
+type Made = { readonly values: Float64Array; readonly rest: Rest }
+
 /** A column of numbers. */
-type PlainColumn = { readonly column: number; readonly values: Float64Array }
+type PlainColumn = Made & { readonly column: number }
+
+/** A column written out with 32 digits; no low part where the high one is exact. */
+export type WrittenColumn = { readonly high: Float64Array; readonly low: Float64Array | null }
 
 /**
  * The columns of a term with factors. Row i is in cell `cells[i]` (−1: a level never seen); cell c belongs to the columns
@@ -23,6 +34,7 @@ export type Block = {
   readonly column: Int32Array
   readonly value: Float64Array
   readonly multiplier: Float64Array | null
+  readonly multiplierRest: Rest
   /** The columns of the whole block, in order. */
   readonly columns: Int32Array
   /** Blocks of one term share cells and contrasts. */
@@ -95,10 +107,10 @@ export function designOf(recipe: Recipe, variables: Variables, rows: number): De
     const numbers = term.pieces.map((piece) => (piece.type === "number" ? numberColumns(piece, variables, rows) : null))
     const factors = term.pieces.map((piece) => (piece.type === "category" ? piece : null))
     if (factors.every((factor) => factor === null)) {
-      let products: (Float64Array | null)[] = [null]
+      let products: (Made | null)[] = [null]
       for (const columns of numbers) products = products.flatMap((left) => (columns ?? []).map((right) => product(left, right)))
-      products.forEach((values, j) => {
-        if (values) plain.push({ column: term.from + j, values })
+      products.forEach((made, j) => {
+        if (made) plain.push({ column: term.from + j, ...made })
       })
       return
     }
@@ -129,6 +141,27 @@ export function denseColumns(design: Design): Float64Array[] {
   return columns
 }
 
+/** The same with 32 digits, powers and products of numbers as well. */
+export function writtenColumns(design: Design): WrittenColumn[] {
+  const low = new Map<number, Float64Array>()
+  for (const { column, rest } of design.plain) if (rest) low.set(column, rest())
+  for (const block of design.blocks) {
+    const rest = block.multiplierRest?.()
+    if (!rest) continue
+    for (let i = 0; i < design.rows; i++) {
+      const cell = block.cells[i] as number
+      if (cell < 0) continue
+      for (let e = block.starts[cell] as number; e < (block.starts[cell + 1] as number); e++) {
+        const column = block.column[e] as number
+        const values = low.get(column) ?? new Float64Array(design.rows)
+        low.set(column, values)
+        values[i] = (rest[i] as number) * (block.value[e] as number)
+      }
+    }
+  }
+  return denseColumns(design).map((high, column) => ({ high, low: low.get(column) ?? null }))
+}
+
 /** The same columns at some of the rows. */
 export function designAtRows(design: Design, rows: Int32Array): Design {
   const taken = new Map<Float64Array | Int32Array, Float64Array | Int32Array>()
@@ -141,14 +174,16 @@ export function designAtRows(design: Design, rows: Int32Array): Design {
     taken.set(values, some)
     return some
   }
+  const takeRest = (rest: Rest): Rest => (rest === null ? null : () => take(rest()))
   return {
     ...design,
     rows: rows.length,
-    plain: design.plain.map(({ column, values }) => ({ column, values: take(values) })),
+    plain: design.plain.map(({ column, values, rest }) => ({ column, values: take(values), rest: takeRest(rest) })),
     blocks: design.blocks.map((block) => ({
       ...block,
       cells: take(block.cells),
       multiplier: block.multiplier === null ? null : take(block.multiplier),
+      multiplierRest: takeRest(block.multiplierRest),
     })),
   }
 }
@@ -255,27 +290,26 @@ function simplePiece(piece: Pick<Piece, "as" | "setting">, x: number): number {
   }
 }
 
-/** x^a; small whole powers by multiplication, which rounds least and allows negative x. */
+/** x^a; small whole powers by multiplication in 32 digits, which allows negative x. */
 function power(x: number, a: number): number {
-  if (Number.isInteger(a) && Math.abs(a) <= 64) {
-    let result = 1
-    for (let k = 0; k < Math.abs(a); k++) result *= x
-    return a < 0 ? 1 / result : result
-  }
+  if (isSmallWhole(a)) return widePower(x, a)[0]
   return x < 0 ? Number.NaN : pow(x, a)
 }
 
-function numberColumns(piece: PieceRecipe & { type: "number" }, variables: Variables, rows: number): Float64Array[] {
+const isSmallWhole = (a: number): boolean => Number.isInteger(a) && Math.abs(a) <= 64
+
+function numberColumns(piece: PieceRecipe & { type: "number" }, variables: Variables, rows: number): Made[] {
+  const exact = (values: Float64Array): Made => ({ values, rest: null })
   const variable = variables[piece.variable]
   if (variable?.type !== "number") throw new RangeError(`${piece.variable} has to be a number`)
   const x = variable.values
   switch (piece.as) {
     case "itself":
-      return [x.length === rows ? x : x.subarray(0, rows)]
+      return [exact(x.length === rows ? x : x.subarray(0, rows))]
     case "polynomial":
-      return polynomialColumns(x, piece.learned, piece.says.length, rows)
+      return polynomialColumns(x, piece.learned, piece.says.length, rows).map(exact)
     case "natural_spline":
-      return splineColumns(x, piece.learned, rows)
+      return splineColumns(x, piece.learned, rows).map(exact)
     case "periodic": {
       const period = piece.setting ?? 1
       const sines = new Float64Array(rows)
@@ -287,12 +321,15 @@ function numberColumns(piece: PieceRecipe & { type: "number" }, variables: Varia
         sines[i] = sin(angle)
         cosines[i] = cos(angle)
       }
-      return [sines, cosines]
+      return [exact(sines), exact(cosines)]
     }
     default: {
       const values = new Float64Array(rows)
       for (let i = 0; i < rows; i++) values[i] = simplePiece(piece, x[i] as number)
-      return [values]
+      const a = piece.as === "power" ? (piece.setting ?? 1) : 1
+      // Logarithms and broken powers are taken as the numbers they round to.
+      if (a === 1 || !isSmallWhole(a)) return [exact(values)]
+      return [{ values, rest: () => Float64Array.from(values, (_, i) => widePower(x[i] as number, a)[1]) }]
     }
   }
 }
@@ -416,8 +453,19 @@ const weightedSum = (n: number, at: (row: number) => number): number => {
   return total
 }
 
-const product = (left: Float64Array | null, right: Float64Array): Float64Array =>
-  left ? left.map((value, i) => value * (right[i] as number)) : right
+function product(left: Made | null, right: Made): Made {
+  if (!left) return right
+  const values = left.values.map((value, i) => value * (right.values[i] as number))
+  const rest = (): Float64Array => {
+    const [a, b] = [left.rest?.(), right.rest?.()]
+    return values.map((value, i) => {
+      const [x, y] = [left.values[i] as number, right.values[i] as number]
+      const taken = productError(x, y, value) + (x * (b ? (b[i] as number) : 0) + (a ? (a[i] as number) : 0) * y)
+      return Number.isFinite(taken) ? taken : 0
+    })
+  }
+  return { values, rest }
+}
 
 // Terms with factors ---------------------------------------------------------------------------------------------------------------------
 
@@ -437,7 +485,7 @@ function codesOf(piece: PieceRecipe & { type: "category" }, variables: Variables
   return codes
 }
 
-function termBlocks(term: TermRecipe, t: number, numbers: readonly (Float64Array[] | null)[], variables: Variables, rows: number): Block[] {
+function termBlocks(term: TermRecipe, t: number, numbers: readonly (Made[] | null)[], variables: Variables, rows: number): Block[] {
   const factors = term.pieces.filter((piece) => piece.type === "category")
   const { cells, levelsOfCell } = combinedCells(
     factors.map((factor) => codesOf(factor, variables, rows)),
@@ -446,15 +494,13 @@ function termBlocks(term: TermRecipe, t: number, numbers: readonly (Float64Array
   )
   const count = levelsOfCell.length
   // Every combination of numeric columns is a block of its own over the same cells.
-  let combinations: { readonly values: Float64Array | null; readonly at: readonly number[] }[] = [{ values: null, at: [] }]
+  let combinations: { readonly made: Made | null; readonly at: readonly number[] }[] = [{ made: null, at: [] }]
   for (const columns of numbers) {
     if (columns)
-      combinations = combinations.flatMap(({ values, at }) =>
-        columns.map((column, j) => ({ values: product(values, column), at: [...at, j] })),
-      )
+      combinations = combinations.flatMap(({ made, at }) => columns.map((column, j) => ({ made: product(made, column), at: [...at, j] })))
   }
   const sizes = term.pieces.map((piece) => namesOf(piece).length)
-  return combinations.map(({ values, at }): Block => {
+  return combinations.map(({ made, at }): Block => {
     const starts = new Int32Array(count + 1)
     const column: number[] = []
     const value: number[] = []
@@ -486,7 +532,8 @@ function termBlocks(term: TermRecipe, t: number, numbers: readonly (Float64Array
       starts,
       column: Int32Array.from(column),
       value: Float64Array.from(value),
-      multiplier: values,
+      multiplier: made?.values ?? null,
+      multiplierRest: made?.rest ?? null,
       columns: blockColumns(term, sizes, at),
       shape: t,
     }

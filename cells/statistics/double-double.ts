@@ -83,6 +83,25 @@ export function wideRoot(high: number, low: number): readonly [number, number] {
   return [sum, correction - (sum - root)]
 }
 
+/** x^a for a whole a, by multiplying: the double next to it, and what is left, which is 0 where doubles hold no more. */
+export function widePower(x: number, a: number): readonly [number, number] {
+  let [high, low] = [1, 0]
+  for (let k = 0; k < Math.abs(a); k++) {
+    const p = high * x
+    const e = productError(high, x, p) + low * x
+    const sum = p + e
+    low = e - (sum - p)
+    // Where splitting overflows there is nothing to be kept.
+    high = Number.isFinite(low) ? sum : p
+    if (!Number.isFinite(low)) low = 0
+  }
+  if (a >= 0) return [high, low]
+  const q = 1 / high
+  const p = q * high
+  const r = (1 - p - productError(q, high, p) - q * low) / high
+  return Number.isFinite(r) ? [q + r, r - (q + r - q)] : [q, 0]
+}
+
 /** A running sum with 32 digits; `add` takes doubles, `addProduct` exact products. */
 export class WideSum {
   high = 0

@@ -1,7 +1,7 @@
 // Predictions at other rows: η without offset and its standard error, and the columns of the design there. Errors are taken in the basis of
 // the fit, where the columns are centred, so that nothing cancels far from the origin.
 
-import { denseColumns, designOf, type Variables } from "./design.ts"
+import { denseColumns, designOf, type Variables, type WrittenColumn, writtenColumns } from "./design.ts"
 import { productError, WideSum } from "./double-double.ts"
 import type { Fit } from "./fit.ts"
 import type { Problem } from "./problem.ts"
@@ -9,7 +9,9 @@ import { anyRows, responsesOf, rowState } from "./rows.ts"
 
 /** η without offset and its standard error at other rows; variables as the recipe wants them. NaN where a piece is missing there. */
 export function predicted(fit: Fit, variables: Variables, rows: number): { readonly eta: Float64Array; readonly error: Float64Array } {
-  const columns = designAt(fit, variables, rows)
+  const design = designOf(fit.recipe, variables, rows)
+  const columns: readonly WrittenColumn[] =
+    fit.frame.type === "orthogonal" ? writtenColumns(design) : denseColumns(design).map((high) => ({ high, low: null }))
   const eta = new Float64Array(rows)
   const error = new Float64Array(rows)
   const { frame } = fit
@@ -25,7 +27,7 @@ export function predicted(fit: Fit, variables: Variables, rows: number): { reado
       // A row that a direction moves is at the end of its range; one that it leaves alone has the fit of the rows that stayed.
       let [along, size] = [0, 0]
       direction.forEach((times, j) => {
-        const part = times * ((columns[j] as Float64Array)[i] as number)
+        const part = times * ((columns[j] as WrittenColumn).high[i] as number)
         along += part
         size += Math.abs(part)
       })
@@ -61,14 +63,14 @@ export function workingRows(problem: Problem, fit: Fit): { readonly residual: Fl
 }
 
 /** One row in the basis of the fit. */
-function basisRow(fit: Fit, columns: readonly Float64Array[], row: number, z: Float64Array): void {
+function basisRow(fit: Fit, columns: readonly WrittenColumn[], row: number, z: Float64Array): void {
   const { frame } = fit
   const p = frame.column.length
   if (frame.type === "scaled") {
     for (let j = 0; j < p; j++) {
-      const x = (columns[frame.column[j] as number] as Float64Array)[row] as number
+      const x = (columns[frame.column[j] as number] as WrittenColumn).high[row] as number
       const on = frame.carrier[j] as number
-      const carried = on < 0 ? 0 : (frame.centre[j] as number) * ((columns[on] as Float64Array)[row] as number)
+      const carried = on < 0 ? 0 : (frame.centre[j] as number) * ((columns[on] as WrittenColumn).high[row] as number)
       z[j] = (x - carried) / (frame.scale[j] as number)
     }
     return
@@ -78,7 +80,9 @@ function basisRow(fit: Fit, columns: readonly Float64Array[], row: number, z: Fl
   const sum = new WideSum()
   for (let j = 0; j < p; j++) {
     sum.clear()
-    sum.add((columns[frame.column[j] as number] as Float64Array)[row] as number)
+    const x = columns[frame.column[j] as number] as WrittenColumn
+    sum.add(x.high[row] as number)
+    if (x.low) sum.add(x.low[row] as number)
     for (let k = 0; k < j; k++) {
       const r = frame.high[k * p + j] as number
       sum.addProduct(-r, z[k] as number)

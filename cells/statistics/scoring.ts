@@ -3,6 +3,7 @@
 // reader (errors, tests, certificates) is for others.
 
 import type { Basis, Cells } from "./basis.ts"
+import type { WrittenColumn } from "./design.ts"
 import { productError, WideSum } from "./double-double.ts"
 import { addBlock, blockRows, Factor, Gram, gramOf, type Layout, rangeSums, SumTree, scoreOf, scoreSums } from "./gram.ts"
 import { fillRows, type Information, type Responses, type RowState, rowState } from "./rows.ts"
@@ -363,16 +364,17 @@ function exactEta(
   to: number,
   { eta, etaLow }: RowState,
 ): void {
-  const written = basis.written as readonly Float64Array[]
+  const written = basis.written as readonly WrittenColumn[]
   const { column } = basis.change
   const sum = new WideSum()
   for (let i = from; i < to; i++) {
     sum.clear()
     if (offset) sum.add(offset[i] as number)
     for (let j = 0; j < column.length; j++) {
-      const x = (written[column[j] as number] as Float64Array)[i] as number
+      const { high, low } = written[column[j] as number] as WrittenColumn
+      const x = high[i] as number
       sum.addProduct(x, beta[2 * j] as number)
-      sum.add(x * (beta[2 * j + 1] as number))
+      sum.add(x * (beta[2 * j + 1] as number) + (low ? (low[i] as number) * (beta[2 * j] as number) : 0))
     }
     eta[i] = sum.high
     if (etaLow) etaLow[i] = sum.low

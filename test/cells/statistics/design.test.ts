@@ -1,5 +1,13 @@
 import { describe, expect, it } from "vitest"
-import { denseColumns, designOf, presentRows, recipeOf } from "../../../cells/statistics/design.ts"
+import {
+  denseColumns,
+  designAtRows,
+  designOf,
+  presentRows,
+  recipeOf,
+  type WrittenColumn,
+  writtenColumns,
+} from "../../../cells/statistics/design.ts"
 import type { Variable } from "../../../cells/statistics/problem.ts"
 import { factor, numbers, term } from "./problems.ts"
 
@@ -142,5 +150,36 @@ describe("columns and their names", () => {
     }
     expect([...presentRows([term("log(x)")], mixed, 5)]).toEqual([1, 0, 0, 0, 1])
     expect([...presentRows([term("x"), term("lot")], mixed, 5)]).toEqual([1, 1, 1, 0, 0])
+  })
+})
+
+describe("columns with 32 digits", () => {
+  // In units of 2^−150, where powers and products of these x are whole.
+  const x = [1 + 2 ** -30, 3 - 2 ** -25, -(2 ** 0.5), 7]
+  const whole = (value: number): bigint => BigInt(value * 2 ** 52) << 98n
+  const times = (a: bigint, b: bigint): bigint => (a * b) >> 150n
+  const sum = (high: number, low: number): bigint => BigInt(high * 2 ** 80) * (1n << 70n) + BigInt(Math.round(low * 2 ** 120)) * (1n << 30n)
+  const at = { x: numbers(x), lot: factor(["a", "b", "b", "a"]) }
+  const design = designOf(recipeOf(["x", "power(x, 3)", "x.power(x, 3)", "lot", "lot.power(x, 3)"].map(term), true, at, 4, null), at, 4)
+  const column = (of: string, rows = design) => writtenColumns(rows)[design.recipe.columns.indexOf(of)]
+
+  it("hold powers, products of powers and powers within a level to 31 digits", () => {
+    x.forEach((value, i) => {
+      const cube = times(times(whole(value), whole(value)), whole(value))
+      const share = (of: WrittenColumn | undefined, exact: bigint): number =>
+        Number(sum(of?.high[i] ?? 0, of?.low?.[i] ?? 0) - exact) / Number(cube)
+      expect(Math.abs(share(column("power(x, 3)"), cube))).toBeLessThan(1e-30)
+      expect(Math.abs(share(column("x . power(x, 3)"), times(cube, whole(value))))).toBeLessThan(1e-30)
+      expect(Math.abs(share(column("lot is b . power(x, 3)"), i === 1 || i === 2 ? cube : 0n))).toBeLessThan(1e-30)
+    })
+  })
+
+  it("have no low part where the numbers are exact", () => {
+    expect([column("x")?.low, column("intercept")?.low, column("lot is b")?.low]).toEqual([null, null, null])
+  })
+
+  it("are the same at some of the rows", () => {
+    const some = designAtRows(design, Int32Array.of(2, 0))
+    expect([...(column("power(x, 3)", some)?.low ?? [])]).toEqual([2, 0].map((i) => column("power(x, 3)")?.low?.[i]))
   })
 })

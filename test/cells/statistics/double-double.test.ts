@@ -1,5 +1,14 @@
 import { describe, expect, it } from "vitest"
-import { productError, type Wide, WideSum, wideDivide, wideDot, wideRoot, wideSubtract } from "../../../cells/statistics/double-double.ts"
+import {
+  productError,
+  type Wide,
+  WideSum,
+  wideDivide,
+  wideDot,
+  widePower,
+  wideRoot,
+  wideSubtract,
+} from "../../../cells/statistics/double-double.ts"
 import { generator } from "./problems.ts"
 
 /** A double as a whole number of 2^−200. */
@@ -24,6 +33,28 @@ describe("double-double arithmetic", () => {
       const p = a * b
       expect((exact(a) * exact(b)) >> 200n).toBe(exact(p) + exact(productError(a, b, p)))
     }
+  })
+
+  it("takes whole powers to 31 digits, and their reciprocals", () => {
+    for (let k = 0; k < 100; k++) {
+      const x = 8 * (draw() - 0.5)
+      for (const power of [2, 3, 7, 10]) {
+        let whole = exact(x)
+        for (let times = 1; times < power; times++) whole = (whole * exact(x)) >> 200n
+        const [high, low] = widePower(x, power)
+        expect(high).toBe(high + low)
+        const far = exact(high) + exact(low) - whole
+        expect(Number(far < 0n ? -far : far)).toBeLessThan(1e-31 * Number(whole < 0n ? -whole : whole) + 2 ** 10)
+        const [over, rest] = widePower(x, -power)
+        const product = ((exact(over) + exact(rest)) * whole) >> 200n
+        expect(Math.abs(Number(product - (1n << 200n)) / 2 ** 200)).toBeLessThan(1e-30)
+      }
+    }
+    expect([widePower(1e200, 2), widePower(0, -1), widePower(-3, 0)]).toEqual([
+      [Number.POSITIVE_INFINITY, 0],
+      [Number.POSITIVE_INFINITY, 0],
+      [1, 0],
+    ])
   })
 
   it("sums what cancels", () => {
