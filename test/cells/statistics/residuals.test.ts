@@ -70,7 +70,7 @@ describe("leverages and Cook's distances", () => {
     leverage.forEach((exact, i) => {
       expect(digits(h?.[i], exact, 1e-2)).toBeGreaterThan(least)
     })
-    expect((h ?? []).reduce((sum, own) => sum + own, 0)).toBeCloseTo(fit.rank, 8)
+    expect((h ?? new Float64Array(0)).reduce((sum, own) => sum + own, 0)).toBeCloseTo(fit.rank, 8)
     const scale = Math.sqrt(deviance / fit.rows)
     devianceResiduals(of, fit).forEach((found, i) => {
       expect(digits(found, residuals[i] as string, scale)).toBeGreaterThan(least - 1)
