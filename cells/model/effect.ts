@@ -70,6 +70,10 @@ function verbOf({ problem }: ModelFinding): Verb {
       return adds(problem.exposure === null ? "the mean" : "the mean per unit of exposure")
     case "reciprocal":
       return adds("one over the mean")
+    case "reciprocal_square":
+      return adds("one over the squared mean")
+    case "log_complement":
+      return multiplies("the chance of none, 1 − μ,")
     case "square_root":
       return adds("the square root of the mean")
     case "power":
@@ -91,13 +95,13 @@ function changed(found: ModelFinding, verb: Verb, beta: number, between: Interva
   return verb.multiplies ? `multiplies ${verb.what} ${written(value, 3)}${interval}` : `adds ${written(value, 3)} ${verb.what}${interval}`
 }
 
-/** The logarithm of a factor beyond these is no longer something one can picture. */
-const largestLogFactor = 4
-const leastLogFactor = 0.05
-
 /** An end as a number; null where there is none, or where it is not known beyond the edge. */
 const placed = (end: IntervalEnd | undefined): number | null =>
   end === "infinity" ? Infinity : end === "-infinity" ? -Infinity : typeof end === "number" ? end : null
+
+/** The logarithm of a factor beyond these is no longer something one can picture. */
+const largestLogFactor = 4
+const leastLogFactor = 0.05
 
 /**
  * A step along a column in which its effect can be pictured: one where that is a step within the data and neither huge nor tiny in effect,

@@ -1,6 +1,7 @@
 // The equation of a model: g(μ) written out, then the linear predictor, coefficient by coefficient, as a formula and as the same in text.
 
 import type { Formula } from "../figure/formula.ts"
+import { written } from "../figure/number.ts"
 import { printed } from "../language/expression.ts"
 import { linkFormula } from "../language/vocabulary.ts"
 import type { ModelFinding } from "../model-finding.ts"
@@ -36,9 +37,16 @@ export function linkTree(link: LinkSpec, mean: Formula): Formula {
       return { type: "fraction", above: number("1"), below: mean }
     case "square_root":
       return { type: "root", of: mean }
+    case "reciprocal_square":
+      return { type: "fraction", above: number("1"), below: powered(mean, 2) }
     case "power": {
       const a = link.parameters[0] ?? 1
-      return a === 0 ? called("ln", mean) : { type: "power", base: mean, with: number(String(a).replace("-", "−")) }
+      return a === 0 ? called("ln", mean) : powered(mean, a)
+    }
+    case "box_cox": {
+      const a = link.parameters[0] ?? 1
+      if (a === 0) return called("ln", mean)
+      return { type: "fraction", above: row(powered(mean, a), sign("−"), number("1")), below: decimal(a) }
     }
     case "logit":
       return called("ln", { type: "fraction", above: mean, below: rest })
@@ -53,6 +61,21 @@ export function linkTree(link: LinkSpec, mean: Formula): Formula {
       return called("ln", row(sign("−"), called("ln", rest)))
     case "loglog":
       return row(sign("−"), called("ln", row(sign("−"), called("ln", mean))))
+    case "log_complement":
+      return called("ln", rest)
+    case "aranda_ordaz": {
+      const a = link.parameters[0] ?? 1
+      if (a === 0) return called("ln", row(sign("−"), called("ln", rest)))
+      const power = powered({ type: "bracket", of: rest }, -a)
+      return called("ln", { type: "fraction", above: row(power, sign("−"), number("1")), below: decimal(a) })
+    }
+    case "symmetric_power": {
+      const a = link.parameters[0] ?? 1
+      if (a === 0) return called("ln", { type: "fraction", above: mean, below: rest })
+      const [up, down] = [powered(mean, a), powered({ type: "bracket", of: rest }, a)]
+      const ratio: Formula = { type: "fraction", above: row(up, sign("−"), down), below: row(up, sign("+"), down) }
+      return row({ type: "fraction", above: number("2"), below: decimal(a) }, sign("·"), ratio)
+    }
     default:
       return row(link.own === undefined ? name("g") : word(link.name), { type: "bracket", of: mean })
   }
@@ -97,6 +120,8 @@ function summand(of: string, index: number): Equation {
   }
 }
 
+const decimal = (value: number): Formula => number(written(value, 6).replace("-", "−"))
+const powered = (base: Formula, exponent: number): Formula => ({ type: "power", base, with: decimal(exponent) })
 const row = (...of: readonly Formula[]): Formula => ({ type: "row", of })
 const name = (text: string): Formula => ({ type: "name", text })
 const word = (text: string): Formula => ({ type: "word", text })

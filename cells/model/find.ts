@@ -7,12 +7,13 @@ import type { Notice } from "../../runtime/notice.ts"
 import type { Name, Value } from "../../runtime/value.ts"
 import type { Bound } from "../language/form.ts"
 import { variablesOf } from "../language/predictor.ts"
-import { canonicalLink } from "../language/vocabulary.ts"
+import { canonicalLink, families, links, parameterRange } from "../language/vocabulary.ts"
 import { fitPart, type Label, type ModelFinding, type ModelFound, modelIn } from "../model-finding.ts"
 import type { Fit } from "../statistics/fit.ts"
 import { fit } from "../statistics/index.ts"
-import type { LinkSpec, Problem, Term, Variable } from "../statistics/problem.ts"
+import type { FamilySpec, LinkSpec, Problem, Term, Variable } from "../statistics/problem.ts"
 import type { Column } from "../table/column.ts"
+import { isDiscrete } from "./family.ts"
 import { withIntervals } from "./intervals.ts"
 import * as say from "./notices.ts"
 import { offsetFinding, offsetOf } from "./offset.ts"
@@ -22,7 +23,7 @@ import { labelOf, numbersOf, responseOf } from "./response.ts"
 import { type TableHere, tableOf } from "./table.ts"
 import { rowsUsed, weightFaults } from "./used-rows.ts"
 import { clusterCodes, keptRows, numbersAt, variableOf } from "./variables.ts"
-import { columnsOf, isOwnName, type ModelSaid } from "./words.ts"
+import { type CallSaid, columnsOf, isOwnName, type ModelSaid } from "./words.ts"
 
 type Inputs = ReadonlyMap<Name, Input>
 type Say = (notice: Notice) => void
@@ -40,6 +41,7 @@ export async function found(said: ModelSaid, inputs: Inputs, work: Work): Promis
     return nothing()
   }
   const family = familySaid.name
+  const familySpec = familyOf(familySaid, inputs, notice)
   missingColumns(said, table, notice)
   const link = linkOf(said, family, inputs, notice)
   const response = responseOf(responseSaid, family, table, notice)
@@ -50,7 +52,7 @@ export async function found(said: ModelSaid, inputs: Inputs, work: Work): Promis
   const repeat = said.repeat === null ? null : numbersOf(said.repeat, "repeat", table, notice, "repeat")
   const precision = said.precision === null ? null : numbersOf(said.precision, "a precision", table, notice, "precision")
   await work.checkpoint()
-  if (response === null || link === null || hasFault(notices)) return nothing()
+  if (response === null || link === null || familySpec === null || hasFault(notices)) return nothing()
 
   const choice = await rowsUsed(said, table, { response, terms, predictors, offset, repeat, precision }, notice, work)
   await work.checkpoint()
@@ -71,7 +73,7 @@ export async function found(said: ModelSaid, inputs: Inputs, work: Work): Promis
     variablesOf(predictor).map(({ name, at }) => [name, variableOf(name, predictors.get(name) as Column, kept, at, notice)]),
   )
   const problem: Problem = {
-    family: { name: family, parameters: [] },
+    family: familySpec,
     link: link.spec,
     intercept: predictor.intercept,
     terms: terms.map(({ pieces, says }) => ({ says, pieces: pieces.map(({ variable, as, setting }) => ({ variable, as, setting })) })),
@@ -84,7 +86,7 @@ export async function found(said: ModelSaid, inputs: Inputs, work: Work): Promis
     offset: only(offset === null ? null : offset.values),
     exposure: only(exposure),
     cluster: said.cluster === null ? null : clusterCodes(table.columns.get(said.cluster.name) as Column, kept),
-    dispersion: said.dispersion?.value ?? (family === "binomial" || family === "poisson" ? "one" : "pearson"),
+    dispersion: said.dispersion?.value ?? (isDiscrete(family) ? "one" : "pearson"),
     standardErrors: said.standardErrors,
     confidence: said.confidence,
   }
@@ -138,19 +140,37 @@ function linkOf(model: ModelSaid, family: string, inputs: Inputs, notice: Say): 
     const spec = ownLinkOf(said, family, model, inputs, notice)
     return spec === null ? null : { spec, says: said.name, chosen: true }
   }
-  const parameters = said.parameters.map((bound) => parameterOf(bound, inputs, notice))
-  if (parameters.includes(null)) return null
-  const numbers = parameters as readonly number[]
+  const numbers = parametersOf(said, "link", inputs, notice)
+  if (numbers === null) return null
   const says = numbers.length === 0 ? said.name : `${said.name}(${numbers.join(", ")})`
   return { spec: { name: said.name, parameters: numbers }, says, chosen: true }
 }
 
-function parameterOf(bound: Bound, inputs: Inputs, notice: Say): number | null {
+/** The family with numbers for its dials; null once a fault was said. */
+function familyOf(said: CallSaid, inputs: Inputs, notice: Say): FamilySpec | null {
+  const parameters = parametersOf(said, "family", inputs, notice)
+  return parameters === null ? null : { name: said.name, parameters }
+}
+
+/** Numbers for what stands in the brackets; null once a fault was said. */
+function parametersOf(said: CallSaid, clause: "family" | "link", inputs: Inputs, notice: Say): readonly number[] | null {
+  const words = clause === "family" ? families[said.name]?.parameters : links[said.name]?.parameters
+  const numbers: number[] = []
+  said.parameters.forEach((bound, k) => {
+    const number = parameterOf(bound, clause, inputs, notice)
+    if (number === null) return
+    if (parameterRange(said.name).holds(number)) numbers.push(number)
+    else notice(say.parameterOutside(clause, said.name, words?.[k] ?? "the parameter", number, bound.type === "cell" ? bound.at : said.at))
+  })
+  return numbers.length === said.parameters.length ? numbers : null
+}
+
+function parameterOf(bound: Bound, clause: "family" | "link", inputs: Inputs, notice: Say): number | null {
   if (bound.type === "number") return bound.value
   if (bound.type !== "cell") return null
   const value = inputs.get(bound.name)?.value
   if (typeof value === "number" && Number.isFinite(value)) return value
-  notice(say.notANumber(bound.name, "link", bound.at))
+  notice(say.notANumber(bound.name, clause, bound.at))
   return null
 }
 

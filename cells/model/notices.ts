@@ -6,6 +6,7 @@ import type { Clause } from "../../runtime/statement.ts"
 import type { Name } from "../../runtime/value.ts"
 import { written, writtenCount } from "../figure/number.ts"
 import { saidWith } from "../language/slip.ts"
+import { parameterRange } from "../language/vocabulary.ts"
 
 const notice = (
   level: Level,
@@ -69,7 +70,7 @@ const capital = (text: string): string => `${text.slice(0, 1).toUpperCase()}${te
 const clauseHints: Readonly<Record<"data" | "response" | "family" | "predictor", string>> = {
   data: "Add a clause such as data, and the name of a data cell.",
   response: "Add a clause such as response killed out of n, or response buds.",
-  family: "Add a clause such as family binomial; there are normal, binomial, poisson and gamma.",
+  family: "Add a clause such as family binomial; counts have poisson and negative_binomial, amounts normal, gamma and others.",
   predictor: "Add a clause such as predictor dose; predictor intercept is the model without predictors.",
 }
 
@@ -130,14 +131,17 @@ export const notAvailableYet = (clause: "family" | "link", what: string, instead
     `It belongs to the language and comes with a later version; until then there are ${list(instead)}.`,
   )
 
-export const estimateNotYet = (name: string, at: Place): Notice =>
+export const estimateNotYet = (clause: "family" | "link", name: string, at: Place): Notice =>
   fault(
     "not-available-yet",
-    "link",
+    clause,
     at,
-    `Estimating the parameter of the link ${name} is not available yet.`,
-    `Write a number, such as ${name}(0.5), or the name of a dial.`,
+    `Estimating the parameter of the ${clause} ${name} is not available yet.`,
+    `Write a number, such as ${exampleOf(name)}, or the name of a dial.`,
   )
+
+const exampleOf = (name: string): string =>
+  ({ negative_binomial: "negative_binomial(2)", tweedie: "tweedie(1.5)", stukel: "stukel(0.2, 0.2)" })[name] ?? `${name}(0.5)`
 
 /** `wants` are the names of the parameters. */
 export const parametersOff = (clause: "family" | "link", name: string, wants: readonly string[], at: Place): Notice =>
@@ -145,13 +149,39 @@ export const parametersOff = (clause: "family" | "link", name: string, wants: re
     "parameters-off",
     clause,
     at,
-    wants.length === 0 ? `The ${clause} ${name} has no parameter.` : `The ${clause} ${name} needs its parameter.`,
-    wants.length === 0 ? `Write ${clause} ${name}.` : `Write ${name}(0.5), with the number you mean, or the name of a dial.`,
+    wants.length === 0
+      ? `The ${clause} ${name} has no parameter.`
+      : `The ${clause} ${name} has ${wants.length === 1 ? "one parameter" : `${wants.length} parameters`}, ${list(wants)}.`,
+    wants.length === 0 ? `Write ${clause} ${name}.` : `Write ${exampleOf(name)}, with the number you mean, or the name of a dial.`,
     wants.length === 0 ? writes(clause, name) : null,
   )
 
-export const parameterInfinite = (name: string, at: Place): Notice =>
-  fault("parameter-infinite", "link", at, `The parameter of the link ${name} is a finite number.`, `Write one such as ${name}(0.5).`)
+export const parameterInfinite = (clause: "family" | "link", name: string, at: Place): Notice =>
+  fault(
+    "parameter-infinite",
+    clause,
+    at,
+    name === "negative_binomial"
+      ? "With an infinite k the negative binomial is the Poisson family."
+      : `The parameter of the ${clause} ${name} is a finite number.`,
+    name === "negative_binomial" ? "Write family poisson." : `Write one such as ${exampleOf(name)}.`,
+    name === "negative_binomial" ? writes("family", "poisson") : null,
+  )
+
+/** A number outside of what a parameter can be. */
+export const parameterOutside = (clause: "family" | "link", name: string, parameter: string, value: number, at: Place): Notice =>
+  fault(
+    "parameter-outside",
+    clause,
+    at,
+    `The parameter ${parameter} of ${name} is ${parameterRange(name).says}, and ${numberSays(value)} is not.`,
+    name === "tweedie" && familiesOfPower[value] !== undefined
+      ? `A variance of μ to the power ${value} is that of the family ${familiesOfPower[value]}.`
+      : `Write one such as ${exampleOf(name)}.`,
+    name === "tweedie" && familiesOfPower[value] !== undefined ? writes("family", familiesOfPower[value]) : null,
+  )
+
+const familiesOfPower: Readonly<Record<number, string>> = { 0: "normal", 1: "poisson", 2: "gamma", 3: "inverse_gaussian" }
 
 export const linkNotLegal = (link: string, family: string, legal: readonly string[], families: readonly string[], at: Place): Notice =>
   fault(
@@ -357,12 +387,12 @@ export const notWhole = (name: Name, at: RowsAt, row: RowName, place: Place): No
     "Name the column of counts; for shares the counts behind them are wanted.",
   )
 
-export const countNotWhole = (name: Name, at: RowsAt, row: RowName, place: Place): Notice =>
+export const countNotWhole = (name: Name, family: string, at: RowsAt, row: RowName, place: Place): Notice =>
   fault(
     "count-not-whole",
     "response",
     place,
-    `The family poisson is for counts, but ${isIn(name, "not whole", at, row)}.`,
+    `The family ${family} is for counts, but ${isIn(name, "not whole", at, row)}.`,
     "A rate is a count with an exposure clause; other amounts with variance μ are family quasi_likelihood(mu), which is not available yet.",
   )
 
@@ -399,8 +429,17 @@ export const notPositive = (name: Name, family: string, at: RowsAt, row: RowName
     place,
     `The family ${family} is for amounts above 0, but ${isIn(name, "0 or below", at, row)}.`,
     at.value === 0
-      ? "Amounts with exact zeros are family tweedie(p), which is not available yet; rows without an amount can be left out in the data with a where clause."
+      ? "Amounts with exact zeros are family tweedie(1.5) or another number between 1 and 2; rows without an amount can be left out in the data with a where clause."
       : "If the entry stands for a missing value, say so in the data with a missing clause.",
+  )
+
+export const belowZero = (name: Name, family: string, at: RowsAt, row: RowName, place: Place): Notice =>
+  fault(
+    "below-zero",
+    "response",
+    place,
+    `The family ${family} is for amounts of 0 and above, but ${isIn(name, "below 0", at, row)}.`,
+    "If the entry stands for a missing value, say so in the data with a missing clause.",
   )
 
 // Exposure and weights.
@@ -463,13 +502,13 @@ export const precisionCounts = (family: string, name: Name, at: Place): Notice =
     null,
   )
 
-export const exposureAsAmount = (exposure: Name, response: Name, at: Place): Notice =>
+export const exposureAsAmount = (exposure: Name, response: Name, power: number, at: Place): Notice =>
   notice(
     "remark",
     "exposure-as-amount",
     "exposure",
     at,
-    `Fitted with the whole of ${response}, whose variance goes with the square of ${exposure}.`,
+    `Fitted with the whole of ${response}, whose variance goes with ${power === 2 ? `the square of ${exposure}` : `${exposure} to the power ${numberSays(power)}`}.`,
     `That is another model than ${response} per unit of ${exposure} with precision ${exposure}, whose variance goes with ${exposure} itself.`,
   )
 

@@ -4,7 +4,7 @@
 import { nearest } from "../../runtime/nearest.ts"
 import type { Notice } from "../../runtime/notice.ts"
 import type { Statement } from "../../runtime/statement.ts"
-import type { Filled } from "../language/form.ts"
+import type { Bound, Filled } from "../language/form.ts"
 import { families, legalLinks, links } from "../language/vocabulary.ts"
 import * as say from "./notices.ts"
 import type { CallSaid } from "./words.ts"
@@ -28,11 +28,15 @@ export function familySaid(slot: CallSlot, statement: Statement, notices: Notice
     notices.push(say.notAvailableYet("family", known.name, names, at))
     return null
   }
-  if (call.bounds !== null || call.expression !== null) {
-    notices.push(say.parametersOff("family", known.name, [], at))
+  // Of a family all parameters may be left out, and are then estimated.
+  const parameters: readonly Bound[] = call.bounds ?? known.parameters.map(() => ({ type: "estimate" }))
+  if (parameters.length !== known.parameters.length || call.expression !== null) {
+    notices.push(say.parametersOff("family", known.name, known.parameters, at))
     return null
   }
-  return { name: known.name, parameters: [], at }
+  if (parameters.some(({ type }) => type === "estimate")) notices.push(say.estimateNotYet("family", known.name, at))
+  if (parameters.some(({ type }) => type === "infinity")) notices.push(say.parameterInfinite("family", known.name, at))
+  return { name: known.name, parameters, at }
 }
 
 /** The link said; null where there is none that can be fitted, once that was said, and where nothing is said. */
@@ -57,8 +61,8 @@ export function linkSaid(slot: CallSlot, family: CallSaid | null, statement: Sta
     notices.push(say.parametersOff("link", known.name, known.parameters, at))
     return null
   }
-  if (parameters.some(({ type }) => type === "estimate")) notices.push(say.estimateNotYet(known.name, at))
-  if (parameters.some(({ type }) => type === "infinity")) notices.push(say.parameterInfinite(known.name, at))
+  if (parameters.some(({ type }) => type === "estimate")) notices.push(say.estimateNotYet("link", known.name, at))
+  if (parameters.some(({ type }) => type === "infinity")) notices.push(say.parameterInfinite("link", known.name, at))
   if (family !== null && !legal.includes(known.name)) {
     const plain = legal.filter((name) => links[name]?.parameters.length === 0)
     const goesWith = Object.values(families).filter(({ name, later }) => !later && legalLinks(name).includes(known.name))

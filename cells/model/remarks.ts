@@ -4,6 +4,7 @@
 import type { Notice, Place } from "../../runtime/notice.ts"
 import type { Fit } from "../statistics/fit.ts"
 import type { Problem } from "../statistics/problem.ts"
+import { isDiscrete } from "./family.ts"
 import * as say from "./notices.ts"
 import type { Response } from "./response.ts"
 import type { ModelSaid } from "./words.ts"
@@ -20,10 +21,11 @@ export function remarks(
 ): void {
   const family = problem.family.name
   if (!link.chosen) notice(say.linkNotChosen(link.says, family))
-  if (said.precision !== null && (family === "binomial" || family === "poisson"))
-    notice(say.precisionCounts(family, said.precision.name, said.precision.at))
-  if (said.exposure !== null && family === "gamma" && said.response?.type === "column")
-    notice(say.exposureAsAmount(said.exposure.name, said.response.column.name, said.exposure.at))
+  if (said.precision !== null && isDiscrete(family)) notice(say.precisionCounts(family, said.precision.name, said.precision.at))
+  const power =
+    family === "gamma" ? 2 : family === "inverse_gaussian" ? 3 : family === "tweedie" ? (problem.family.parameters[0] ?? 1.5) : null
+  if (said.exposure !== null && power !== null && said.response?.type === "column")
+    notice(say.exposureAsAmount(said.exposure.name, said.response.column.name, power, said.exposure.at))
   const [first] = problem.y
   if (said.response !== null && problem.rows > 1 && first !== undefined && problem.y.every((value) => value === first))
     notice(say.constantResponse(response.finding.label, constantSays(first, response), responsePlace(said)))

@@ -6,7 +6,9 @@ import type { Notice } from "../../runtime/notice.ts"
 import type { Name } from "../../runtime/value.ts"
 import type { ModelFinding } from "../model-finding.ts"
 import type { Column } from "../table/column.ts"
+import { isCounted, responseFaults, responseWanted } from "./family.ts"
 import * as say from "./notices.ts"
+import { rowsWhere } from "./response-rows.ts"
 import type { TableHere } from "./table.ts"
 import type { Named, ResponseSaid } from "./words.ts"
 
@@ -134,7 +136,7 @@ function zeroOrOne(of: Named, column: Column, table: TableHere, fault: (notice: 
 }
 
 function amounts(of: Named, family: string, column: Column, table: TableHere, fault: (notice: Notice) => void): Response | null {
-  const wants = family === "poisson" ? "a count" : family === "gamma" ? "an amount above 0" : "a number"
+  const wants = responseWanted(family)
   if ("codes" in column) {
     const mend = column.type === "category" && column.levels.length === 2 ? "binomial" : null
     fault(
@@ -154,21 +156,8 @@ function amounts(of: Named, family: string, column: Column, table: TableHere, fa
   return {
     y: values,
     trials: null,
-    finding: { ...labelOf(of.name, column), measured: family === "poisson" ? "count" : "number" },
-    faults: (used) => {
-      const found: Notice[] = []
-      if (family === "poisson") {
-        const negative = rowsWhere(values, used, (value) => value < 0)
-        if (negative !== null) found.push(say.countNegative(of.name, negative, table.rowName, of.at))
-        const broken = rowsWhere(values, used, (value) => !Number.isInteger(value))
-        if (broken !== null) found.push(say.countNotWhole(of.name, broken, table.rowName, of.at))
-      }
-      if (family === "gamma") {
-        const low = rowsWhere(values, used, (value) => value <= 0)
-        if (low !== null) found.push(say.notPositive(of.name, family, low, table.rowName, of.at))
-      }
-      return found
-    },
+    finding: { ...labelOf(of.name, column), measured: isCounted(family) ? "count" : "number" },
+    faults: (used) => responseFaults(of, family, values, used, table),
   }
 }
 
@@ -185,18 +174,6 @@ export function numbersOf(
   if (column.type === "number" || column.type === "count" || (column.type === "truth" && clause === "response")) return column.values
   fault(say.wantsNumber(of.name, typeSays(column), what, clause, of.at))
   return null
-}
-
-/** How many of the rows marked are so, and the first of them; null where there is none. */
-export function rowsWhere(values: Float64Array, used: Uint8Array, is: (value: number, row: number) => boolean): say.RowsAt | null {
-  let count = 0
-  let first = -1
-  for (let row = 0; row < values.length; row++) {
-    if (used[row] !== 1 || !is(values[row] as number, row)) continue
-    if (first < 0) first = row
-    count++
-  }
-  return first < 0 ? null : { count, first, value: values[first] as number }
 }
 
 const labelIn = (of: Named, table: TableHere): string => table.columns.get(of.name)?.called ?? of.name

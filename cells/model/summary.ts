@@ -4,6 +4,7 @@
 import type { Json } from "../../runtime/value.ts"
 import type { IntervalsFound, ModelFinding, ModelFound } from "../model-finding.ts"
 import type { Coefficient, Fit } from "../statistics/fit.ts"
+import type { Problem } from "../statistics/problem.ts"
 import type { IntervalEnd } from "../statistics/profile.ts"
 
 /** Covariances of more coefficients than this would be most of the file. */
@@ -18,7 +19,7 @@ export function summary({ parts: { fit: found }, intervals }: ModelFound): Json 
     n: fit.n,
     rank: fit.rank,
     parameters_counted: fit.parametersCounted,
-    family: problem.family.name,
+    family: familySays(problem),
     link: found.link,
     parameters: [],
     coefficients: fit.coefficients.map((of, j) => coefficient(of, intervals, j)),
@@ -51,12 +52,16 @@ export function summary({ parts: { fit: found }, intervals }: ModelFound): Json 
   }
 }
 
+/** The family as a clause would say it: `negative_binomial(2)`, and without a number where that is estimated. */
+const familySays = ({ family }: Problem): string =>
+  family.parameters.length === 0 || (family.estimated?.length ?? 0) > 0 ? family.name : `${family.name}(${family.parameters.join(", ")})`
+
 /** What the trail notes of a fit that was shown. */
 export function tried({ parts: { fit: found } }: ModelFound): readonly Json[] {
   const { fit, problem } = found
   return [
     {
-      family: problem.family.name,
+      family: familySays(problem),
       link: found.link,
       predictor: predictorSays(found),
       n: fit.n,
@@ -117,6 +122,7 @@ function covariance({ covariance: lower, coefficients }: Fit): Json {
   )
 }
 
+const end = (value: IntervalEnd): Json => (typeof value === "number" ? number(value) : value)
+
 const number = (value: number | null): Json =>
   value === null || Number.isNaN(value) ? null : value === Infinity ? "infinity" : value === -Infinity ? "-infinity" : value
-const end = (value: IntervalEnd): Json => (typeof value === "number" ? number(value) : value)

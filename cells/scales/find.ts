@@ -2,10 +2,9 @@
 // start, as a late part. Links differ in nothing but the link: rows, response, weights and predictor stay.
 
 import type { Outcome, Work } from "../../runtime/kind.ts"
-import { nearest } from "../../runtime/nearest.ts"
 import type { Notice } from "../../runtime/notice.ts"
 import type { Name, Value } from "../../runtime/value.ts"
-import { families, legalLinks, links } from "../language/vocabulary.ts"
+import { families, legalLinks, links, parameterRange } from "../language/vocabulary.ts"
 import { type ModelFinding, modelIn } from "../model-finding.ts"
 import { familyOf, fit } from "../statistics/index.ts"
 import type { LinkSpec } from "../statistics/problem.ts"
@@ -108,7 +107,7 @@ function candidateLinks(
     const made = (name: string): number => (links[name]?.mean === families[family]?.mean ? 0 : 1)
     return legal
       .toSorted((a, b) => made(a) - made(b))
-      .filter((name) => links[name]?.parameters.length === 0 && links[name]?.later !== true)
+      .filter((name) => links[name]?.parameters.length === 0)
       .map((name) => ({ spec: { name, parameters: [] }, says: name }))
   }
   const made: { spec: LinkSpec; says: string }[] = []
@@ -121,14 +120,15 @@ function candidateLinks(
     if (known === undefined) {
       const spec = ownLinkOf(call, at, family, inputs, fault)
       if (spec !== null && !made.some((other) => other.says === spec.name)) made.push({ spec, says: spec.name })
-    } else if (known.later) fault(say.linkNotYet(call.name, at))
-    else if (!legal.includes(call.name)) fault(say.linkNotLegal(call.name, families[family]?.name ?? family, legal, at))
+    } else if (!legal.includes(call.name)) fault(say.linkNotLegal(call.name, families[family]?.name ?? family, legal, at))
     else if ((call.bounds?.length ?? 0) !== known.parameters.length) fault(say.linkParameters(call.name, known.parameters.length, at))
     else {
       const parameters: number[] = []
       for (const bound of call.bounds ?? []) {
         const number = numberOf(bound, at, "beside", inputs, fault)
-        if (number !== null) parameters.push(number)
+        if (number === null) continue
+        parameters.push(number)
+        if (!parameterRange(call.name).holds(number)) fault(say.parameterOutside(call.name, parameterRange(call.name).says, number, at))
       }
       const says = parameters.length === 0 ? call.name : `${call.name}(${parameters.join(", ")})`
       if (!made.some((other) => other.says === says)) made.push({ spec: { name: call.name, parameters }, says })

@@ -3,6 +3,7 @@
 import type { ClauseEdit, Notice, Place } from "../../runtime/notice.ts"
 import { heading } from "../../runtime/notice.ts"
 import type { Name } from "../../runtime/value.ts"
+import { written } from "../figure/number.ts"
 
 const fault = (code: string, clause: string | null, at: Place, text: string, hint: string | null, mend: Notice["mend"] = null): Notice => ({
   level: "fault",
@@ -129,8 +130,9 @@ export const estimateNotYet = (name: Name, at: Place): Notice =>
     `Give it a number in ${name}.`,
   )
 
-export const linkNotYet = (name: string, at: Place): Notice =>
-  fault("not-available-yet", "beside", at, `The link ${name} is not available yet.`, "Leave it out for now.")
+/** A number outside of what the parameter of a link can be. */
+export const parameterOutside = (name: string, range: string, value: number, at: Place): Notice =>
+  fault("parameter-outside", "beside", at, `The parameter of ${name} is ${range}, and ${written(value, 6)} is not.`, null)
 
 export const linkNotLegal = (link: string, family: string, legal: readonly string[], at: Place): Notice =>
   fault(

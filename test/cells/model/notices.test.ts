@@ -34,7 +34,21 @@ describe("faults of the statement", () => {
   it.each([
     ["family poison", 'fault no-such-family at "poison": There is no family called poison.', "family poisson"],
     ["family zeta", 'fault no-such-family at "zeta": There is no family called zeta.', null],
-    ["family tweedie(1.5)", 'fault not-available-yet at "tweedie(1.5)": The family tweedie is not available yet.', null],
+    [
+      "family tweedie(2)",
+      'fault parameter-outside at "tweedie(2)": The parameter p of tweedie is a number between 1 and 2, and 2 is not.',
+      "family gamma",
+    ],
+    [
+      "family negative_binomial(-1)",
+      'fault parameter-outside at "negative_binomial(-1)": The parameter k of negative_binomial is a number above 0, and −1 is not.',
+      null,
+    ],
+    [
+      "family negative_binomial(infinity)",
+      'fault parameter-infinite at "negative_binomial(infinity)": With an infinite k the negative binomial is the Poisson family.',
+      "family poisson",
+    ],
     [
       "family quasi_likelihood(mu)",
       'fault not-available-yet at "quasi_likelihood(mu)": The family quasi_likelihood is not available yet.',
@@ -60,9 +74,8 @@ describe("faults of the statement", () => {
       'fault link-not-legal at "cloglog": The link cloglog is not defined for every mean that the family poisson can have.',
       "link log",
     ],
-    ["link box_cox(0.5)", 'fault not-available-yet at "box_cox(0.5)": The link box_cox is not available yet.', null],
-    ["link power", 'fault parameters-off at "power": The link power needs its parameter.', null],
-    ["link power(1, 2)", 'fault parameters-off at "power(1, 2)": The link power needs its parameter.', null],
+    ["link power", 'fault parameters-off at "power": The link power has one parameter, a.', null],
+    ["link power(1, 2)", 'fault parameters-off at "power(1, 2)": The link power has one parameter, a.', null],
     ["link log(2)", 'fault parameters-off at "log(2)": The link log has no parameter.', "link log"],
     [
       "link power(estimate)",
@@ -84,7 +97,9 @@ describe("faults of the statement", () => {
 
   it("lists the links that are legal", async () => {
     const [notice] = (await finding("response buds\nfamily gamma\nlink probit\npredictor frost", beds)).notices
-    expect(notice?.hint).toBe("Links for gamma are reciprocal, identity, log and square_root; probit goes with normal and binomial.")
+    expect(notice?.hint).toBe(
+      "Links for gamma are reciprocal, identity, log, reciprocal_square and square_root; probit goes with normal and binomial.",
+    )
   })
 
   it.each([

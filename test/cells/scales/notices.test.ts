@@ -43,7 +43,11 @@ describe("a notice of scales", () => {
     ["wants finite ends", "scales\n  model m\n  across x\n  from 0 to infinity", 'scales/not-a-number at "from 0 to infinity"'],
     ["has no range across levels", "scales\n  model m\n  across lot\n  from 0 to 2", 'scales/range-of-levels at "from 0 to 2"'],
     ["does not know a link", "scales\n  model m\n  across x\n  beside logit, prbit", 'scales/no-such-link at "prbit"'],
-    ["waits for a link", "scales\n  model m\n  across x\n  beside stukel(0, 0)", 'scales/not-available-yet at "stukel(0, 0)"'],
+    [
+      "knows what a parameter can be",
+      "scales\n  model m\n  across x\n  beside aranda_ordaz(-3)",
+      'scales/parameter-outside at "aranda_ordaz(-3)"',
+    ],
     ["refuses a link of other means", "scales\n  model line\n  across x\n  beside logit", 'scales/link-not-legal at "logit"'],
     ["wants a parameter", "scales\n  model line\n  across x\n  beside power", 'scales/link-parameters at "power"'],
     ["wants no parameter", "scales\n  model line\n  across x\n  beside log(2)", 'scales/link-parameters at "log(2)"'],
