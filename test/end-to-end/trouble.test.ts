@@ -25,7 +25,8 @@ afterAll(async () => {
 })
 
 const bands = (page: Page) => page.locator("div.band").allTextContents()
-const saysBand = (page: Page, words: RegExp) => expect.poll(async () => (await bands(page)).join(" | ")).toMatch(words)
+const saysBand = (page: Page, words: RegExp, timeout = 5000) =>
+  expect.poll(async () => (await bands(page)).join(" | "), { timeout }).toMatch(words)
 
 async function handedOver(page: Page): Promise<string> {
   const coming = page.waitForEvent("download")
@@ -187,6 +188,41 @@ describe("trouble", () => {
     await (await choosing).setFiles(csv)
     await expect.poll(() => page.locator("etamu-row.kind-data").getAttribute("aria-label"), { timeout: 10_000 }).toMatch(/: ready/)
     expect(await page.locator("etamu-row").count()).toBe(2)
+    expect(wrong).toEqual([])
+    await context.close()
+  })
+
+  it("of work that never ends stays with its cell: the worker is started anew, and the rest goes on", async () => {
+    const context = await browser.newContext()
+    // A worker that falls into an endless loop on one value.
+    await context.route("**/evaluator.worker.js", async (route) => {
+      const answer = await route.fetch()
+      const trap = 'addEventListener("message", ({ data }) => { while (data.task?.text.startsWith("value stuck")) {} });'
+      await route.fulfill({ response: answer, body: trap + (await answer.text()) })
+    })
+    const { page, wrong } = await windowAt(context, server.address)
+    const ready = () => page.locator("etamu-row.form-ready").count()
+    const all = await page.locator("etamu-row").count()
+    await expect.poll(ready, { timeout: 20_000 }).toBe(all)
+    await page.keyboard.press("Alt+n")
+    await page.getByRole("menuitem", { name: /^value/ }).press("Enter")
+    await expect.poll(() => page.locator("etamu-row.editing").count()).toBe(1)
+    await page.keyboard.press("Control+a")
+    await page.keyboard.type("value stuck = 1")
+    await expect.poll(() => page.locator("etamu-row.form-working").count()).toBe(1)
+
+    // Written otherwise, it is not waited for: what is wanted now comes as soon as the silence is sure, and that is said.
+    await page.keyboard.press("Control+a")
+    await page.keyboard.type("value free = 1")
+    await expect.poll(ready, { timeout: 10_000 }).toBe(all + 1)
+    await saysBand(page, /did not answer for \d seconds and was started anew/)
+
+    // Written again and left so, it is tried twice, given up as ours, and everything else stands.
+    await page.keyboard.press("Control+a")
+    await page.keyboard.type("value stuck = 2")
+    await expect.poll(() => page.locator("etamu-row.form-crash").count(), { timeout: 40_000 }).toBe(1)
+    expect(await page.locator("etamu-row.form-crash .crash").textContent()).toContain("did not answer")
+    expect(await ready()).toBe(all)
     expect(wrong).toEqual([])
     await context.close()
   })

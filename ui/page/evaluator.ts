@@ -1,12 +1,16 @@
 // Starts the evaluator's worker and hands it the bytes it may read. The one address of a script that the page ever makes is made here, under
-// a policy that lets only our own origin through. A worker that fails is replaced, and the engine asks again for what was under way.
+// a policy that lets only our own origin through. A worker that fails, or does not answer any more, is replaced, and the engine asks again for
+// what was under way.
 
-import { type Port, type RemoteEvaluator, remoteEvaluator } from "../../runtime/index.ts"
+import type { Evaluator } from "../../runtime/evaluator.ts"
+import { type Port, remoteEvaluator } from "../../runtime/index.ts"
 import type { Bytes } from "./desk.ts"
-import type { Placed } from "./placed.ts"
+import type { Asked, Placed } from "./placed.ts"
+import { Pulse } from "./pulse.ts"
+import { withSuspects } from "./suspects.ts"
 
 export interface Started {
-  readonly evaluator: RemoteEvaluator
+  readonly evaluator: Evaluator
   readonly bytes: Bytes
 }
 
@@ -14,26 +18,49 @@ export interface Started {
 export function startEvaluator(trouble: (text: string) => void): Started {
   const blobs = new Map<string, Blob>()
   let failures = 0
+  const pulse = new Pulse({ ask: () => worker.postMessage({ asked: true } satisfies Asked), silent, now: () => performance.now() })
   let worker = begin()
-  const evaluator = remoteEvaluator(port(worker))
+  const remote = remoteEvaluator(port(worker))
+  const evaluator = withSuspects(remote, {
+    began: () => pulse.began(),
+    ended: () => pulse.ended(),
+    cancelled: () => pulse.cancelled(),
+  })
 
   function begin(): Worker {
     const started = new Worker(scriptAddress("evaluator.worker.js"), { type: "module" })
     for (const [sha256, blob] of blobs) place(started, sha256, blob)
-    started.addEventListener("error", (event) => failed(event.message))
-    started.addEventListener("messageerror", () => failed("a message could not be read"))
+    started.addEventListener("error", (event) => failed(started, event.message))
+    started.addEventListener("messageerror", () => failed(started, "a message could not be read"))
+    started.addEventListener("message", () => {
+      if (started === worker) pulse.heard()
+    })
     return started
   }
 
-  function failed(why: string): void {
+  function failed(from: Worker, why: string): void {
+    if (from !== worker) return
     failures++
-    worker.terminate()
     if (failures > mostFailures) {
+      worker.terminate()
       trouble(`The part of the program that computes has stopped: ${why}. Loading the page again starts it anew.`)
-      return
-    }
+    } else replace()
+  }
+
+  function silent(milliseconds: number): void {
+    const seconds = Math.round(milliseconds / 1000)
+    evaluator.silent(
+      `it did not answer for ${seconds} seconds, and again when it was tried alone. Any change of the cell tries it once more.`,
+    )
+    trouble(`The part of the program that computes did not answer for ${seconds} seconds and was started anew. Nothing you wrote is lost.`)
+    replace()
+  }
+
+  function replace(): void {
+    worker.terminate()
     worker = begin()
-    evaluator.replace(port(worker))
+    pulse.renewed()
+    remote.replace(port(worker))
   }
 
   return {

@@ -4,7 +4,7 @@
 import { kinds } from "../../cells/index.ts"
 import { createEvaluator, serveEvaluator } from "../../runtime/index.ts"
 import { pieces } from "../../storage/file/index.ts"
-import type { Placed } from "./placed.ts"
+import type { Asked, Heard, Placed } from "./placed.ts"
 
 declare const self: DedicatedWorkerGlobalScope
 
@@ -36,12 +36,20 @@ serveEvaluator(
     listen(hear) {
       self.addEventListener("message", ({ data }: MessageEvent<unknown>) => {
         if (isPlaced(data)) blobs.set(data.placed, data.blob)
+        else if (isAsked(data)) self.postMessage({ heard: true } satisfies Heard)
         else hear(data)
       })
     },
   },
   evaluator,
 )
+
+// It is there, and any silence from here on is one of its work.
+self.postMessage({ heard: true } satisfies Heard)
+
+function isAsked(message: unknown): message is Asked {
+  return typeof message === "object" && message !== null && "asked" in message
+}
 
 function isPlaced(message: unknown): message is Placed {
   return typeof message === "object" && message !== null && "placed" in message

@@ -180,7 +180,13 @@ export class StatementEditor extends HTMLElement {
         ...defaultKeymap.filter(({ key }) => key !== "Escape"),
       ]),
       EditorView.domEventHandlers({
-        beforeinput: (event) => {
+        beforeinput: (event, view) => {
+          // Where the browser itself writes over coloured text it keeps the colour in a style attribute, which the policy forbids.
+          if (event.inputType === "insertText" && event.data !== null && !event.isComposing && !view.composing) {
+            view.dispatch(view.state.replaceSelection(event.data), { scrollIntoView: true, userEvent: "input.type" })
+            event.preventDefault()
+            return true
+          }
           if (event.inputType !== "historyUndo" && event.inputType !== "historyRedo") return false
           event.preventDefault()
           return true
