@@ -111,12 +111,12 @@ export class Bounding {
 
   /** One step from those it is made of, with its slope. */
   private bounds(step: Step, x: Interval, all: readonly Bounds[]): Bounds {
-    const { operation, a, b, fraction, free } = step
+    const { operation, a, b, fraction, free, still } = step
     if (operation === "variable") return { ...unknown, defined: 2, values: x, analytic: true, slope: point(1) }
     const left = all[a]
     const right = all[b]
     // A step that is one number, whatever it is made of, is that number; that its parts are defined is still asked.
-    const constant = fraction !== null && (free || exact.isFreeOf(fraction, variableSymbol)) ? this.symbols.enclosure(fraction) : null
+    const constant = fraction !== null && still ? this.symbols.number(fraction) : null
     if (operation === "constant")
       return {
         ...unknown,
@@ -541,6 +541,7 @@ class Symbols {
     { readonly operation: Operation; readonly a: exact.Fraction; readonly b: exact.Fraction | null }
   >()
   private readonly known = new Map<string, Interval | null>()
+  private readonly numbers = new Map<exact.Fraction, Interval | null>()
 
   /** The value of a step from exact values; null where it is not defined, or cannot be said. */
   result(operation: Operation, a: exact.Fraction, b: exact.Fraction | null): exact.Fraction | null {
@@ -560,6 +561,16 @@ class Symbols {
       default:
         return this.function(operation, a)
     }
+  }
+
+  /** The enclosure of a number, kept for the next time. */
+  number(fraction: exact.Fraction): Interval | null {
+    let known = this.numbers.get(fraction)
+    if (known === undefined) {
+      known = this.enclosure(fraction)
+      this.numbers.set(fraction, known)
+    }
+    return known
   }
 
   /** @param x  the values of the variable, where it may stand in the fraction */

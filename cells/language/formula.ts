@@ -18,6 +18,8 @@ export type Step = {
   readonly fraction: exact.Fraction | null
   /** True where the variable does not occur in it. */
   readonly free: boolean
+  /** True where it is one number, whatever it is made of: `free`, or a fraction from which the variable falls out. */
+  readonly still: boolean
   /** For sin, cos and tan: the step that is the angle over pi; −1 where the angle is not said as a multiple of pi. */
   readonly turns: number
 }
@@ -108,12 +110,13 @@ export class Formula {
     )
   }
 
-  private step(step: Omit<Step, "turns">, turns = -1): number {
-    const { operation, a, b, value, fraction } = step
+  private step(step: Omit<Step, "turns" | "still">, turns = -1): number {
+    const { operation, a, b, value, fraction, free } = step
     const key = operation === "constant" ? `constant ${value} ${fraction === null ? "" : exact.named(fraction)}` : `${operation} ${a} ${b}`
     const known = this.known.get(key)
     if (known !== undefined) return known
-    this.steps.push({ ...step, turns })
+    const still = free || (fraction !== null && exact.isFreeOf(fraction, variableSymbol))
+    this.steps.push({ ...step, turns, still })
     this.known.set(key, this.steps.length - 1)
     return this.steps.length - 1
   }

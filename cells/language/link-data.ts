@@ -8,7 +8,7 @@ import { derivative } from "./derivative.ts"
 import type { Expression } from "./expression.ts"
 import type { Given } from "./formula.ts"
 import { programOf } from "./program.ts"
-import type { ProvedPiece } from "./proof.ts"
+import { middleOf, type ProvedPiece } from "./proof.ts"
 
 export type LinkParts = {
   readonly formula: string
@@ -37,7 +37,7 @@ export function linkData(parts: LinkParts): { readonly own: OwnLink; readonly fl
   const first = valuesOver(lower.pieces, lowerKnots)
   const rising = parts.rising ?? isRising(first.eta)
   if (rising === null) return null
-  const sides: LinkSide[] = [{ ...lower, ...monotone(lowerKnots, first.eta, rising) }]
+  const sides: LinkSide[] = [{ ...lower, ...knotted(lower.pieces, monotone(lowerKnots, first.eta, rising), rising, 1) }]
   const flat = [...flatIn(lowerKnots, first.slope, (x) => slopeAt(lower.pieces, x))]
   if (upToOne) {
     const upper = pieces.filter(({ to }) => to > 0.5).reverse()
@@ -51,7 +51,7 @@ export function linkData(parts: LinkParts): { readonly own: OwnLink; readonly fl
     }))
     const knots = knotsBetween(0, 1).filter((rest) => rest <= 0.5)
     const values = valuesOver(upperPieces, knots)
-    sides.push({ variable: "rest", pieces: upperPieces, ...monotone(knots, values.eta, !rising) })
+    sides.push({ variable: "rest", pieces: upperPieces, ...knotted(upperPieces, monotone(knots, values.eta, !rising), !rising, -1) })
     for (const [from, to] of flatIn(knots, values.slope, (x) => slopeAt(upperPieces, x))) flat.push([1 - to, 1 - from])
   }
   if (sides.some(({ knots }) => knots.length < 2)) return null
@@ -158,21 +158,67 @@ function isRising(eta: readonly number[]): boolean | null {
   return first === undefined || last === undefined || first === last ? null : last > first
 }
 
+type Knots = Pick<LinkSide, "knots" | "eta" | "rate">
+type Knot = { readonly x: number; readonly eta: number; readonly rate: number }
+
 /** The knots over which η goes strictly one way, as doubles see it. */
-function monotone(
-  at: readonly number[],
-  eta: readonly number[],
-  rising: boolean,
-): { readonly knots: Float64Array; readonly eta: Float64Array } {
-  const [knots, values]: [number[], number[]] = [[], []]
+function monotone(at: readonly number[], eta: readonly number[], rising: boolean): readonly number[] {
+  const knots: number[] = []
+  let last: number | undefined
   at.forEach((x, k) => {
     const value = eta[k] as number
-    const last = values.at(-1)
     if (!Number.isFinite(value) || (last !== undefined && (rising ? value <= last : value >= last))) return
     knots.push(x)
-    values.push(value)
+    last = value
   })
-  return { knots: Float64Array.from(knots), eta: Float64Array.from(values) }
+  return knots
+}
+
+/** So many halvings between two knots, and so many knots, at most. */
+const [mostHalvings, mostKnots] = [7, 3_000]
+/** Knots are close enough where a cubic between them misses the middle by less than this share. */
+const closeEnough = 1e-5
+/** Beyond these, as distances from 0, no mean is looked for often. */
+const [leastOften, greatestOften] = [1e-13, 1e13]
+
+/** Knots with values and slopes, and more between them where a cubic misses. `turned` is −1 for a variable that falls with μ. */
+function knotted(pieces: readonly LinkPiece[], at: readonly number[], rising: boolean, turned: 1 | -1): Knots {
+  const knotAt = (x: number): Knot => {
+    const values = valuesOver(pieces, [x])
+    return { x, eta: values.eta[0] as number, rate: turned / (values.slope[0] as number) }
+  }
+  const made: Knot[] = []
+  const between = (a: Knot, b: Knot, halvings: number): void => {
+    const x = middleOf(a.x, b.x)
+    const size = x === null ? 0 : Math.abs(x)
+    if (x === null || halvings === mostHalvings || made.length > mostKnots || size < leastOften || size > greatestOften) return
+    const middle = knotAt(x)
+    if (!(rising ? middle.eta > a.eta && middle.eta < b.eta : middle.eta < a.eta && middle.eta > b.eta)) return
+    if (Math.abs(cubic(a, b, middle.eta) - x) <= closeEnough * size) return
+    between(a, middle, halvings + 1)
+    made.push(middle)
+    between(middle, b, halvings + 1)
+  }
+  let last: Knot | null = null
+  for (const x of at) {
+    const knot = knotAt(x)
+    if (last !== null) between(last, knot, 0)
+    made.push(knot)
+    last = knot
+  }
+  return {
+    knots: Float64Array.from(made, (knot) => knot.x),
+    eta: Float64Array.from(made, (knot) => knot.eta),
+    rate: Float64Array.from(made, (knot) => knot.rate),
+  }
+}
+
+/** The cubic through two knots with their slopes, as the search for a mean begins with it. */
+function cubic(a: Knot, b: Knot, eta: number): number {
+  const width = b.eta - a.eta
+  const t = (eta - a.eta) / width
+  const rest = 1 - t
+  return a.x * (1 + 2 * t) * rest * rest + b.x * (3 - 2 * t) * t * t + t * rest * width * (a.rate * rest - b.rate * t)
 }
 
 /** Sixteenfold from one knot to the next towards an end: as near as doubles go where the end is 0. */

@@ -60,7 +60,7 @@ const narrowest = 3e-14
 /** Points kept to be looked at again for other constants. */
 const mostLooked = 300
 /** Stretches between two pauses. */
-const pace = 100
+const pace = 25
 
 /** @param pause  awaited every few milliseconds */
 export async function proofOf(claim: Claim, pause: () => Promise<void>): Promise<Proven> {

@@ -50,13 +50,14 @@ export type LinkPiece = { readonly from: number; readonly program: Program }
 
 /**
  * A stretch of the range in a variable that keeps its digits there: `mu`, or near a mean of 1 `rest`, which is 1 − μ. Pieces are in rising order
- * of the variable; knots rise in the variable, and η is strictly monotone over them.
+ * of the variable; knots rise in the variable, η is strictly monotone over them, and `rate` is the slope of the variable in η there.
  */
 export type LinkSide = {
   readonly variable: "mu" | "rest"
   readonly pieces: readonly LinkPiece[]
   readonly knots: Float64Array
   readonly eta: Float64Array
+  readonly rate: Float64Array
 }
 
 /** A link of the user's own, as plain data. */
@@ -74,15 +75,100 @@ export type OwnLink = {
   readonly canonical: string | null
 }
 
-/** Runs a program at one value of its variable, up to the output `upTo`; every result stays in `places`. */
+/**
+ * Runs a program at one value of its variable, up to the output `upTo`; every result stays in `places`. One loop without calls for what is
+ * plain arithmetic: it stands inside the search for the mean of every row.
+ */
 export function run({ code, constants, outputs }: Program, x: number, places: Float64Array, upTo = outputs.length - 1): void {
   let last = 0
   for (let k = 0; k <= upTo; k++) last = Math.max(last, outputs[k] as number)
-  for (let k = 0; k <= last; k++) {
-    const a = code[3 * k + 1] as number
-    const b = code[3 * k + 2] as number
-    places[k] = result(code[3 * k] as number, a, b, x, constants, places)
+  for (let k = 0, at = 0; k <= last; k++, at += 3) {
+    const a = code[at + 1] as number
+    const b = code[at + 2] as number
+    const u = places[a] as number
+    switch (code[at]) {
+      case 0:
+        places[k] = constants[a] as number
+        break
+      case 1:
+        places[k] = x
+        break
+      case 2:
+        places[k] = 0 - u
+        break
+      case 3:
+        places[k] = u + (places[b] as number)
+        break
+      case 4:
+        places[k] = u - (places[b] as number)
+        break
+      case 5:
+        places[k] = u * (places[b] as number)
+        break
+      case 6:
+        places[k] = u / (places[b] as number)
+        break
+      case 7:
+        places[k] = pow(u, places[b] as number)
+        break
+      case 8:
+        places[k] = asin(u)
+        break
+      case 9:
+        places[k] = atan(u)
+        break
+      case 10:
+        places[k] = cos(u)
+        break
+      case 11:
+        places[k] = exp(u)
+        break
+      case 12:
+        places[k] = expm1(u)
+        break
+      case 13:
+        places[k] = log(u)
+        break
+      case 14:
+        places[k] = log10(u)
+        break
+      case 15:
+        places[k] = log1p(u)
+        break
+      case 16:
+        places[k] = sin(u)
+        break
+      case 17:
+        places[k] = Math.sqrt(u)
+        break
+      case 18:
+        places[k] = tan(u)
+        break
+      case 19:
+        places[k] = tanh(u)
+        break
+      case 20:
+        places[k] = normalCdf(u)
+        break
+      case 21:
+        places[k] = normalQuantile(u)
+        break
+      case 22:
+        places[k] = logOdds(u)
+        break
+      case 23:
+        places[k] = share(u)
+        break
+    }
   }
+}
+
+const logOdds = (u: number): number => (u > 0.25 && u < 0.75 ? log1p((2 * u - 1) / (1 - u)) : log(u) - log1p(-u))
+
+const share = (u: number): number => {
+  if (u >= 0) return 1 / (1 + exp(-u))
+  const e = exp(u)
+  return e / (1 + e)
 }
 
 /** How many places a program needs. */
@@ -100,6 +186,8 @@ export function ownLink(own: OwnLink, name: string): Link {
   let known = Number.NaN
   let mean = Number.NaN
   let rest = Number.NaN
+  let derivedAt = Number.NaN
+  let [steep, bend] = [Number.NaN, Number.NaN]
 
   /** Leaves μ and 1 − μ of this η. Beyond the reach stands the end of the range, as its limit. */
   const solve = (eta: number): void => {
@@ -126,10 +214,14 @@ export function ownLink(own: OwnLink, name: string): Link {
     run(inverse.program, eta, inverse.places)
     return inverse.places[inverse.program.outputs[0] as number] as number
   }
-  /** dη/dμ and d²η/dμ² at this η, by the side on which its mean is. */
-  const slopesAt = (eta: number, output: 1 | 2): number => {
+  /** Leaves dη/dμ and d²η/dμ² at this η, by the side on which its mean is. */
+  const derive = (eta: number): void => {
     solve(eta)
-    return upper !== null && mean > 0.5 ? upper.at(rest, output) : lower.at(mean, output)
+    if (derivedAt === eta) return
+    derivedAt = eta
+    const side = upper !== null && mean > 0.5 ? upper : lower
+    bend = side.at(upper !== null && mean > 0.5 ? rest : mean, 2)
+    steep = side.lastSlope()
   }
   return {
     name,
@@ -151,21 +243,27 @@ export function ownLink(own: OwnLink, name: string): Link {
             solve(eta)
             return rest
           },
-    slope: (eta) => 1 / slopesAt(eta, 1),
+    slope: (eta) => {
+      derive(eta)
+      return 1 / steep
+    },
     curvature: (eta) => {
-      const slope = slopesAt(eta, 1)
-      return -(slopesAt(eta, 2) / slope / slope) / slope
+      derive(eta)
+      return -(bend / steep / steep) / steep
     },
   }
 }
 
 /** Steps enough for bisection between any two doubles of one sign. */
 const mostSteps = 200
+/** A step this small, as a share of x, is the last. */
+const arrived = 1e-10
 
 /** One side, with the places its programs write to. */
 class Side {
   private readonly side: LinkSide
   private readonly places: Float64Array
+  private slopeThere = Number.NaN
 
   constructor(side: LinkSide) {
     this.side = side
@@ -175,6 +273,7 @@ class Side {
   at(x: number, output: 0 | 1 | 2): number {
     const { program } = this.pieceAt(x)
     run(program, x, this.places, output)
+    if (output > 0) this.slopeThere = this.places[program.outputs[1] as number] as number
     return this.places[program.outputs[output] as number] as number
   }
 
@@ -199,8 +298,7 @@ class Side {
     // Before the first knot and past the last there is hardly a double left: the end stands for them.
     if (first === 0) return Number.isFinite(low) ? low : high
     if (first === knots.length) return Number.isFinite(high) ? high : low
-    const share = (eta - (known[first - 1] as number)) / ((known[first] as number) - (known[first - 1] as number))
-    let x = start > low && start < high ? start : low + share * (high - low)
+    let x = start > low && start < high ? start : this.between(first, eta)
     if (!(x > low && x < high)) x = middleOf(low, high)
     const sign = rising ? 1 : -1
     // dη/dμ is what the program gives; in `rest` the slope has the other sign.
@@ -213,16 +311,33 @@ class Side {
       if (sign * off > 0) high = x
       else low = x
       const step = off / (turned * (this.places[program.outputs[1] as number] as number))
-      let next = x - step
-      if (!(next >= low && next <= high)) next = middleOf(low, high)
-      else if (Math.abs(next - x) <= 4.5e-16 * Math.abs(next)) return next
-      if (next === x || next === low || next === high) {
-        if (middleOf(low, high) === low || middleOf(low, high) === high) return next
-        if (next === x) return x
+      const next = x - step
+      // The error after a step is about the square of it: what is left is less than doubles show.
+      if (next >= low && next <= high) {
+        if (step < arrived * next && -step < arrived * next) return next
+        if (next < 0 && step > arrived * next && -step > arrived * next) return next
       }
-      x = next
+      const inside = next > low && next < high ? next : middleOf(low, high)
+      if (inside === x || !(inside > low && inside < high)) return x
+      x = inside
     }
     return x
+  }
+
+  /** Where x may be, between the knot before this one and itself: by the cubic through both with their slopes. */
+  private between(knot: number, eta: number): number {
+    const { knots, eta: known, rate } = this.side
+    const [a, b] = [knots[knot - 1] as number, knots[knot] as number]
+    const width = (known[knot] as number) - (known[knot - 1] as number)
+    const t = (eta - (known[knot - 1] as number)) / width
+    const [p, q] = [width * (rate[knot - 1] as number), width * (rate[knot] as number)]
+    const rest = 1 - t
+    return a * (1 + 2 * t) * rest * rest + b * (3 - 2 * t) * t * t + t * rest * (p * rest - q * t)
+  }
+
+  /** dη/dμ where a program was run last. */
+  lastSlope(): number {
+    return this.slopeThere
   }
 
   private pieceAt(x: number): LinkPiece {
@@ -239,63 +354,3 @@ const middleOf = (low: number, high: number): number =>
     : high < 0 && low < 4 * high
       ? -Math.sqrt(-low) * Math.sqrt(-high)
       : low + 0.5 * (high - low)
-
-/** The whole square is a product, as everywhere in the language. */
-function result(operation: number, a: number, b: number, x: number, constants: Float64Array, places: Float64Array): number {
-  const u = places[a] as number
-  switch (operation) {
-    case 0:
-      return constants[a] as number
-    case 1:
-      return x
-    case 2:
-      return 0 - u
-    case 3:
-      return u + (places[b] as number)
-    case 4:
-      return u - (places[b] as number)
-    case 5:
-      return u * (places[b] as number)
-    case 6:
-      return u / (places[b] as number)
-    case 7:
-      return pow(u, places[b] as number)
-    case 8:
-      return asin(u)
-    case 9:
-      return atan(u)
-    case 10:
-      return cos(u)
-    case 11:
-      return exp(u)
-    case 12:
-      return expm1(u)
-    case 13:
-      return log(u)
-    case 14:
-      return log10(u)
-    case 15:
-      return log1p(u)
-    case 16:
-      return sin(u)
-    case 17:
-      return Math.sqrt(u)
-    case 18:
-      return tan(u)
-    case 19:
-      return tanh(u)
-    case 20:
-      return normalCdf(u)
-    case 21:
-      return normalQuantile(u)
-    case 22:
-      return u > 0.25 && u < 0.75 ? log1p((2 * u - 1) / (1 - u)) : log(u) - log1p(-u)
-    case 23: {
-      if (u >= 0) return 1 / (1 + exp(-u))
-      const e = exp(u)
-      return e / (1 + e)
-    }
-    default:
-      return Number.NaN
-  }
-}

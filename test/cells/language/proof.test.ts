@@ -126,18 +126,18 @@ describe("a polynomial", () => {
   // Derivatives with quadratic factors above 0 for the rising ones, and one simple root inside for those that turn.
   const quadratic = fc.tuple(fc.integer({ min: -4, max: 4 }), fc.integer({ min: 1, max: 6 })).map(([b, c]) => [b * b + c, 2 * b, 1])
 
-  it("is proved to rise where its derivative is a product of quadratics without a root", async () => {
+  it("is proved to rise where its derivative is a product of quadratics without a root", { timeout: 120_000 }, async () => {
     await fc.assert(
       fc.asyncProperty(fc.array(quadratic, { minLength: 1, maxLength: 2 }), async (factors) => {
         const slope = factors.reduce<readonly number[]>((all, each) => product(all, each), [1])
         const proof = await proofFrom(written(integrated(slope)), "-2", "2")
         expect([said(proof.defined), said(proof.monotone), proof.rising]).toEqual(["proved", "proved", true])
       }),
-      { numRuns: 40 * effort, seed: 3 },
+      { numRuns: 25 * effort, seed: 3 },
     )
   })
 
-  it("is refuted at the root of its derivative", async () => {
+  it("is refuted at the root of its derivative", { timeout: 120_000 }, async () => {
     await fc.assert(
       fc.asyncProperty(quadratic, fc.integer({ min: -15, max: 15 }), async (factor, eighths) => {
         const root = eighths / 8
@@ -145,7 +145,7 @@ describe("a polynomial", () => {
         expect(proof.monotone.verdict).toBe("refuted")
         if (proof.monotone.verdict === "refuted") expect(Math.abs(proof.monotone.witness - root)).toBeLessThan(1e-9)
       }),
-      { numRuns: 40 * effort, seed: 4 },
+      { numRuns: 25 * effort, seed: 4 },
     )
   })
 })
@@ -237,9 +237,9 @@ describe("what is proved of any formula", () => {
             ).toBe(true)
         }
       }),
-      { numRuns: 500 * effort, seed: 7 },
+      { numRuns: 250 * effort, seed: 7 },
     )
-    expect(proved).toBeGreaterThan(20)
+    expect(proved).toBeGreaterThan(10)
   })
 
   /** Whether some part grows beyond what doubles hold near there. */
