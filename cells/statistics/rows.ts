@@ -8,7 +8,7 @@ import { isCanonical } from "./legal-pairs.ts"
 import type { Link } from "./link.ts"
 import { linkOf } from "./links.ts"
 import type { Problem } from "./problem.ts"
-import { devianceTerm } from "./special.ts"
+import { devianceTerm, normalDensity, normalTailBy } from "./special.ts"
 
 /** Which weights: the expected W, or the observed J. */
 export type Information = "expected" | "observed"
@@ -27,6 +27,8 @@ export type Responses = {
   readonly offset: Float64Array | null
   /** E where the mean is E·h(η); null where it went into the offset or there is none. */
   readonly scale: Float64Array | null
+  /** log y, under the log link of counts and amounts. */
+  readonly logY: Float64Array | null
   /** Open interval of η on which every row has a possible mean. */
   readonly low: number
   readonly high: number
@@ -82,6 +84,7 @@ export function responsesOf(problem: Problem): Responses {
     a,
     offset,
     scale,
+    logY: link.name === "log" && (family.name === "poisson" || family.name === "gamma") ? y.map(log) : null,
     ...ends,
     rounding: roundingOf(family, y, a),
   }
@@ -117,7 +120,9 @@ export function fillRows(of: Responses, information: Information, from: number, 
   }
   if (of.family.name === "binomial" && of.link.name === "logit") return logitRows(of, from, to, state, sums)
   if (of.family.name === "poisson" && of.link.name === "log") return logRows(of, from, to, state, sums)
-  if (of.family.name === "binomial" && of.link.name === "cloglog") return cloglogRows(of, information, from, to, state, sums)
+  if (of.family.name === "binomial" && of.link.name === "cloglog") return cloglogRows(of, information, false, from, to, state, sums)
+  if (of.family.name === "binomial" && of.link.name === "loglog") return cloglogRows(of, information, true, from, to, state, sums)
+  if (of.family.name === "binomial" && of.link.name === "probit") return probitRows(of, information, from, to, state, sums)
   if (of.family.name === "gamma" && of.link.name === "log") return gammaLogRows(of, information, from, to, state, sums)
   if (of.family.name === "normal" && of.link.name === "identity") return identityRows(of, from, to, state, sums)
   return anyRows(of, information, from, to, state, sums)
@@ -178,16 +183,34 @@ function shareDeviance(y: number, mu: number, rest: number): number {
 
 // Loops of their own ---------------------------------------------------------------------------------------------------------------------
 
+// A search looks at the deviance at every step, and a logarithm a row would be the dearest part of it. So a block of single trials has one
+// logarithm, that of a product, and counts and amounts have theirs of the response, which never change. What is lost is about 1e-16 a row of
+// terms not smaller than 1e-3; smaller ones are summed as series.
+
+/** Below this, log(1 ± t) is taken as its series: five terms are exact to the last digit. */
+const smallTerm = 0.0009765625
+
+/** log(1 + t) for 0 ≤ t < 2^−10. */
+const smallLog = (t: number): number => t * (1 - t * (0.5 - t * (0.3333333333333333 - t * (0.25 - t * 0.2))))
+
+/** A product is put away before it can leave the range of a double. */
+const mostProduct = 1e200
+const leastProduct = 1e-200
+
 function logitRows(of: Responses, from: number, to: number, state: RowState, sums: Float64Array): boolean {
   const { y, a } = of
   const { eta, mu, score, weight } = state
   let deviance = 0
   let pearson = 0
+  let half = 0
+  let product = 1
   for (let i = from; i < to; i++) {
     const own = a[i] as number
     const e = eta[i] as number
-    const t = exp(e < 0 ? e : -e)
-    const near = 1 / (1 + t)
+    const size = e < 0 ? -e : e
+    const t = exp(-size)
+    const whole = 1 + t
+    const near = 1 / whole
     const far = t * near
     const m = e < 0 ? far : near
     const rest = e < 0 ? near : far
@@ -197,31 +220,64 @@ function logitRows(of: Responses, from: number, to: number, state: RowState, sum
     const v = near * far
     score[i] = own * residual
     weight[i] = own * v
-    if (own === 0) continue
-    deviance += own * shareDeviance(response, m, rest)
-    if (v > 0) pearson += own * residual * (residual / v)
+    if (own === 1 && t > 0 && (response === 0 || response === 1)) {
+      // −log of the share of what was seen: log(1 + t), and |η| more against the odds.
+      if (t < smallTerm) half += smallLog(t)
+      else {
+        product *= whole
+        // What 1 + t lost by rounding, as a share of it.
+        half += (t - (whole - 1)) * near
+        if (product > mostProduct) {
+          half += log(product)
+          product = 1
+        }
+      }
+      if (e < 0 === (response === 1)) {
+        half += size
+        pearson += 1 / t
+      } else pearson += t
+    } else if (own !== 0) {
+      deviance += own * shareDeviance(response, m, rest)
+      if (v > 0) pearson += own * residual * (residual / v)
+    }
   }
+  deviance += 2 * (half + log(product))
   sums[0] = (sums[0] as number) + deviance
   sums[1] = (sums[1] as number) + pearson
   return Number.isFinite(deviance)
 }
 
+/** Half the deviance of a count y > 0 or an amount from log(y/m): x·log(x/m) − (x − m), as a series where the two are near. */
+function halfDeviance(x: number, difference: number, sum: number, logRatio: number): number {
+  if (difference >= 0.1 * sum || -difference >= 0.1 * sum) return x * logRatio - difference
+  const v = difference / sum
+  const s = v * v
+  return (
+    difference * v +
+    2 * x * v * (s * (1 / 3 + s * (1 / 5 + s * (1 / 7 + s * (1 / 9 + s * (1 / 11 + s * (1 / 13 + s * (1 / 15 + s / 17))))))))
+  )
+}
+
 function logRows(of: Responses, from: number, to: number, state: RowState, sums: Float64Array): boolean {
   const { y, a } = of
+  const logY = of.logY as Float64Array
   const { eta, mu, score, weight } = state
   let deviance = 0
   let pearson = 0
   for (let i = from; i < to; i++) {
     const own = a[i] as number
-    const m = exp(eta[i] as number)
+    const e = eta[i] as number
+    const m = exp(e)
     mu[i] = m
     const response = y[i] as number
     const residual = response - m
     score[i] = own * residual
     weight[i] = own * m
     if (own === 0) continue
-    deviance += own * 2 * devianceTerm(response, m)
-    if (m > 0) pearson += own * residual * (residual / m)
+    if (m > 0) {
+      deviance += own * 2 * (response === 0 ? m : halfDeviance(response, residual, response + m, (logY[i] as number) - e))
+      pearson += own * residual * (residual / m)
+    } else deviance += own * 2 * devianceTerm(response, m)
   }
   sums[0] = (sums[0] as number) + deviance
   sums[1] = (sums[1] as number) + pearson
@@ -230,20 +286,22 @@ function logRows(of: Responses, from: number, to: number, state: RowState, sums:
 
 function gammaLogRows(of: Responses, information: Information, from: number, to: number, state: RowState, sums: Float64Array): boolean {
   const { y, a } = of
+  const logY = of.logY as Float64Array
   const { eta, mu, score, weight } = state
   const observed = information === "observed"
   let deviance = 0
   let pearson = 0
   for (let i = from; i < to; i++) {
     const own = a[i] as number
-    const m = exp(eta[i] as number)
+    const e = eta[i] as number
+    const m = exp(e)
     mu[i] = m
     const response = y[i] as number
     const residual = (response - m) / m
     score[i] = own * residual
     weight[i] = observed ? own * (response / m) : own
     if (own === 0) continue
-    deviance += (own * 2 * devianceTerm(m, response)) / m
+    deviance += (own * 2 * (m > 0 ? halfDeviance(m, m - response, m + response, e - (logY[i] as number)) : devianceTerm(m, response))) / m
     pearson += own * residual * residual
   }
   sums[0] = (sums[0] as number) + deviance
@@ -251,42 +309,134 @@ function gammaLogRows(of: Responses, information: Information, from: number, to:
   return Number.isFinite(deviance)
 }
 
-function cloglogRows(of: Responses, information: Information, from: number, to: number, state: RowState, sums: Float64Array): boolean {
+/** cloglog, and loglog as cloglog turned about: η for −η and failures for successes. */
+function cloglogRows(
+  of: Responses,
+  information: Information,
+  turned: boolean,
+  from: number,
+  to: number,
+  state: RowState,
+  sums: Float64Array,
+): boolean {
   const { y, a } = of
   const { eta, mu, score, weight } = state
   const observed = information === "observed"
   let deviance = 0
   let pearson = 0
+  let half = 0
+  let product = 1
   for (let i = from; i < to; i++) {
     const own = a[i] as number
-    const t = exp(eta[i] as number)
-    const m = -expm1(-t)
-    const rest = t < 0.5 ? 1 - m : exp(-t)
-    mu[i] = m
+    const t = exp(turned ? -(eta[i] as number) : (eta[i] as number))
+    let m: number
+    let rest: number
+    if (t < 0.5) {
+      m = -expm1(-t)
+      rest = 1 - m
+    } else {
+      rest = exp(-t)
+      m = 1 - rest
+    }
+    mu[i] = turned ? rest : m
     const response = y[i] as number
-    const residual = response > 0.5 ? rest - (1 - response) : response - m
+    const hit = turned ? 1 - response : response
+    const miss = turned ? response : 1 - response
+    const residual = hit > 0.5 ? rest - miss : hit - m
     // d = t·e^(−t) and V = μ·e^(−t), so d/V = t/μ, which tends to 1 on the left.
     const ratio = m > 0 ? t / m : 1
     if (rest === 0) {
       // All but certain: only a row of successes can be here, and it adds nothing.
       score[i] = 0
       weight[i] = 0
-      if (own > 0) deviance += own * shareDeviance(response, m, rest)
+      if (own > 0) deviance += own * (turned ? shareDeviance(response, rest, m) : shareDeviance(response, m, rest))
       continue
     }
     const d = t * rest
     let w = ratio * d
     const v = m * rest
-    if (observed && v > 0) {
-      // J = W − s·(d'/d − d·V'/V) with d'/d = 1 − t and d·V'/V = (t/μ)(1 − 2μ).
-      w -= residual * ratio * (1 - t - ratio * (rest - m))
+    if (observed) {
+      // ℓ = y·log μ − (1 − y)·t, where log μ has the slope r = t·e^(−t)/μ and r the slope r(1 − t − r).
+      const r = ratio * rest
+      w = miss * t + hit * r * (t + r - 1)
     }
+    score[i] = own * (turned ? -residual : residual) * ratio
+    weight[i] = own * w
+    if (own === 1 && miss === 1) {
+      // −log of the share is t itself.
+      half += t
+      if (v > 0) pearson += m / rest
+    } else if (own === 1 && hit === 1 && m > 1e-100) {
+      if (rest < smallTerm) half -= smallLog(-rest)
+      else {
+        product *= m
+        half += (m - 1 + rest) * (1 + rest)
+        if (product < leastProduct) {
+          half -= log(product)
+          product = 1
+        }
+      }
+      pearson += rest / m
+    } else if (own !== 0) {
+      deviance += own * (turned ? shareDeviance(response, rest, m) : shareDeviance(response, m, rest))
+      if (v > 0) pearson += own * residual * (residual / v)
+    }
+  }
+  deviance += 2 * (half - log(product))
+  sums[0] = (sums[0] as number) + deviance
+  sums[1] = (sums[1] as number) + pearson
+  return Number.isFinite(deviance)
+}
+
+function probitRows(of: Responses, information: Information, from: number, to: number, state: RowState, sums: Float64Array): boolean {
+  const { y, a } = of
+  const { eta, mu, score, weight } = state
+  const observed = information === "observed"
+  let deviance = 0
+  let pearson = 0
+  let half = 0
+  let product = 1
+  for (let i = from; i < to; i++) {
+    const own = a[i] as number
+    const e = eta[i] as number
+    const d = normalDensity(e)
+    const tail = normalTailBy(e < 0 ? -e : e, d)
+    const m = e < 0 ? tail : 1 - tail
+    const rest = e < 0 ? 1 - tail : tail
+    mu[i] = m
+    const response = y[i] as number
+    const residual = response > 0.5 ? rest - (1 - response) : response - m
+    const v = m * rest
+    if (!(v > 0)) {
+      // As far as doubles go the mean is at the end of its range: a row that agrees adds nothing.
+      score[i] = 0
+      weight[i] = 0
+      if (own !== 0) deviance += own * shareDeviance(response, m, rest)
+      continue
+    }
+    const ratio = d / v
+    const standard = residual / v
+    let w = ratio * d
+    if (observed) w -= standard * (-e * d) - standard * ratio * (d * (rest - m))
     score[i] = own * residual * ratio
     weight[i] = own * w
     if (own === 0) continue
-    deviance += own * shareDeviance(response, m, rest)
-    if (v > 0) pearson += own * residual * (residual / v)
+    pearson += own * residual * standard
+    const seen = response === 1 ? m : rest
+    const unseen = response === 1 ? rest : m
+    if (own === 1 && (response === 1 || response === 0) && seen > 1e-100) {
+      if (unseen < smallTerm) half -= smallLog(-unseen)
+      else {
+        product *= seen
+        half += (seen - 1 + unseen) * (1 + unseen)
+        if (product < leastProduct) {
+          half -= log(product)
+          product = 1
+        }
+      }
+    } else deviance += own * shareDeviance(response, m, rest)
   }
+  deviance += 2 * (half - log(product))
   sums[0] = (sums[0] as number) + deviance
   sums[1] = (sums[1] as number) + pearson
   return Number.isFinite(deviance)

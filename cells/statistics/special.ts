@@ -23,8 +23,11 @@ export const normalDensity = (x: number): number => {
 export const normalCdf = (x: number): number => {
   if (x > 0) return 1 - normalCdf(-x)
   if (x < -39) return 0
-  return 0.5 * erfcx(-x * inverseRootTwo) * normalDensity(x) * rootTwoPi
+  return normalTailBy(-x, normalDensity(x))
 }
+
+/** 1 − Φ(x) for x ≥ 0 from the density there. */
+export const normalTailBy = (x: number, density: number): number => 0.5 * erfcx(x * inverseRootTwo) * density * rootTwoPi
 
 /** 1 − Φ(x), full precision in the upper tail. */
 export const normalUpperTail = (x: number): number => normalCdf(-x)
