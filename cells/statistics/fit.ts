@@ -2,6 +2,7 @@
 // inference.ts, what is certified about it in certificate.ts; this file puts them in order. Definitions: README.md.
 
 import { basisOf, type Dependence, mostInflation, reweightedBasis } from "./basis.ts"
+import { biasReducedFit } from "./bias-reduced.ts"
 import { basisCoefficients, designCoefficients } from "./change.ts"
 import { isConcave } from "./concavity.ts"
 import { columnsNeeded, type Design, designOf, mostColumns, recipeOf } from "./design.ts"
@@ -144,6 +145,7 @@ const arrivedScore = 1e-6
 
 /** `pause` is awaited at least every 50 ms of work; `near` is a fit of the same design to start from (gestures only). */
 export async function fit(problem: Problem, pause: () => Promise<void>, near: Fit | null = null): Promise<Fitted> {
+  if (problem.estimate === "bias_reduced") return biasReducedFit(problem, pause)
   const search = await searched(problem, pause, near)
   return search.ok ? { ok: true, fit: await findings(search.found) } : search
 }
@@ -178,7 +180,9 @@ export async function searched(
     const swapped = problem.link.name === "power" && design.constant && problem.offset === null
     const of = swapped ? { ...problem, link: { ...problem.link, name: "box_cox" } } : problem
     const surface = new Surface(of, basis, constant, columns, phi(basis.size), pace)
-    estimated = await bestParameters(surface, near ? await surface.at(startingValues(problem), null) : null)
+    const before = near && near.link.name === problem.link.name && sameParameters(near, problem) ? near : null
+    const begin = before ? await surface.at(startingValues({ ...problem, family: before.family, link: before.link }), null) : null
+    estimated = await bestParameters(surface, begin)
     if (!estimated) return { ok: false, why: "no_start", detail: "no coefficients were found under which every mean is possible" }
     problem = problemAt(problem, surface.parameters, estimated.spot.values)
   }
@@ -213,6 +217,16 @@ export async function searched(
   if (estimated) others.push(...estimated.others)
   return { ok: true, found: { climb, limit, dependences: named(dependences, design), none, others, estimated } }
 }
+
+/** Whether the same parameters are estimated. */
+const sameParameters = (a: Pick<Problem, "family" | "link">, b: Pick<Problem, "family" | "link">): boolean =>
+  a.family.name === b.family.name &&
+  estimatedParameters(a)
+    .map(({ of }) => of)
+    .join() ===
+    estimatedParameters(b)
+      .map(({ of }) => of)
+      .join()
 
 /** The same with its parameters taken as given. */
 const givenOnly = <S extends FamilySpec | LinkSpec>(spec: S): S => ({ ...spec, estimated: [] })

@@ -49,7 +49,7 @@ const wholePower = ({ as, setting }: Piece): number | null =>
 
 /**
  * What is lost from the larger fit to the smaller. With φ known ΔD/φ on χ²(t), with φ estimated (ΔD/t)/φ on F(t, df), φ and df of the larger;
- * Wald's form where errors are sandwich. Where k or p of a family is estimated, so that deviances are not comparable, −2Δℓ on χ²(t).
+ * Wald's form where errors are sandwich or the fit is penalised. Where k or p of a family is estimated, so that deviances are not comparable, −2Δℓ on χ²(t).
  * Null where there is none: no coefficient apart, a fit that gave up, φ not known.
  */
 export async function nestedTest(
@@ -60,7 +60,7 @@ export async function nestedTest(
 ): Promise<NestedTest | null> {
   const terms = larger.rank - smaller.fit.rank
   if (terms <= 0) return null
-  if (problem.standardErrors === "sandwich") return waldTest(problem, larger, smaller.problem, pause)
+  if (problem.standardErrors === "sandwich" || problem.estimate === "bias_reduced") return waldTest(problem, larger, smaller.problem, pause)
   if (larger.certificate.class === "gave_up" || smaller.fit.certificate.class === "gave_up") return null
   if ((problem.family.estimated?.length ?? 0) > 0) {
     if (larger.logLikelihood === null || smaller.fit.logLikelihood === null) return null

@@ -53,6 +53,8 @@ export type Problem = {
   readonly control?: Control | null
   readonly dispersion: Dispersion
   readonly standardErrors: "expected" | "observed" | "sandwich"
+  /** Left out: by maximum likelihood. */
+  readonly estimate?: "bias_reduced"
   /** Level of the intervals, such as 0.95. */
   readonly confidence: number
 }

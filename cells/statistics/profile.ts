@@ -2,6 +2,7 @@
 // outwards along the ridge, every point on it a constrained maximum found by Newton's method from the last; the ridge and the end are
 // solved together, so that few passes over the rows are needed. Venzon & Moolgavkar 1988, Appl. Stat. 37:87.
 
+import { penalisedSearch } from "./bias-reduced.ts"
 import { designCoefficients, outOfScore } from "./change.ts"
 import { dispersionRule } from "./dispersion.ts"
 import { type Fit, searched } from "./fit.ts"
@@ -10,8 +11,8 @@ import type { Findings } from "./inference.ts"
 import { jointIntervals } from "./joint-profile.ts"
 import type { Problem } from "./problem.ts"
 import { edgeProfile } from "./profile-at-edge.ts"
-import { directionOf } from "./recession.ts"
 import { Ridge, type RidgeEnd, type Spot, type Surface } from "./ridge.ts"
+import { shareOf } from "./ridge-share.ts"
 import { dot, type Equations, type Point } from "./scoring.ts"
 import { chiSquareUpperQuantile, fUpperQuantile } from "./special.ts"
 
@@ -49,6 +50,17 @@ export async function profileIntervals(
   const cut = profileCut(problem, fit)
   if (phi === null || !(phi > 0) || cut === null || fit.deviance === null || fit.certificate.class === "gave_up") return none
   if (fit.parameters.length > 0) return jointIntervals(problem, fit, cut, pause)
+  if (problem.estimate === "bias_reduced") {
+    const penalised = await penalisedSearch(problem, fit, pause)
+    if (penalised === null) return none
+    const { equations, point, surface } = penalised
+    const ends: (ProfileInterval | null)[] = []
+    for (let column = 0; column < fit.coefficients.length; column++) {
+      ends.push(await profileOf(equations, point, column, null, cut, 1, 0, () => surface))
+      await pause()
+    }
+    return ends
+  }
   // From the coefficients of the fit, so that it is not searched for again.
   const search = await searched(problem, pause, fit)
   if (!search.ok || search.found.limit.type === "gave_up") return none
@@ -74,6 +86,7 @@ async function intervalOf({ climb, limit }: Findings, column: number, rise: numb
  * Both ends for one column of the design.
  * @param base   the least deviance, where that is a limit; null for that of the point
  * @param moved  the side on which the coefficient runs to infinity, 0 for none
+ * @param surfaceAlong  what is followed; the deviance unless said otherwise
  */
 async function profileOf(
   equations: Equations,
@@ -83,6 +96,7 @@ async function profileOf(
   rise: number,
   phi: number,
   moved: number,
+  surfaceAlong: (c: Float64Array) => Surface = (c) => likelihoodSurface(equations, c),
 ): Promise<ProfileInterval | null> {
   const { basis } = equations
   const place = basis.change.column.indexOf(column)
@@ -91,27 +105,13 @@ async function profileOf(
   unit[place] = 1
   // β_j = β̂_j + c'(γ − γ̂).
   const c = outOfScore(basis, unit)
-  const ridge = await Ridge.from(likelihoodSurface(equations, c), point.gamma, c, phi)
+  const ridge = await Ridge.from(surfaceAlong(c), point.gamma, c, phi)
   if (ridge === null) return null
   const at = designCoefficients(basis, Math.max(...basis.change.column) + 1, point.gamma, point.gammaLow)[column] as number
   const from = base ?? ridge.value
   const low = moved < 0 ? "-infinity" : await ridge.end(-1, from, rise)
   const high = moved > 0 ? "infinity" : await ridge.end(1, from, rise)
   return { low: typeof low === "number" ? at + low : low, high: typeof high === "number" ? at + high : high }
-}
-
-/** Under links with an exponential or normal tail, η moves by no more than this in one step outwards. */
-const longestStep = 4
-
-/** The share of a move that keeps each row's step in η short, where means run to the ends of their range fast. */
-export function shareOf(equations: Equations, v: Float64Array): number {
-  const { link, a } = equations.responses
-  if (link.reach.low > Number.NEGATIVE_INFINITY || link.reach.high < Number.POSITIVE_INFINITY || link.name === "identity") return 1
-  let most = 0
-  directionOf(equations, v).forEach((t, i) => {
-    if ((a[i] as number) > 0) most = Math.max(most, Math.abs(t))
-  })
-  return most > longestStep ? longestStep / most : 1
 }
 
 /** So much stiffer is the surface made along the coefficient followed, where it is not convex by itself. */

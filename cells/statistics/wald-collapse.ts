@@ -6,17 +6,18 @@ import { type Fit, searched } from "./fit.ts"
 import { Factor } from "./gram.ts"
 import type { Problem } from "./problem.ts"
 import { directionOf } from "./recession.ts"
-import type { Responses } from "./rows.ts"
 import { dot } from "./scoring.ts"
+import { weightSlopes } from "./weight-slopes.ts"
 
 /**
  * Which coefficients have a ratio z that falls as they grow, d|z|/d|β| < 0. The others follow along the ridge of the likelihood, so that it
  * does not matter from where a predictor is counted. With v the entry jj of (X'WX)⁻¹, t = X(X'WX)⁻¹e_j and dη = t/v along the ridge,
  *     d|z|/d|β| < 0   where   β·v'/(2v) > 1,   v' = −Σ (dW/dη)·t³/v.
- * By the expected information; none where errors are sandwich, or where they mean nothing.
+ * By the expected information; none where errors are sandwich, where they mean
+ * nothing, or in penalised fits.
  */
 export async function collapsedRatios(problem: Problem, fit: Fit, pause: () => Promise<void>): Promise<readonly number[]> {
-  if (problem.standardErrors === "sandwich") return []
+  if (problem.standardErrors === "sandwich" || problem.estimate === "bias_reduced") return []
   if (!fit.coefficients.some(({ ratio }) => ratio !== null)) return []
   const search = await searched(problem, pause, fit)
   if (!search.ok || search.found.limit.type !== "inside") return []
@@ -45,17 +46,4 @@ export async function collapsedRatios(problem: Problem, fit: Fit, pause: () => P
     if (((beta[column] as number) * change) / (2 * v) > 1) collapsed.push(column)
   }
   return collapsed.sort((a, b) => a - b)
-}
-
-/** dW/dη of each row: W(2d'/d − d·V'/V). */
-function weightSlopes({ family, link, scale, a }: Responses, eta: Float64Array, mu: Float64Array, weight: Float64Array): Float64Array {
-  return eta.map((e, i) => {
-    const w = weight[i] as number
-    if (w === 0 || (a[i] as number) === 0) return 0
-    const times = scale ? (scale[i] as number) : 1
-    const m = mu[i] as number
-    const rest = link.complement === null || m < 0.5 ? 1 - m : link.complement(e)
-    const d = link.slope(e)
-    return w * ((2 * link.curvature(e)) / d - (times * d * family.varianceSlope(m, rest)) / family.variance(m, rest))
-  })
 }
