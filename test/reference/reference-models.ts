@@ -119,12 +119,6 @@ export function problemOf(whole: ReferenceSet, model: ReferenceModel): Problem |
       terms.push({ says, pieces })
       continue
     }
-    const pieces = numericPieces(expr)
-    if (pieces !== null) {
-      for (const { variable } of pieces) variables[variable] = { type: "number", values: column(variable) }
-      terms.push({ says, pieces })
-      continue
-    }
     const values = Float64Array.from({ length: rows }, (_, i) => expressionValue(expr, set.data, i))
     variables[says] = { type: "number", values }
     terms.push({ says, pieces: [{ variable: says, as: "itself", setting: null }] })
@@ -159,17 +153,6 @@ export function problemOf(whole: ReferenceSet, model: ReferenceModel): Problem |
     standardErrors: "expected",
     confidence: 0.95,
   }
-}
-
-/** Whole powers of columns and products of them as a predictor says them, since these have more digits than a double; null for all else. */
-function numericPieces(expression: Expression): Term["pieces"] | null {
-  const [what, left, right] = expression
-  if (what === "var") return [{ variable: left as string, as: "itself", setting: null }]
-  if (what === "pow" && left?.[0] === "var" && right?.[0] === "num" && Number.isInteger(Number(right[1])))
-    return [{ variable: left[1] as string, as: "power", setting: Number(right[1]) }]
-  if (what !== "mul") return null
-  const factors = [numericPieces(left as Expression), numericPieces(right as Expression)]
-  return factors.every((pieces) => pieces !== null) ? factors.flat() : null
 }
 
 /** Whole powers of columns and products of them as a predictor says them, since these have more digits than a double; null for all else. */
