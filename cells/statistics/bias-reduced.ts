@@ -32,6 +32,7 @@ export function whyNotReduced(problem: Problem): NotReduced | null {
   const { family, link } = problem
   const links = allowed[family.name]
   if (links === undefined) return "family"
+  if (problem.sampling) return "sampling"
   if ((family.estimated?.length ?? 0) > 0 || (link.estimated?.length ?? 0) > 0) return "estimated"
   if (link.limits) return "limits"
   if (!links.includes(link.name)) return "link"

@@ -147,7 +147,18 @@ const arrivedScore = 1e-6
 export async function fit(problem: Problem, pause: () => Promise<void>, near: Fit | null = null): Promise<Fitted> {
   if (problem.estimate === "bias_reduced") return biasReducedFit(problem, pause)
   const search = await searched(problem, pause, near)
-  return search.ok ? { ok: true, fit: await findings(search.found) } : search
+  if (!search.ok) return search
+  const found = await findings(search.found)
+  return { ok: true, fit: problem.sampling ? asSampled(found) : found }
+}
+
+/** Weights that say how many others a row stands for make a weighted estimate of a score, and no likelihood: Binder 1983. */
+const asSampled = (of: Fit): Fit => ({ ...of, logLikelihood: null, aic: null, bic: null, fitTest: [] })
+
+/** Weights of mean one, as a sample's are used. */
+export function samplingWeights(weights: Float64Array): Float64Array {
+  const mean = weights.reduce((sum, w) => sum + w, 0) / weights.length
+  return weights.map((w) => w / mean)
 }
 
 /** The search itself, for whoever goes on from where it ended (profiles, tests of nested fits). */

@@ -1,9 +1,10 @@
 // The front door of the statistics: numbers in, numbers out. No function here knows a cell, a name or a page.
 
+export { biasIsGone, type NotReduced, whyNotReduced } from "./bias-reduced.ts"
 export { denseColumns, designOf, presentRows, recipeOf } from "./design.ts"
 export * from "./elementary.ts"
 export { familyOf } from "./families.ts"
-export { fit } from "./fit.ts"
+export { fit, samplingWeights } from "./fit.ts"
 export { criticalValue } from "./inference.ts"
 export { parameterIntervals } from "./joint-profile.ts"
 export { canonicalLink, isCanonical, isLegal, isLegalOn, legalFamilies, legalLinks } from "./legal-pairs.ts"

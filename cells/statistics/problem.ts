@@ -55,6 +55,8 @@ export type Problem = {
   readonly standardErrors: "expected" | "observed" | "sandwich"
   /** Left out: by maximum likelihood. */
   readonly estimate?: "bias_reduced"
+  /** True where `precision` holds sampling weights, of mean one: they weight the estimate, and there is no likelihood. */
+  readonly sampling?: boolean
   /** Level of the intervals, such as 0.95. */
   readonly confidence: number
 }

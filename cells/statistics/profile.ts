@@ -48,7 +48,8 @@ export async function profileIntervals(
   const none = fit.coefficients.map(() => null)
   const phi = fit.dispersion.value
   const cut = profileCut(problem, fit)
-  if (phi === null || !(phi > 0) || cut === null || fit.deviance === null || fit.certificate.class === "gave_up") return none
+  if (phi === null || !(phi > 0) || cut === null || fit.deviance === null || fit.certificate.class === "gave_up" || problem.sampling)
+    return none
   if (fit.parameters.length > 0) return jointIntervals(problem, fit, cut, pause)
   if (problem.estimate === "bias_reduced") {
     const penalised = await penalisedSearch(problem, fit, pause)
