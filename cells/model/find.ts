@@ -10,7 +10,7 @@ import { variablesOf } from "../language/predictor.ts"
 import { canonicalLink, families, links, parameterRange } from "../language/vocabulary.ts"
 import { fitPart, type Label, type ModelFinding, type ModelFound, modelIn } from "../model-finding.ts"
 import type { Fit } from "../statistics/fit.ts"
-import { fit } from "../statistics/index.ts"
+import { fit, samplingWeights, whyNotReduced } from "../statistics/index.ts"
 import type { FamilySpec, LinkSpec, Problem, Term, Variable } from "../statistics/problem.ts"
 import type { Column } from "../table/column.ts"
 import { isDiscrete } from "./family.ts"
@@ -51,13 +51,14 @@ export async function found(said: ModelSaid, inputs: Inputs, work: Work): Promis
   const exposure = said.exposure === null ? null : numbersOf(said.exposure, "an exposure", table, notice, "exposure")
   const repeat = said.repeat === null ? null : numbersOf(said.repeat, "repeat", table, notice, "repeat")
   const precision = said.precision === null ? null : numbersOf(said.precision, "a precision", table, notice, "precision")
+  const sampling = said.sampling === null ? null : numbersOf(said.sampling, "a sampling weight", table, notice, "sampling")
   await work.checkpoint()
   if (response === null || link === null || familySpec === null || hasFault(notices)) return nothing()
 
-  const choice = await rowsUsed(said, table, { response, terms, predictors, offset, repeat, precision }, notice, work)
+  const choice = await rowsUsed(said, table, { response, terms, predictors, offset, repeat, precision, sampling }, notice, work)
   await work.checkpoint()
   for (const fault of response.faults(choice.used)) notice(fault)
-  weightFaults(said, table, choice.used, { exposure, repeat, precision }, notice)
+  weightFaults(said, table, choice.used, { exposure, repeat, precision, sampling }, notice)
   const rows = choice.used.reduce((count, is) => count + is, 0)
   if (hasFault(notices)) return nothing()
   if (rows === 0) {
@@ -82,13 +83,20 @@ export async function found(said: ModelSaid, inputs: Inputs, work: Work): Promis
     y: only(response.y) as Float64Array,
     trials: only(response.trials),
     repeat: only(repeat),
-    precision: only(precision),
+    precision: sampling === null ? only(precision) : samplingWeights(numbersAt(sampling, kept)),
+    ...(sampling === null ? {} : { sampling: true }),
     offset: only(offset === null ? null : offset.values),
     exposure: only(exposure),
     cluster: said.cluster === null ? null : clusterCodes(table.columns.get(said.cluster.name) as Column, kept),
     dispersion: said.dispersion?.value ?? (isDiscrete(family) ? "one" : "pearson"),
-    standardErrors: said.standardErrors,
+    standardErrors: sampling === null ? said.standardErrors : "sandwich",
+    ...(said.estimate?.by === "bias_reduced" ? { estimate: "bias_reduced" } : {}),
     confidence: said.confidence,
+  }
+  const why = said.estimate?.by === "bias_reduced" ? whyNotReduced(problem) : null
+  if (why !== null && said.estimate !== null) {
+    notice(say.biasNotReduced(why, problem.family.name, link.says, said.estimate.at))
+    return nothing()
   }
   remarks(said, problem, response, link, notice)
   const fitted = await fit(problem, () => work.checkpoint(), nearFit(work.near, problem))

@@ -7,6 +7,7 @@ import type { Name } from "../../runtime/value.ts"
 import { written, writtenCount } from "../figure/number.ts"
 import { saidWith } from "../language/slip.ts"
 import { parameterRange } from "../language/vocabulary.ts"
+import type { NotReduced } from "../statistics/bias-reduced.ts"
 
 const notice = (
   level: Level,
@@ -85,6 +86,18 @@ export const twoWeights = (at: Place): Notice =>
     "A row is either repeated or of known precision, and here it is said to be both.",
     "Keep repeat where a row stands for several alike, and precision where it is one observation known better or worse.",
     takesAway("precision"),
+  )
+
+export const samplingAndWeight = (other: "repeat" | "precision", at: Place): Notice =>
+  fault(
+    "two-weights",
+    "sampling",
+    at,
+    other === "repeat"
+      ? "Sampling weights say how many others a row stands for, and here it is also said how often it stands itself."
+      : "Sampling weights say how many others a row stands for, and here it is also said how well each is known.",
+    `Keep sampling where the rows were drawn with unequal chances, and ${other} otherwise.`,
+    takesAway("sampling"),
   )
 
 export const dispersionNotPositive = (text: string, at: Place): Notice =>
@@ -473,12 +486,12 @@ export const exposureNotPositive = (name: Name, at: RowsAt, row: RowName, place:
     "Leave rows without exposure out in the data with a where clause.",
   )
 
-export const weightNegative = (clause: "repeat" | "precision", name: Name, at: RowsAt, row: RowName, place: Place): Notice =>
+export const weightNegative = (clause: "repeat" | "precision" | "sampling", name: Name, at: RowsAt, row: RowName, place: Place): Notice =>
   fault(
     "weight-negative",
     clause,
     place,
-    `A ${clause} is not below 0, but ${isIn(name, "below 0", at, row)}.`,
+    `A ${clause === "sampling" ? "sampling weight" : clause} is not below 0, but ${isIn(name, "below 0", at, row)}.`,
     `Look at the column ${name} in the data.`,
   )
 
@@ -490,6 +503,60 @@ export const repeatNotWhole = (name: Name, at: RowsAt, row: RowName, place: Plac
     `A row is repeated a whole number of times, but ${isIn(name, "not whole", at, row)}.`,
     "For weights that are not counts, precision is meant.",
     { label: "Write precision instead", edits: [{ cell: null, clause: "repeat", nth: 0, says: name, keyword: "precision" }] },
+  )
+
+export const samplingErrors = (at: Place): Notice =>
+  notice(
+    "remark",
+    "sampling-errors",
+    "standard_errors",
+    at,
+    "Under sampling weights standard errors are sandwich, whatever is asked for here.",
+    "Write standard_errors sandwich, or sandwich by the unit that was drawn.",
+    writes("standard_errors", "sandwich"),
+  )
+
+const reducedLinks: Readonly<Record<string, string>> = {
+  binomial: "logit, probit, cauchit, cloglog, loglog, aranda_ordaz or stukel",
+  poisson: "log",
+  negative_binomial: "log",
+}
+
+/** Why the bias is not reduced, in words, and what would be right. */
+export const biasNotReduced = (why: NotReduced, family: string, link: string, at: Place): Notice => {
+  const says: Readonly<Record<NotReduced, readonly [string, string, Intent | null]>> = {
+    family: [
+      `The bias is reduced in fits of binomial, poisson and negative_binomial(k), and this family is ${family}.`,
+      "Take the clause away.",
+      takesAway("estimate"),
+    ],
+    link: [
+      `Under the link ${link} the penalty of ${family} has no upper limit at the edge of the means, so there is no such estimate.`,
+      `Choose the link ${reducedLinks[family] ?? "log"}.`,
+      null,
+    ],
+    dispersion: ["The bias is reduced at a dispersion of one, and another is said.", "Take the dispersion away.", takesAway("dispersion")],
+    estimated: [
+      "The bias is reduced where nothing is estimated but the coefficients, and here a parameter is.",
+      "Give the parameter a number, or the name of a dial.",
+      null,
+    ],
+    limits: ["The bias is not reduced where the mean has limits of its own.", "Take the limits away.", takesAway("limits")],
+    sampling: ["Sampling weights make no likelihood that could be penalised.", "Take one of the two clauses away.", takesAway("estimate")],
+  }
+  const [text, hint, mend] = says[why]
+  return fault("bias-not-reduced", "estimate", at, text, hint, mend)
+}
+
+/** What the penalty does under a link that is not the canonical one. */
+export const biasNotGone = (link: string, family: string, at: Place): Notice =>
+  notice(
+    "remark",
+    "bias-not-gone",
+    "estimate",
+    at,
+    `Under ${link}, which is not canonical for ${family}, the penalty keeps coefficients finite and does not take all of the first-order bias away.`,
+    null,
   )
 
 export const precisionCounts = (family: string, name: Name, at: Place): Notice =>

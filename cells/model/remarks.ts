@@ -3,6 +3,7 @@
 
 import type { Notice, Place } from "../../runtime/notice.ts"
 import type { Fit } from "../statistics/fit.ts"
+import { biasIsGone } from "../statistics/index.ts"
 import type { Problem } from "../statistics/problem.ts"
 import { isDiscrete } from "./family.ts"
 import * as say from "./notices.ts"
@@ -26,6 +27,9 @@ export function remarks(
     family === "gamma" ? 2 : family === "inverse_gaussian" ? 3 : family === "tweedie" ? (problem.family.parameters[0] ?? 1.5) : null
   if (said.exposure !== null && power !== null && said.response?.type === "column")
     notice(say.exposureAsAmount(said.exposure.name, said.response.column.name, power, said.exposure.at))
+  if (problem.sampling && said.modelErrors !== null) notice(say.samplingErrors(said.modelErrors))
+  if (problem.estimate === "bias_reduced" && said.estimate !== null && !biasIsGone(problem))
+    notice(say.biasNotGone(link.says, family, said.estimate.at))
   const [first] = problem.y
   if (said.response !== null && problem.rows > 1 && first !== undefined && problem.y.every((value) => value === first))
     notice(say.constantResponse(response.finding.label, constantSays(first, response), responsePlace(said)))

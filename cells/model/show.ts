@@ -140,14 +140,17 @@ function meanSays({ response: { label, measured, unit } }: ModelFinding): string
 
 function rowsSay({ fit, unused, problem }: ModelFinding): string {
   const counted = problem.repeat === null ? "" : `, standing for n = ${writtenCount(fit.n)}`
-  const used = `${rows(fit.rows)} used${counted}`
+  const weighted = problem.sampling ? ", weighted by sampling weights of mean one" : ""
+  const used = `${rows(fit.rows)} used${counted}${weighted}`
   if (unused.length === 0) return `${used}.`
   return `${used}; not used: ${list(unused.map(({ by, rows: count }) => `${rows(count)} where ${by}`))}.`
 }
 
-function certificateSays({ fit }: ModelFinding): string {
+function certificateSays({ fit, problem }: ModelFinding): string {
   const { certificate } = fit
   const steps = `${writtenCount(certificate.iterations)} ${certificate.iterations === 1 ? "step" : "steps"}`
+  if (problem.estimate === "bias_reduced" && certificate.class !== "gave_up")
+    return `The maximum of the likelihood penalised by ½ ln |X'WX|, reached in ${steps}; deviance and log-likelihood are the plain ones there.`
   switch (certificate.class) {
     case "interior":
       return certificate.global

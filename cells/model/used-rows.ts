@@ -25,6 +25,7 @@ type Read = {
   readonly offset: OffsetHere | null
   readonly repeat: Float64Array | null
   readonly precision: Float64Array | null
+  readonly sampling: Float64Array | null
 }
 
 /** Which rows have everything and weigh something (1), and why the others do not; each row goes by the first reason that holds. */
@@ -55,7 +56,7 @@ export async function rowsUsed(
     else without(`${name} is missing`, column.values, Number.isNaN)
     await work.checkpoint()
   }
-  const { offset, repeat, precision, response } = read
+  const { offset, repeat, precision, sampling, response } = read
   if (offset !== null) without("the offset is missing", offset.values, (value) => !Number.isFinite(value))
   for (const { pieces } of read.terms) {
     for (const piece of pieces) {
@@ -79,6 +80,7 @@ export async function rowsUsed(
   }
   if (repeat !== null) without("repeat is 0", repeat, isNought)
   if (precision !== null) without("precision is 0", precision, isNought)
+  if (sampling !== null) without("the sampling weight is 0", sampling, isNought)
   return { used, unused }
 }
 
@@ -94,7 +96,12 @@ export function weightFaults(
   said: ModelSaid,
   table: TableHere,
   used: Uint8Array,
-  of: { readonly exposure: Float64Array | null; readonly repeat: Float64Array | null; readonly precision: Float64Array | null },
+  of: {
+    readonly exposure: Float64Array | null
+    readonly repeat: Float64Array | null
+    readonly precision: Float64Array | null
+    readonly sampling: Float64Array | null
+  },
   notice: Say,
 ): void {
   const check = (
@@ -130,5 +137,11 @@ export function weightFaults(
     of.precision,
     (value) => value < 0,
     ({ name, at }, rows) => say.weightNegative("precision", name, rows, table.rowName, at),
+  )
+  check(
+    said.sampling,
+    of.sampling,
+    (value) => value < 0,
+    ({ name, at }, rows) => say.weightNegative("sampling", name, rows, table.rowName, at),
   )
 }

@@ -39,10 +39,15 @@ export type ModelSaid = {
   readonly exposure: Named | null
   readonly repeat: Named | null
   readonly precision: Named | null
+  readonly sampling: Named | null
   readonly dispersion: { readonly value: DispersionSaid; readonly at: Place } | null
   readonly standardErrors: "expected" | "observed" | "sandwich"
+  /** Where errors of the model were asked for by name; null for sandwich, and where nothing is said. */
+  readonly modelErrors: Place | null
   /** `sandwich by` this column. */
   readonly cluster: Named | null
+  /** Null where nothing is said. */
+  readonly estimate: { readonly by: "likelihood" | "bias_reduced"; readonly at: Place } | null
   /** Null where nothing is said. */
   readonly interval: { readonly by: "profile" | "wald"; readonly at: Place } | null
   readonly confidence: number
@@ -74,7 +79,7 @@ export const modelWords: Words<ModelSaid> = {
     exposure: { forms: ["NAME:exposure"], says: "Time, area or effort at risk: the mean per unit of it is linked" },
     repeat: { forms: ["NAME:repeat"], says: "How many times each row stands" },
     precision: { forms: ["NAME:precision"], says: "Known precision of each row: the variance is divided by it" },
-    sampling: { forms: ["NAME:weight"], says: "Sampling weights", later: true },
+    sampling: { forms: ["NAME:weight"], says: "Sampling weights: the estimate is weighted, and standard errors are sandwich" },
     limits: {
       forms: ["BOUND+estimate:lowest to BOUND+estimate:highest"],
       says: "Lowest and highest possible mean of a binomial response, where they are not 0 and 1",
@@ -89,7 +94,10 @@ export const modelWords: Words<ModelSaid> = {
       forms: ["expected", "observed", "sandwich", "sandwich by NAME:cluster"],
       says: "From the expected or the observed information, or the sandwich, which trusts the mean only; by clusters where they are named",
     },
-    estimate: { forms: ["likelihood", "bias_reduced"], says: "How the coefficients are estimated", later: true },
+    estimate: {
+      forms: ["likelihood", "bias_reduced"],
+      says: "By maximum likelihood, or by a penalised one that reduces the bias and keeps coefficients finite",
+    },
     interval: { forms: ["profile", "wald"], says: "How the intervals of the coefficients are had" },
     confidence: { forms: ["NUMBER:level"], says: "The level of the intervals, 95% unless said otherwise" },
   },
@@ -113,15 +121,20 @@ export const modelWords: Words<ModelSaid> = {
       exposure: named(one("exposure"), "exposure"),
       repeat: named(one("repeat"), "repeat"),
       precision: named(one("precision"), "precision"),
+      sampling: named(one("sampling"), "weight"),
       dispersion: dispersionSaid(one("dispersion"), found),
       standardErrors: errorsSaid(one("standard_errors")),
+      modelErrors: modelErrorsSaid(one("standard_errors")),
       cluster: named(one("standard_errors"), "cluster"),
+      estimate: estimateSaid(one("estimate")),
       interval: intervalSaid(one("interval")),
       confidence: confidenceSaid(one("confidence"), found),
       clauses: Object.fromEntries(statement.clauses.map((clause) => [clause.keyword, clause])),
     }
     together(said, found)
     if (said.repeat !== null && said.precision !== null) found.push(say.twoWeights(wholeClause(one("precision"), statement)))
+    const other = said.repeat !== null ? "repeat" : said.precision !== null ? "precision" : null
+    if (said.sampling !== null && other !== null) found.push(say.samplingAndWeight(other, wholeClause(one("sampling"), statement)))
     return { said, notices: [...notices, ...found] }
   },
   names(said): Names {
@@ -160,7 +173,7 @@ export const isOwnName = (name: string): boolean => !Object.hasOwn(links, name)
 
 /** Every column that a clause names outside of the offset, with the clause it stands in. */
 export function columnsOf(said: ModelSaid): readonly (Named & { readonly clause: string })[] {
-  const { response, predictor, exposure, repeat, precision, cluster } = said
+  const { response, predictor, exposure, repeat, precision, sampling, cluster } = said
   const of = (clause: string, ...columns: readonly (Named | null)[]) =>
     columns.flatMap((column) => (column === null ? [] : [{ ...column, clause }]))
   return [
@@ -173,6 +186,7 @@ export function columnsOf(said: ModelSaid): readonly (Named & { readonly clause:
     ...of("exposure", exposure),
     ...of("repeat", repeat),
     ...of("precision", precision),
+    ...of("sampling", sampling),
     ...of("standard_errors", cluster),
   ]
 }
@@ -226,6 +240,14 @@ function dispersionSaid(matched: Matched | null, notices: Notice[]): ModelSaid["
 
 const errorsSaid = (matched: Matched | null): ModelSaid["standardErrors"] =>
   matched === null ? "expected" : ((["expected", "observed"] as const)[matched.form] ?? "sandwich")
+
+function modelErrorsSaid(matched: Matched | null): Place | null {
+  if (matched === null || matched.form < 0 || matched.form > 1) return null
+  return { clause: matched.clause, from: 1, to: 2 }
+}
+
+const estimateSaid = (matched: Matched | null): ModelSaid["estimate"] =>
+  matched === null ? null : { by: matched.form === 1 ? "bias_reduced" : "likelihood", at: { clause: matched.clause, from: 1, to: 2 } }
 
 const intervalSaid = (matched: Matched | null): ModelSaid["interval"] =>
   matched === null ? null : { by: matched.form === 0 ? "profile" : "wald", at: { clause: matched.clause, from: 1, to: 2 } }

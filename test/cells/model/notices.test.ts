@@ -105,8 +105,6 @@ describe("faults of the statement", () => {
   it.each([
     ["limits 0 to 0.9", "clause/not-available-yet"],
     ["control frost = 0", "clause/not-available-yet"],
-    ["sampling hours", "clause/not-available-yet"],
-    ["estimate bias_reduced", "clause/not-available-yet"],
   ])("%s is not available yet", async (clause, code) => {
     expect(codes(await finding(`${counts}\n${clause}`, beds))).toEqual([code])
   })
@@ -342,6 +340,60 @@ describe("warnings and remarks", () => {
     expect(told(await finding("response hours\nfamily gamma\nlink log\npredictor frost\nexposure pots", beds))).toEqual([
       'remark exposure-as-amount at "pots": Fitted with the whole of hours, whose variance goes with the square of pots.',
     ])
+  })
+
+  it("says where sampling weights cannot be, and what they mean for errors", async () => {
+    const with_ = async (more: string): Promise<readonly string[]> => told(await finding(`${counts}\n${more}`, beds))
+    expect(await with_("repeat pots\nsampling hours")).toEqual([
+      'fault two-weights at "sampling hours": Sampling weights say how many others a row stands for, and here it is also said how often it stands itself.',
+    ])
+    expect(await with_("precision pots\nsampling hours")).toEqual([
+      'fault two-weights at "sampling hours": Sampling weights say how many others a row stands for, and here it is also said how well each is known.',
+    ])
+    expect(await with_("sampling hours\nstandard_errors observed")).toEqual([
+      'remark sampling-errors at "observed": Under sampling weights standard errors are sandwich, whatever is asked for here.',
+    ])
+    expect(await with_("sampling hours\nstandard_errors sandwich by half")).toEqual([])
+    const odd = { ...beds, hours: number(5, -1, 7, 6, 0, 7) }
+    expect(told(await finding(`${counts}\nsampling hours`, odd))).toEqual([
+      'fault weight-negative at "hours": A sampling weight is not below 0, but hours is −1 in row 11 of terrace.csv.',
+    ])
+    const none = await finding(`${counts}\nsampling hours`, { ...beds, hours: number(5, 4, 7, 6, 0, null) })
+    expect(none.found?.parts.fit.unused).toEqual([
+      { by: "hours is missing", rows: 1 },
+      { by: "the sampling weight is 0", rows: 1 },
+    ])
+  })
+
+  it.each([
+    [
+      "response buds out of pots\nfamily binomial\nlink log\npredictor frost",
+      "Under the link log the penalty of binomial has no upper limit at the edge of the means, so there is no such estimate.",
+    ],
+    [
+      "response buds\nfamily gamma\nlink log\npredictor frost",
+      "The bias is reduced in fits of binomial, poisson and negative_binomial(k), and this family is gamma.",
+    ],
+    [
+      "response buds\nfamily poisson\nlink log\npredictor frost\ndispersion pearson",
+      "The bias is reduced at a dispersion of one, and another is said.",
+    ],
+    [
+      "response buds\nfamily poisson\nlink log\npredictor frost\nsampling hours",
+      "Sampling weights make no likelihood that could be penalised.",
+    ],
+  ])("says why the bias is not reduced: %j", async (clauses, says) => {
+    expect(told(await finding(`${clauses}\nestimate bias_reduced`, beds))).toEqual([`fault bias-not-reduced at "bias_reduced": ${says}`])
+  })
+
+  it("says where the bias is not gone, and nothing where it is", async () => {
+    const shares = (link: string) =>
+      finding(`response buds out of pots\nfamily binomial\nlink ${link}\npredictor frost\nestimate bias_reduced`, beds)
+    expect(told(await shares("cloglog"))).toEqual([
+      'remark bias-not-gone at "bias_reduced": Under cloglog, which is not canonical for binomial, the penalty keeps coefficients finite and does not take all of the first-order bias away.',
+    ])
+    expect(told(await shares("logit"))).toEqual([])
+    expect(codes(await finding(`${counts}\nestimate likelihood`, beds))).toEqual([])
   })
 
   it("says that sandwich errors have no profile, only where profiles were asked for", async () => {

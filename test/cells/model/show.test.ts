@@ -141,6 +141,13 @@ describe("what qualifies a finding", () => {
     expect(sentences(outcome, "quiet")[0]?.startsWith(`${says} `)).toBe(true)
   })
 
+  it("says what was maximised, and by what rows were weighted", async () => {
+    const reduced = await finding("response buds out of pots\nfamily binomial\nlink logit\npredictor frost\nestimate bias_reduced", beds)
+    expect(sentences(reduced, "quiet")[0]).toContain("The maximum of the likelihood penalised by ½ ln |X'WX|")
+    const sampled = await finding("response buds\nfamily poisson\nlink log\npredictor frost\nsampling hours", beds)
+    expect(sentences(sampled, "quiet")[0]).toContain("8 rows used, weighted by sampling weights of mean one.")
+  })
+
   it("says where there may be another maximum", async () => {
     const outcome = await finding("response buds\nfamily normal\nlink log\npredictor frost", beds)
     expect(sentences(outcome, "quiet")[0]).toContain("with this family and link there may be others")
