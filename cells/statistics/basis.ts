@@ -5,7 +5,7 @@
 import type { Design } from "./design.ts"
 import { type WrittenColumn, writtenColumns } from "./design.ts"
 import { productError, type Wide, wide, wideDivide, wideDot, wideRoot, wideSubtract } from "./double-double.ts"
-import { Factor, gramOf, Layout, pacedSums, rangeSums } from "./gram.ts"
+import { Factor, type Gram, gramOf, Layout, pacedSums, rangeSums } from "./gram.ts"
 import type { Pace } from "./scoring.ts"
 
 /** Columns of a factor term in a basis: as in the design, with columns numbered within the basis. */
@@ -50,6 +50,8 @@ export type Change =
 
 export type Basis = Shape & {
   readonly layout: Layout
+  /** X'X without weights, where it was made on the way. */
+  readonly products?: Gram
   readonly change: Change
   /** The design's columns written out, for orthogonal bases only: η is then summed from them with 32 digits. */
   readonly written: readonly WrittenColumn[] | null
@@ -81,8 +83,9 @@ export async function basisOf(
   if (pace.due(20 * design.rows * (design.plain.length + design.blocks.length))) await pace.rest()
   if (first) {
     const sums = await pacedSums(first.layout, new Float64Array(design.rows).fill(1), new Float64Array(design.rows), pace)
-    const most = Factor.of(gramOf(first.layout, sums))?.inflation() ?? Number.POSITIVE_INFINITY
-    if (most < mostInflation) return { basis: first, dependences: [] }
+    const products = gramOf(first.layout, sums)
+    const most = Factor.of(products)?.inflation() ?? Number.POSITIVE_INFINITY
+    if (most < mostInflation) return { basis: { ...first, products }, dependences: [] }
   }
   if (design.rows * p <= mostWritten) {
     const written = writtenColumns(design)

@@ -2,8 +2,8 @@
 // fitting of most models starts.
 
 import type { Basis, Shape } from "./basis.ts"
-import { Layout } from "./gram.ts"
-import type { Responses } from "./rows.ts"
+import { blockRows, Layout } from "./gram.ts"
+import { devianceAtOneMean, type Responses } from "./rows.ts"
 import { Equations, maximum, type Pace, type Point } from "./scoring.ts"
 
 export type NullModel = {
@@ -16,9 +16,14 @@ export type NullModel = {
 export async function nullModel(responses: Responses, pace: Pace, phi: (point: Point) => number): Promise<NullModel | null> {
   const { family, link, y, a, offset, scale, rows } = responses
   let [sum, total] = [0, 0]
-  for (let i = 0; i < rows; i++) {
-    sum += (a[i] as number) * (y[i] as number)
-    total += (a[i] as number) * (scale ? (scale[i] as number) : 1)
+  for (let from = 0; from < rows; from += blockRows) {
+    let [part, size] = [0, 0]
+    for (let i = from; i < Math.min(rows, from + blockRows); i++) {
+      part += (a[i] as number) * (y[i] as number)
+      size += (a[i] as number) * (scale ? (scale[i] as number) : 1)
+    }
+    sum += part
+    total += size
   }
   const mean = sum / total
   // Counts that are all nought, or shares that are all at one end: the deviance tends to 0 there, whatever the offsets are.
@@ -26,6 +31,12 @@ export async function nullModel(responses: Responses, pace: Pace, phi: (point: P
   if (family.name === "binomial" && mean === 1 && reaches(responses, 1)) return { eta: link.eta(1), deviance: 0 }
   let eta = link.eta(mean)
   const plain = offset === null && scale === null
+  if (plain && eta > responses.low && eta < responses.high) {
+    // Where all rows share one mean, the score is 0 at their own mean, whatever family and link are.
+    if (pace.due(30 * rows)) await pace.rest()
+    const deviance = devianceAtOneMean(responses, mean, eta)
+    return Number.isFinite(deviance) ? { eta, deviance } : null
+  }
   if (!plain || !(eta > responses.low && eta < responses.high)) {
     let [lowest, highest] = [Number.POSITIVE_INFINITY, Number.NEGATIVE_INFINITY]
     let middle = 0

@@ -174,6 +174,33 @@ export function anyRows(of: Responses, information: Information, from: number, t
   return Number.isFinite(deviance)
 }
 
+/** The deviance where all rows have one mean: what differs between them is the response alone. */
+export function devianceAtOneMean(of: Responses, mean: number, eta: number): number {
+  const { family, link, y, a, rows, logY } = of
+  const rest = link.complement === null || mean < 0.5 ? 1 - mean : link.complement(eta)
+  const counts = family.name === "poisson"
+  const [none, all] = [family.unitDeviance(0, mean, rest), family.unitDeviance(1, mean, rest)]
+  let deviance = 0
+  for (let from = 0; from < rows; from += onePart) {
+    let part = 0
+    for (let i = from; i < Math.min(rows, from + onePart); i++) {
+      const own = a[i] as number
+      if (own === 0) continue
+      const response = y[i] as number
+      if (response === 0) part += own * none
+      else if (response === 1) part += own * all
+      else if (logY === null) part += own * family.unitDeviance(response, mean, rest)
+      else if (counts) part += own * 2 * halfDeviance(response, response - mean, response + mean, (logY[i] as number) - eta)
+      else part += (own * 2 * halfDeviance(mean, mean - response, response + mean, eta - (logY[i] as number))) / mean
+    }
+    deviance += part
+  }
+  return deviance
+}
+
+/** Rows that are added up before they are added to the whole, so that little is lost. */
+const onePart = 128
+
 /** The binomial unit deviance; where all trials went one way it is a single logarithm. */
 function shareDeviance(y: number, mu: number, rest: number): number {
   if (y === 1) return -2 * (mu < 0.5 ? log(mu) : log1p(-rest))

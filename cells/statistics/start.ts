@@ -24,6 +24,7 @@ export async function startingPoint(
     tries.push(basisCoefficients(basis, beta))
   }
   const point = equations.point()
+  if (tries.length === 1 && none && constant >= 0 && nullPoint(equations, point, tries[0] as Float64Array, none)) return point
   for (const gamma of tries) {
     point.gamma.set(gamma)
     point.gammaLow.fill(0)
@@ -49,6 +50,42 @@ export async function startingPoint(
     }
   }
   return null
+}
+
+/**
+ * Fills a point at the null model without a pass: where all rows weigh the same, X'WX is X'X but for a factor. False where they do not, or where
+ * X'X is not known.
+ */
+function nullPoint(equations: Equations, point: Point, gamma: Float64Array, none: NullModel): boolean {
+  const { basis, responses } = equations
+  const { family, link, y, a, offset, scale, rows, low, high } = responses
+  const own = a[0] as number
+  if (!basis.products || offset !== null || scale !== null || !(none.eta > low && none.eta < high)) return false
+  if (a.some((each) => each !== own)) return false
+  const mean = link.mean(none.eta)
+  const rest = link.complement === null || mean < 0.5 ? 1 - mean : link.complement(none.eta)
+  const v = family.variance(mean, rest)
+  const ratio = link.slope(none.eta) / v
+  const weight = own * ratio * ratio * v
+  if (!(v > 0) || !(weight > 0) || !Number.isFinite(weight)) return false
+  const { state } = point
+  state.eta.fill(none.eta)
+  state.etaLow?.fill(0)
+  state.mu.fill(mean)
+  state.weight.fill(weight)
+  let squares = 0
+  for (let i = 0; i < rows; i++) {
+    const residual = (y[i] as number) - mean
+    squares += residual * residual
+    state.score[i] = own * residual * ratio
+  }
+  point.gamma.set(gamma)
+  point.gammaLow.fill(0)
+  point.deviance = none.deviance
+  point.pearson = (own * squares) / v
+  point.score = equations.scored(state.score)
+  point.gram = basis.products.multiplied(weight)
+  return true
 }
 
 /** Responses moved off the ends of the range, linked, and regressed on the columns with the weights they would have. */
