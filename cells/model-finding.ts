@@ -26,6 +26,8 @@ export const fitPart = "fit"
 export type IntervalsFound = {
   readonly by: "profile" | "wald"
   readonly ends: readonly (ProfileInterval | null)[] | null
+  /** Of what was estimated beside the coefficients, always by profile; null until they have been found. */
+  readonly parameters: readonly (ProfileInterval | null)[] | null
 }
 
 /** The whole of what a model finds. */

@@ -57,6 +57,8 @@ function verbOf({ problem }: ModelFinding): Verb {
   const { name, parameters } = problem.link
   const multiplies = (what: string, sign: 1 | -1 = 1): Verb => ({ says: "multiplies", what: `${what} by`, multiplies: true, sign })
   const adds = (what: string): Verb => ({ says: "adds", what: `to ${what}`, multiplies: false, sign: 1 })
+  // Between limits it is not the mean that a coefficient multiplies or adds to.
+  if (problem.link.limits !== undefined) return adds("the linear predictor")
   switch (name) {
     case "log":
       return multiplies(problem.exposure === null ? "the mean" : "the mean per unit of exposure")

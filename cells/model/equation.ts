@@ -16,7 +16,16 @@ export function equation(found: ModelFinding): Equation {
   const right = rightSide(found)
   // A link of the user's own is called by its name; its cell has the formula.
   const own = found.problem.link.own === undefined ? linkFormula(found.link) : `${found.link}(μ)`
-  const text = `${own.replaceAll("μ", unitsOfMean(found) ? `(μ/${found.exposure?.name})` : "μ")} = ${right.text}`
+  const { limits } = found.problem.link
+  const [low, high] = limits === undefined ? ["0", "1"] : [written(limits.low, 6), written(limits.high, 6)]
+  const mean = unitsOfMean(found)
+    ? `(μ/${found.exposure?.name})`
+    : limits === undefined
+      ? "μ"
+      : limits.low === 0
+        ? `(μ/${high})`
+        : `((μ − ${low})/(${high} − ${low}))`
+  const text = `${own.replaceAll("μ", mean)} = ${right.text}`
   return { formula: row(leftSide(found), sign("="), right.formula), text }
 }
 
@@ -87,7 +96,12 @@ const unitsOfMean = ({ exposure, problem }: ModelFinding): boolean => exposure !
 function leftSide(found: ModelFinding): Formula {
   const mu = name("μ")
   const mean: Formula = unitsOfMean(found) ? { type: "fraction", above: mu, below: word(found.exposure?.name ?? "") } : mu
-  return linkTree(found.problem.link, mean)
+  const { limits } = found.problem.link
+  if (limits === undefined) return linkTree(found.problem.link, mean)
+  // Between limits it is the share of the way from the one to the other that is linked.
+  const above = limits.low === 0 ? mean : row(mean, sign("−"), decimal(limits.low))
+  const width = limits.low === 0 ? decimal(limits.high) : row(decimal(limits.high), sign("−"), decimal(limits.low))
+  return linkTree(found.problem.link, { type: "bracket", of: { type: "fraction", above, below: width } })
 }
 
 function rightSide(found: ModelFinding): Equation {

@@ -5,7 +5,6 @@ import type { Input, Outcome, Work } from "../../runtime/kind.ts"
 import { nearest } from "../../runtime/nearest.ts"
 import type { Notice } from "../../runtime/notice.ts"
 import type { Name, Value } from "../../runtime/value.ts"
-import type { Bound } from "../language/form.ts"
 import { variablesOf } from "../language/predictor.ts"
 import { canonicalLink, families, links, parameterRange } from "../language/vocabulary.ts"
 import { fitPart, type Label, type ModelFinding, type ModelFound, modelIn } from "../model-finding.ts"
@@ -15,6 +14,7 @@ import type { FamilySpec, LinkSpec, Problem, Term, Variable } from "../statistic
 import type { Column } from "../table/column.ts"
 import { isDiscrete } from "./family.ts"
 import { withIntervals } from "./intervals.ts"
+import { controlNotices, controlOf, controlRows, limitsOf, numberOf } from "./limits.ts"
 import * as say from "./notices.ts"
 import { offsetFinding, offsetOf } from "./offset.ts"
 import { ownLinkOf } from "./own-link.ts"
@@ -48,6 +48,8 @@ export async function found(said: ModelSaid, inputs: Inputs, work: Work): Promis
   const terms = predictor.terms as readonly Term[]
   const predictors = predictorColumns(said, table, notice)
   const offset = offsetOf(said, table, inputs, notice)
+  const limits = limitsOf(said, inputs, notice)
+  const isControl = controlOf(said, table, inputs, notice)
   const exposure = said.exposure === null ? null : numbersOf(said.exposure, "an exposure", table, notice, "exposure")
   const repeat = said.repeat === null ? null : numbersOf(said.repeat, "repeat", table, notice, "repeat")
   const precision = said.precision === null ? null : numbersOf(said.precision, "a precision", table, notice, "precision")
@@ -55,10 +57,12 @@ export async function found(said: ModelSaid, inputs: Inputs, work: Work): Promis
   await work.checkpoint()
   if (response === null || link === null || familySpec === null || hasFault(notices)) return nothing()
 
-  const choice = await rowsUsed(said, table, { response, terms, predictors, offset, repeat, precision, sampling }, notice, work)
+  const choice = await rowsUsed(said, table, { response, terms, predictors, offset, repeat, precision, sampling, isControl }, notice, work)
   await work.checkpoint()
-  for (const fault of response.faults(choice.used)) notice(fault)
-  weightFaults(said, table, choice.used, { exposure, repeat, precision, sampling }, notice)
+  // A row of no dose has a response and weights like any other.
+  const either = choice.control === null ? choice.used : choice.used.map((is, row) => is | ((choice.control as Uint8Array)[row] as number))
+  for (const fault of response.faults(either)) notice(fault)
+  weightFaults(said, table, either, { exposure, repeat, precision, sampling }, notice)
   const rows = choice.used.reduce((count, is) => count + is, 0)
   if (hasFault(notices)) return nothing()
   if (rows === 0) {
@@ -73,9 +77,12 @@ export async function found(said: ModelSaid, inputs: Inputs, work: Work): Promis
   const variables: Readonly<Record<Name, Variable>> = Object.fromEntries(
     variablesOf(predictor).map(({ name, at }) => [name, variableOf(name, predictors.get(name) as Column, kept, at, notice)]),
   )
+  const control = choice.control === null ? null : controlRows(choice.control, response, repeat, precision)
+  if (control !== null && said.control !== null) controlNotices(control, limits, said.control.at, notice)
+  if (hasFault(notices)) return nothing()
   const problem: Problem = {
     family: familySpec,
-    link: link.spec,
+    link: limits === null ? link.spec : { ...link.spec, limits },
     intercept: predictor.intercept,
     terms: terms.map(({ pieces, says }) => ({ says, pieces: pieces.map(({ variable, as, setting }) => ({ variable, as, setting })) })),
     variables,
@@ -88,6 +95,7 @@ export async function found(said: ModelSaid, inputs: Inputs, work: Work): Promis
     offset: only(offset === null ? null : offset.values),
     exposure: only(exposure),
     cluster: said.cluster === null ? null : clusterCodes(table.columns.get(said.cluster.name) as Column, kept),
+    control,
     dispersion: said.dispersion?.value ?? (isDiscrete(family) ? "one" : "pearson"),
     standardErrors: sampling === null ? said.standardErrors : "sandwich",
     ...(said.estimate?.by === "bias_reduced" ? { estimate: "bias_reduced" } : {}),
@@ -104,11 +112,13 @@ export async function found(said: ModelSaid, inputs: Inputs, work: Work): Promis
     notice(fitted.why === "no_rows" ? say.noRows(table.name, choice.unused, data.at) : say.noFit(fitted.why, fitted.detail))
     return nothing()
   }
-  fitNotices(said, problem, fitted.fit, (row) => table.rowName(kept[row] as number), notice)
+  // From here on estimated parameters have their values.
+  const settled: Problem = { ...problem, family: fitted.fit.family, link: fitted.fit.link }
+  fitNotices(said, settled, fitted.fit, (row) => table.rowName(kept[row] as number), notice)
   const finding: ModelFinding = {
-    problem,
+    problem: settled,
     fit: fitted.fit,
-    link: link.says,
+    link: (settled.link.estimated?.length ?? 0) > 0 ? estimatedSays(settled.link) : link.says,
     response: response.finding,
     labels: labelsOf(table, [...Object.keys(variables), ...(offset === null ? [] : [...offset.columns])]),
     offset: offset === null ? null : offsetFinding(offset, table, kept),
@@ -148,38 +158,40 @@ function linkOf(model: ModelSaid, family: string, inputs: Inputs, notice: Say): 
     const spec = ownLinkOf(said, family, model, inputs, notice)
     return spec === null ? null : { spec, says: said.name, chosen: true }
   }
-  const numbers = parametersOf(said, "link", inputs, notice)
-  if (numbers === null) return null
-  const says = numbers.length === 0 ? said.name : `${said.name}(${numbers.join(", ")})`
-  return { spec: { name: said.name, parameters: numbers }, says, chosen: true }
+  const spec = parametersOf(said, "link", inputs, notice)
+  if (spec === null) return null
+  const says = spec.parameters.length === 0 ? said.name : `${said.name}(${spec.parameters.join(", ")})`
+  return { spec, says, chosen: true }
 }
+
+/** An estimated link as a clause would say it, its numbers to four digits. */
+const estimatedSays = ({ name, parameters, estimated }: LinkSpec): string =>
+  `${name}(${parameters.map((value, k) => (estimated?.includes(k) ? Number(value.toPrecision(4)) : value)).join(", ")})`
 
 /** The family with numbers for its dials; null once a fault was said. */
 function familyOf(said: CallSaid, inputs: Inputs, notice: Say): FamilySpec | null {
-  const parameters = parametersOf(said, "family", inputs, notice)
-  return parameters === null ? null : { name: said.name, parameters }
+  return parametersOf(said, "family", inputs, notice)
 }
 
-/** Numbers for what stands in the brackets; null once a fault was said. */
-function parametersOf(said: CallSaid, clause: "family" | "link", inputs: Inputs, notice: Say): readonly number[] | null {
+/** Numbers for what stands in the brackets, and the places of what is estimated; null once a fault was said. */
+function parametersOf(said: CallSaid, clause: "family" | "link", inputs: Inputs, notice: Say): FamilySpec | null {
   const words = clause === "family" ? families[said.name]?.parameters : links[said.name]?.parameters
   const numbers: number[] = []
+  const estimated: number[] = []
   said.parameters.forEach((bound, k) => {
-    const number = parameterOf(bound, clause, inputs, notice)
+    if (bound.type === "estimate") {
+      // Where its search starts is for the fit to say.
+      estimated.push(k)
+      numbers.push(said.name === "tweedie" ? 1.5 : 1)
+      return
+    }
+    const number = numberOf(bound, clause, inputs, notice)
     if (number === null) return
     if (parameterRange(said.name).holds(number)) numbers.push(number)
     else notice(say.parameterOutside(clause, said.name, words?.[k] ?? "the parameter", number, bound.type === "cell" ? bound.at : said.at))
   })
-  return numbers.length === said.parameters.length ? numbers : null
-}
-
-function parameterOf(bound: Bound, clause: "family" | "link", inputs: Inputs, notice: Say): number | null {
-  if (bound.type === "number") return bound.value
-  if (bound.type !== "cell") return null
-  const value = inputs.get(bound.name)?.value
-  if (typeof value === "number" && Number.isFinite(value)) return value
-  notice(say.notANumber(bound.name, clause, bound.at))
-  return null
+  if (numbers.length !== said.parameters.length) return null
+  return estimated.length === 0 ? { name: said.name, parameters: numbers } : { name: said.name, parameters: numbers, estimated }
 }
 
 /** The columns of the predictor that can stand in one; texts, and calls of categories, are faults. */

@@ -4,7 +4,7 @@
 import type { Outcome, Work } from "../../runtime/kind.ts"
 import type { Notice } from "../../runtime/notice.ts"
 import type { IntervalsFound, ModelFinding, ModelFound } from "../model-finding.ts"
-import { collapsedRatios, type ProfileInterval, profileIntervals, profilesAreLight } from "../statistics/index.ts"
+import { collapsedRatios, type ProfileInterval, parameterIntervals, profileIntervals, profilesAreLight } from "../statistics/index.ts"
 import * as say from "./notices.ts"
 import type { ModelSaid } from "./words.ts"
 
@@ -23,19 +23,23 @@ export async function withIntervals(
   })
   const { by, remark } = intervalsBy(said, finding)
   const own = remark === null ? [] : [remark]
-  const soFar = outcome({ by, ends: by === "wald" ? waldEnds(finding) : null }, own)
+  const none = fit.parameters.length === 0 ? [] : null
+  const soFar = outcome({ by, ends: by === "wald" ? waldEnds(finding) : null, parameters: none }, own)
   const hasErrors = fit.coefficients.some(({ ratio }) => ratio !== null)
-  if (by === "wald" && (!hasErrors || problem.standardErrors === "sandwich")) return soFar
+  if (by === "wald" && none !== null && (!hasErrors || problem.standardErrors === "sandwich")) return soFar
   if (!(await work.late(soFar))) return soFar
   const pause = () => work.checkpoint()
+  const parameters = await parameterIntervals(problem, fit, pause)
+  if (by === "wald" && (!hasErrors || problem.standardErrors === "sandwich"))
+    return outcome({ by, ends: waldEnds(finding), parameters }, own)
   const collapsed = (await collapsedRatios(problem, fit, pause)).filter((j) => misleads(finding, j))
   const names = (places: readonly number[]): readonly string[] => places.map((j) => fit.coefficients[j]?.of ?? "")
   if (collapsed.length > 0) own.push(say.waldCollapses(names(collapsed), said.predictorAt))
-  if (by === "wald") return outcome({ by, ends: waldEnds(finding) }, own)
+  if (by === "wald") return outcome({ by, ends: waldEnds(finding), parameters }, own)
   const ends = await profileIntervals(problem, fit, pause)
   const disagree = disagreeing(finding, ends)
   if (disagree.length > 0) own.push(say.waldDisagrees(names(disagree), problem.confidence, said.predictorAt))
-  return outcome({ by, ends }, own)
+  return outcome({ by, ends, parameters }, own)
 }
 
 /** Beyond this ratio a test says the same whether the ratio falls or not. */

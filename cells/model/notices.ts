@@ -144,15 +144,6 @@ export const notAvailableYet = (clause: "family" | "link", what: string, instead
     `It belongs to the language and comes with a later version; until then there are ${list(instead)}.`,
   )
 
-export const estimateNotYet = (clause: "family" | "link", name: string, at: Place): Notice =>
-  fault(
-    "not-available-yet",
-    clause,
-    at,
-    `Estimating the parameter of the ${clause} ${name} is not available yet.`,
-    `Write a number, such as ${exampleOf(name)}, or the name of a dial.`,
-  )
-
 const exampleOf = (name: string): string =>
   ({ negative_binomial: "negative_binomial(2)", tweedie: "tweedie(1.5)", stukel: "stukel(0.2, 0.2)" })[name] ?? `${name}(0.5)`
 
@@ -255,6 +246,86 @@ export const linkNotChosen = (link: string, family: string): Notice =>
 
 export const notANumber = (name: Name, clause: string, at: Place): Notice =>
   fault("not-a-number", clause, at, `${name} is not a number here.`, "Name a dial or a value that is a finite number.")
+
+// Limits of the mean.
+
+export const limitsNotOfFamily = (family: string, at: Place): Notice =>
+  fault(
+    "limits-not-of-family",
+    "limits",
+    at,
+    `Limits are of a share, and the means of the family ${family} are none.`,
+    "Take the limits away, or choose family binomial.",
+    takesAway("limits"),
+  )
+
+export const limitsOutside = (low: number, high: number, at: Place): Notice =>
+  fault(
+    "limits-outside",
+    "limits",
+    at,
+    low >= high
+      ? `The lower limit is below the upper one, and ${numberSays(low)} is not below ${numberSays(high)}.`
+      : `Limits of a share lie between 0 and 1, and ${numberSays(low < 0 ? low : high)} does not.`,
+    "Write such as limits 0.05 to 1, or limits estimate to 1.",
+  )
+
+export const controlWithoutLimits = (at: Place): Notice =>
+  fault(
+    "control-without-limits",
+    "control",
+    at,
+    "The mean of rows of no dose is the lower limit, and no limits are said.",
+    "Write limits estimate to 1 to estimate it, or a number in its place.",
+    writes("limits", "estimate to 1"),
+  )
+
+export const controlWithSampling = (at: Place): Notice =>
+  fault(
+    "control-with-sampling",
+    "control",
+    at,
+    "Rows of no dose weigh by their trials, and sampling weights have no place among them yet.",
+    "Take control or sampling away.",
+    takesAway("control"),
+  )
+
+export const controlWantsTruth = (is: string, at: Place): Notice =>
+  fault(
+    "control-wants-truth",
+    "control",
+    at,
+    `Which rows have no dose is a question, and this is a ${is}.`,
+    "Write a comparison such as control dose = 0.",
+  )
+
+export const noControlRows = (at: Place): Notice =>
+  notice("warning", "no-control-rows", "control", at, "No row used is one of no dose.", "Take control away, or look at what it asks.")
+
+/** A dose of nothing cannot have been given to rows that all have the lower limit for their mean. */
+export const controlAboveLimit = (low: number, at: Place): Notice =>
+  fault(
+    "control-above-limit",
+    "control",
+    at,
+    `With a lower limit of ${numberSays(low)} no row of no dose can have ${low === 0 ? "a success" : "a failure"}, but some have.`,
+    "Write limits estimate to 1, so that the lower limit comes from the data.",
+    writes("limits", "estimate to 1"),
+  )
+
+/** A parameter that was estimated and ended where it can go no farther. */
+export const parameterAtEnd = (of: string, clause: "family" | "link" | "limits", value: number | null): Notice =>
+  notice(
+    "warning",
+    "parameter-at-end",
+    clause,
+    heading,
+    of === "k"
+      ? "The likelihood grows with k without end: these counts vary no more than Poisson's, and the fit is that of the Poisson family."
+      : `The best ${of} is ${value === null ? "at infinity" : written(value, 6)}, at the end of what it can be, so it has no standard error; those of the coefficients take it as given.`,
+    of === "k" ? "Write family poisson." : null,
+    of === "k" ? writes("family", "poisson") : null,
+  )
 
 // The table and its columns.
 

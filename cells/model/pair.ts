@@ -34,7 +34,6 @@ export function familySaid(slot: CallSlot, statement: Statement, notices: Notice
     notices.push(say.parametersOff("family", known.name, known.parameters, at))
     return null
   }
-  if (parameters.some(({ type }) => type === "estimate")) notices.push(say.estimateNotYet("family", known.name, at))
   if (parameters.some(({ type }) => type === "infinity")) notices.push(say.parameterInfinite("family", known.name, at))
   return { name: known.name, parameters, at }
 }
@@ -61,7 +60,6 @@ export function linkSaid(slot: CallSlot, family: CallSaid | null, statement: Sta
     notices.push(say.parametersOff("link", known.name, known.parameters, at))
     return null
   }
-  if (parameters.some(({ type }) => type === "estimate")) notices.push(say.estimateNotYet("link", known.name, at))
   if (parameters.some(({ type }) => type === "infinity")) notices.push(say.parameterInfinite("link", known.name, at))
   if (family !== null && !legal.includes(known.name)) {
     const plain = legal.filter((name) => links[name]?.parameters.length === 0)

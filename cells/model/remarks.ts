@@ -77,7 +77,11 @@ export function fitNotices(said: ModelSaid, problem: Problem, of: Fit, rowName: 
       ),
     )
   if (certificate.class === "gave_up") notice(say.gaveUp(certificate.iterations, certificate.scaledScore))
-  if (certificate.class === "boundary") {
+  of.parameters.forEach(({ of: name, end, value }) => {
+    const clause = name === "k" || name === "p" ? "family" : name.endsWith("limit") ? "limits" : "link"
+    if (end !== 0) notice(say.parameterAtEnd(name, clause, value))
+  })
+  if (certificate.class === "boundary" && (certificate.evidence?.edge.length ?? 0) > 0) {
     notice(
       say.atBoundary(
         (certificate.evidence?.edge ?? []).map(({ row }) => row),

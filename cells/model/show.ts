@@ -19,6 +19,7 @@ export function shown(whole: ModelFound): readonly Block[] {
     ...blocks,
     { type: "formula", ...equation(found) },
     coefficients(found, whole.intervals),
+    ...(found.fit.parameters.length === 0 ? [] : [parameters(found, whole.intervals)]),
     { type: "sentence", text: fitSays(found), tone: "plain" },
     { type: "sentence", text: `${meanSays(found)} ${rowsSay(found)} ${certificateSays(found)} ${errorsSay(found)}`, tone: "quiet" },
   ]
@@ -46,6 +47,47 @@ function coefficients(found: ModelFinding, intervals: IntervalsFound): TableBloc
     rows: found.fit.coefficients.map((of, j) => coefficientRow(of, j + first, intervals.ends?.[j] ?? null)),
     folded: false,
   }
+}
+
+/** What was estimated beside the coefficients; beside k stands 1/k, in which it is nearly normal and has a Poisson end. */
+function parameters({ fit, problem }: ModelFinding, intervals: IntervalsFound): TableBlock {
+  const share = writtenShare(problem.confidence, Number.isInteger(problem.confidence * 100) ? 0 : 1)
+  const rise = "Where the likelihood, at its greatest over all else, has fallen as far as the χ² law allows (profile)"
+  return {
+    type: "table",
+    caption: null,
+    columns: [
+      { head: "", says: "What was estimated beside the coefficients", align: "text" },
+      { head: "estimate", says: null, align: "number" },
+      { head: "standard error", says: null, align: "number" },
+      { head: `${share} interval`, says: intervals.parameters === null ? `${rise}; still to come` : rise, align: "number" },
+    ],
+    rows: fit.parameters.flatMap((of, j) => {
+      const interval = intervals.parameters?.[j] ?? null
+      const own = parameterRow(parameterSays(of.of, problem), of.value, of.standardError, interval)
+      if (of.of !== "k") return [own]
+      const { value, standardError: error } = of
+      const inverse = value === null ? 0 : 1 / value
+      const turned = interval === null ? null : { low: reciprocal(interval.high), high: reciprocal(interval.low) }
+      return [own, parameterRow("1/k", inverse, value === null || error === null ? null : error / value / value, turned)]
+    }),
+    folded: false,
+  }
+}
+
+const reciprocal = (end: IntervalEnd): IntervalEnd => (typeof end === "number" ? 1 / end : end === "infinity" ? 0 : end)
+
+const parameterSays = (of: string, { family, link }: ModelFinding["problem"]): string =>
+  of === "k" || of === "p" ? `${of} of ${family.name}` : of.endsWith("limit") ? of : `${of} of ${link.name}`
+
+function parameterRow(head: string, value: number | null, error: number | null, interval: Interval): readonly TableEntry[] {
+  const digits = value === null ? errorDigits : estimateDigits(value, error)
+  return [
+    head,
+    value === null ? "∞" : { value, digits },
+    error === null ? null : { value: error, digits: errorDigits },
+    intervalEntry(interval, digits),
+  ]
 }
 
 function intervalSays({ fit }: ModelFinding, { by, ends }: IntervalsFound, law: string): string {
@@ -159,6 +201,8 @@ function certificateSays({ fit, problem }: ModelFinding): string {
     case "unidentified":
       return `The maximum of the likelihood, reached in ${steps}; not every coefficient can be told apart.`
     case "boundary":
+      if (fit.parameters.some(({ end }) => end !== 0) && (certificate.evidence?.edge.length ?? 0) === 0)
+        return `The best fit with a parameter at the end of what it can be, reached in ${steps}.`
       return `The best fit at the edge of the possible means, reached in ${steps}.`
     case "infinite":
       return `The likelihood grows without end; what is shown is its limit, after ${steps}.`

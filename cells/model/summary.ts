@@ -5,7 +5,7 @@ import type { Json } from "../../runtime/value.ts"
 import type { IntervalsFound, ModelFinding, ModelFound } from "../model-finding.ts"
 import type { Coefficient, Fit } from "../statistics/fit.ts"
 import type { Problem } from "../statistics/problem.ts"
-import type { IntervalEnd } from "../statistics/profile.ts"
+import type { IntervalEnd, ProfileInterval } from "../statistics/profile.ts"
 
 /** Covariances of more coefficients than this would be most of the file. */
 const mostCovariances = 100
@@ -21,7 +21,12 @@ export function summary({ parts: { fit: found }, intervals }: ModelFound): Json 
     parameters_counted: fit.parametersCounted,
     family: familySays(problem),
     link: found.link,
-    parameters: [],
+    parameters: fit.parameters.map(({ of, value, standardError }, j) => ({
+      of,
+      value: number(value),
+      standard_error: number(standardError),
+      interval: endsOf(intervals.parameters?.[j] ?? null),
+    })),
     coefficients: fit.coefficients.map((of, j) => coefficient(of, intervals, j)),
     covariance: covariance(fit),
     fit: { deviance: number(fit.deviance), df: fit.df, log_likelihood: number(fit.logLikelihood) },
@@ -101,6 +106,8 @@ function evidence({ fit, records }: ModelFinding): Json {
   }
 }
 
+const endsOf = (interval: ProfileInterval | null): Json => (interval === null ? null : [end(interval.low), end(interval.high)])
+
 function coefficient(of: Coefficient, { by, ends }: IntervalsFound, index: number): Json {
   const interval = ends?.[index] ?? null
   return {
@@ -109,7 +116,7 @@ function coefficient(of: Coefficient, { by, ends }: IntervalsFound, index: numbe
     toward: of.toward,
     standard_error: number(of.standardError),
     wald: { ratio: number(of.ratio), p: number(of.p) },
-    interval: interval === null ? null : [end(interval.low), end(interval.high)],
+    interval: endsOf(interval),
     interval_by: by,
   }
 }

@@ -26,6 +26,8 @@ type Read = {
   readonly repeat: Float64Array | null
   readonly precision: Float64Array | null
   readonly sampling: Float64Array | null
+  /** Rows of no dose: nothing is read of them but response and weights. */
+  readonly isControl: Uint8Array | null
 }
 
 /** Which rows have everything and weigh something (1), and why the others do not; each row goes by the first reason that holds. */
@@ -35,8 +37,11 @@ export async function rowsUsed(
   read: Read,
   notice: Say,
   work: Work,
-): Promise<{ readonly used: Uint8Array; readonly unused: ModelFinding["unused"] }> {
+): Promise<{ readonly used: Uint8Array; readonly control: Uint8Array | null; readonly unused: ModelFinding["unused"] }> {
+  const { isControl } = read
   const used = new Uint8Array(table.rows).fill(1)
+  const control = isControl === null ? null : controlUsed(said, table, read, isControl)
+  if (isControl !== null) for (let row = 0; row < table.rows; row++) if (isControl[row] === 1) used[row] = 0
   const unused: { by: string; rows: number }[] = []
   const without = (by: string, values: Float64Array | Int32Array | Uint8Array, is: (value: number) => boolean): void => {
     let count = 0
@@ -81,7 +86,27 @@ export async function rowsUsed(
   if (repeat !== null) without("repeat is 0", repeat, isNought)
   if (precision !== null) without("precision is 0", precision, isNought)
   if (sampling !== null) without("the sampling weight is 0", sampling, isNought)
-  return { used, unused }
+  const lost = isControl === null || control === null ? 0 : isControl.reduce((sum, is, row) => sum + is - (control[row] as number), 0)
+  if (lost > 0) unused.push({ by: "a row of no dose lacks its response or its weight", rows: lost })
+  return { used, control, unused }
+}
+
+/** The rows of no dose that have a response and weigh something. */
+function controlUsed(said: ModelSaid, table: TableHere, { response, repeat, precision, sampling }: Read, isControl: Uint8Array): Uint8Array {
+  const used = isControl.slice()
+  const clauses = new Set(["response", "repeat", "precision", "sampling"])
+  for (const { name, clause } of columnsOf(said)) {
+    const column = table.columns.get(name)
+    if (column === undefined || !clauses.has(clause)) continue
+    for (let row = 0; row < table.rows; row++) {
+      if ("codes" in column ? (column.codes[row] as number) < 0 : Number.isNaN(column.values[row] as number)) used[row] = 0
+    }
+  }
+  for (const weight of [response.trials, repeat, precision, sampling]) {
+    if (weight === null) continue
+    for (let row = 0; row < table.rows; row++) if (weight[row] === 0) used[row] = 0
+  }
+  return used
 }
 
 const isNought = (value: number): boolean => value === 0

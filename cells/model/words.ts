@@ -39,6 +39,9 @@ export type ModelSaid = {
   readonly exposure: Named | null
   readonly repeat: Named | null
   readonly precision: Named | null
+  readonly limits: { readonly low: Bound; readonly high: Bound; readonly at: Place } | null
+  /** Rows of no dose, where this is true. */
+  readonly control: { readonly expression: Expression; readonly at: Place } | null
   readonly sampling: Named | null
   readonly dispersion: { readonly value: DispersionSaid; readonly at: Place } | null
   readonly standardErrors: "expected" | "observed" | "sandwich"
@@ -83,9 +86,8 @@ export const modelWords: Words<ModelSaid> = {
     limits: {
       forms: ["BOUND+estimate:lowest to BOUND+estimate:highest"],
       says: "Lowest and highest possible mean of a binomial response, where they are not 0 and 1",
-      later: true,
     },
-    control: { forms: ["EXPR:rows"], says: "Rows of no dose: their mean is the lower limit", later: true },
+    control: { forms: ["EXPR:rows"], says: "Rows of no dose: their mean is the lower limit" },
     dispersion: {
       forms: ["one", "pearson", "deviance", "likelihood", "NUMBER:dispersion"],
       says: "How the dispersion is had; left out, one for binomial and poisson, pearson for the rest",
@@ -117,10 +119,12 @@ export const modelWords: Words<ModelSaid> = {
       link: linkSaid(call(one("link")), family, statement, found),
       predictor: termsSaid(one("predictor")),
       predictorAt: one("predictor")?.clause ?? -1,
-      offset: offsetSaid(one("offset")),
+      offset: expressionSaid(one("offset"), "offset"),
       exposure: named(one("exposure"), "exposure"),
       repeat: named(one("repeat"), "repeat"),
       precision: named(one("precision"), "precision"),
+      limits: limitsSaid(one("limits"), statement),
+      control: expressionSaid(one("control"), "rows"),
       sampling: named(one("sampling"), "weight"),
       dispersion: dispersionSaid(one("dispersion"), found),
       standardErrors: errorsSaid(one("standard_errors")),
@@ -139,14 +143,15 @@ export const modelWords: Words<ModelSaid> = {
   },
   names(said): Names {
     const uses: Use[] = []
-    const offset = said.offset === null ? [] : namesIn(said.offset.expression)
+    const offset = [said.offset, said.control].flatMap((of) => (of === null ? [] : namesIn(of.expression)))
     if (said.data !== null) {
       const parts = new Set([rowsPart, ...columnsOf(said).map(({ name }) => name), ...offset.map(({ name }) => name)])
       uses.push({ name: said.data.name, parts: [...parts].sort(), either: false, at: said.data.at })
     }
-    // A bare name in an offset is a column or a cell; which, the table decides.
+    // A bare name in an expression is a column or a cell; which, the table decides.
     for (const { name, at } of offset) if (name !== said.name) uses.push({ name, parts: "all", either: true, at })
-    for (const bound of [...(said.family?.parameters ?? []), ...(said.link?.parameters ?? [])]) {
+    const limits = said.limits === null ? [] : [said.limits.low, said.limits.high]
+    for (const bound of [...(said.family?.parameters ?? []), ...(said.link?.parameters ?? []), ...limits]) {
       if (bound.type === "cell") uses.push({ name: bound.name, parts: "all", either: false, at: bound.at })
     }
     // A cell that is not there is for the evaluation to say: the name may be a misspelt link of the language.
@@ -162,6 +167,10 @@ function together(said: ModelSaid, notices: Notice[]): void {
   if (family === null) return
   if (family.name !== "binomial" && response?.type === "successes") notices.push(say.trialsNotOfFamily(family.name, response.trials.at))
   if (family.name !== "binomial" && response?.type === "level") notices.push(say.levelNotOfFamily(family.name, response.at))
+  if (said.limits !== null && family.name !== "binomial") notices.push(say.limitsNotOfFamily(family.name, said.limits.at))
+  if (said.control !== null && said.limits === null && said.clauses["limits"] === undefined)
+    notices.push(say.controlWithoutLimits(said.control.at))
+  if (said.control !== null && said.sampling !== null) notices.push(say.controlWithSampling(said.control.at))
   if (exposure === null) return
   if (family.name === "normal") notices.push(say.exposureNotOfFamily(family.name, exposure.at))
   const linked = link?.name ?? canonicalLink(family.name)
@@ -221,8 +230,15 @@ function termsSaid(matched: Matched | null): Terms | null {
   return slot?.type === "TERMS" ? slot.terms : null
 }
 
-function offsetSaid(matched: Matched | null): ModelSaid["offset"] {
-  const slot = filled(matched, "offset")
+function limitsSaid(matched: Matched | null, statement: Statement): ModelSaid["limits"] {
+  const [low, high] = [filled(matched, "lowest"), filled(matched, "highest")]
+  if (low?.type !== "BOUND" || high?.type !== "BOUND") return null
+  const whole = wholeClause(matched, statement)
+  return { low: low.bound, high: high.bound, at: { ...whole, from: 1 } }
+}
+
+function expressionSaid(matched: Matched | null, label: string): ModelSaid["offset"] {
+  const slot = filled(matched, label)
   return slot?.type === "EXPR" ? { expression: slot.expression, at: slot.at } : null
 }
 

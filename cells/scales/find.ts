@@ -26,7 +26,10 @@ export async function found(said: ScalesSaid, inputs: Inputs, work: Work): Promi
   if (said.model === null) return { ok: false, found: null, notices }
   if (model === null) return { ok: false, found: null, notices: [say.notAModel(said.model.name, said.model.at)] }
   const setting = planOf(said, said.model.name, model, inputs, fault)
-  const candidates = candidateLinks(said, model, inputs, fault)
+  const named = candidateLinks(said, model, inputs, fault)
+  // Limits of the mean are the model's, whatever the link between them.
+  const { limits } = model.problem.link
+  const candidates = named?.map(({ spec, says }) => ({ spec: limits === undefined ? spec : { ...spec, limits }, says })) ?? null
   if (setting === null || candidates === null || notices.length > 0) return { ok: false, found: null, notices }
 
   const mark = markOf(model)

@@ -319,6 +319,7 @@ it("holds a finding that another kind can refit", async () => {
     [
       "cluster",
       "confidence",
+      "control",
       "dispersion",
       "exposure",
       "family",

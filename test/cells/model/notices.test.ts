@@ -77,11 +77,6 @@ describe("faults of the statement", () => {
     ["link power", 'fault parameters-off at "power": The link power has one parameter, a.', null],
     ["link power(1, 2)", 'fault parameters-off at "power(1, 2)": The link power has one parameter, a.', null],
     ["link log(2)", 'fault parameters-off at "log(2)": The link log has no parameter.', "link log"],
-    [
-      "link power(estimate)",
-      'fault not-available-yet at "power(estimate)": Estimating the parameter of the link power is not available yet.',
-      null,
-    ],
     ["link power(infinity)", 'fault parameter-infinite at "power(infinity)": The parameter of the link power is a finite number.', null],
   ])("%s", async (link, says, mend) => {
     const outcome = await finding(`response buds\nfamily poisson\n${link}\npredictor frost`, beds)
@@ -100,13 +95,6 @@ describe("faults of the statement", () => {
     expect(notice?.hint).toBe(
       "Links for gamma are reciprocal, identity, log, reciprocal_square and square_root; probit goes with normal and binomial.",
     )
-  })
-
-  it.each([
-    ["limits 0 to 0.9", "clause/not-available-yet"],
-    ["control frost = 0", "clause/not-available-yet"],
-  ])("%s is not available yet", async (clause, code) => {
-    expect(codes(await finding(`${counts}\n${clause}`, beds))).toEqual([code])
   })
 
   it.each([

@@ -200,7 +200,7 @@ it("writes infinities as words and what is not available as null", async () => {
     },
   }
   const ends = [{ low: -Infinity, high: Number.NaN }]
-  const summary = model.summary({ parts: { fit: bent as unknown as typeof found }, intervals: { by: "wald", ends } }) as {
+  const summary = model.summary({ parts: { fit: bent as unknown as typeof found }, intervals: { by: "wald", ends, parameters: [] } }) as {
     readonly [member: string]: Value
   }
   expect(summary["fit"]).toMatchObject({ deviance: "infinity" })
