@@ -65,17 +65,19 @@ export function footTicks(scale: Scale, size: number, spacing = 62): readonly Ti
   return numberTicks(scale, 1).slice(0, 1)
 }
 
-/** Ticks for levels: each has its text, on two rows where one is too tight, shortened where two are. */
+/** Ticks for levels: each has its text, on two rows where one is too tight, shortened where two are, and never far past the axis. */
 export function levelTicks(scale: Scale, levels: readonly string[], size: number): readonly Tick[] {
   const room = Math.abs(scale.place(1) - scale.place(0)) - 8
   const oneRow = levels.every((level) => textWidth(level, size) <= room)
-  return levels.map((level, i) => ({
-    value: i,
-    place: scale.place(i),
-    text: fitted(level, size, oneRow ? room : room * 2),
-    row: oneRow ? 0 : i % 2,
-  }))
+  return levels.map((level, i) => {
+    const place = scale.place(i)
+    const toEnd = Math.min(Math.abs(place - scale.start), Math.abs(scale.end - place)) + overhang
+    return { value: i, place, text: fitted(level, size, oneRow ? room : Math.min(room * 2, toEnd * 2)), row: oneRow ? 0 : i % 2 }
+  })
 }
+
+/** How far the text of a level may stand past the end of its axis, in pixels. */
+const overhang = 6
 
 /** Ticks at given values, all to the same decimals. */
 function numberTicks(scale: Scale, count: number): readonly Tick[] {

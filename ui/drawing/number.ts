@@ -24,9 +24,9 @@ export function decimalsForExtent(extent: number): number {
   return decimals
 }
 
-/** A written number in two: up to the decimal point, and from the point on (empty for a whole number). */
+/** A written number in two, words before it included: up to the decimal point, and from the point on (empty where there is none). */
 export function atPoint(text: string): { readonly before: string; readonly after: string } {
-  const [, before = text, after = ""] = /^([−\d\u202f]+)(\..*)$/u.exec(text) ?? []
+  const [, before = text, after = ""] = /^((?:[^\d.]* )?[−\d\u202f]+)(\.\d.*)$/u.exec(text) ?? []
   return { before, after }
 }
 

@@ -314,6 +314,38 @@ export function levelScales(): ScalesBlock {
 }
 
 /** A thousand single trials, to be drawn as points: more than a finding would bring. */
+/** Levels with as many candidates as a family has links, and names that are longer than their room. */
+export function crowdedLevels(): ScalesBlock {
+  const block = levelScales()
+  const levels = ["the old hospital by the harbour", "north quay", "old town", "upper meadow", "mill on the far side of the river"]
+  const others = block.candidates.filter(({ chosen }) => !chosen)
+  const chosen = block.candidates.filter((candidate) => candidate.chosen)
+  const more = Array.from({ length: 9 }, (_, i) => ({ ...(others[i % others.length] as ScalesCandidate), link: `power(0.${i + 1})` }))
+  return { ...block, across: { ...block.across, levels }, candidates: [...chosen, ...more] }
+}
+
+/** Means in the hundreds of thousands under the logarithm. */
+export function largeScales(): ScalesBlock {
+  const x = Array.from({ length: 12 }, (_, i) => i)
+  const line: LineSpec = {
+    level: null,
+    line: (u) => 10.2 + 0.16 * u,
+    error: () => 0.05,
+    x,
+    y: x.map((u) => Math.exp(10.2 + 0.16 * u + (u % 3 === 0 ? 0.05 : -0.03))),
+    weight: () => 1,
+  }
+  const block = beetleScales()
+  return {
+    ...block,
+    range: [0, 11],
+    data: [0, 11],
+    response: { label: "life under load", unit: "h" },
+    possible: [0, Number.POSITIVE_INFINITY],
+    candidates: [candidateOf("log", [line], gridOver(0, 11), [0, 11], [0, Number.POSITIVE_INFINITY], { chosen: true, deltaAic: 0 })],
+  }
+}
+
 export function manyScales(rows = 1000): ScalesBlock {
   const block = beetleScales("logit")
   let seed = 7

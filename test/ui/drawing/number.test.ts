@@ -2,6 +2,7 @@
 
 import { describe, expect, it } from "vitest"
 import {
+  atPoint,
   decimalsOf,
   plain,
   pointAligned,
@@ -93,5 +94,19 @@ describe("columns", () => {
     [20000, 0],
   ])("a step of %d needs %i decimals", (step, decimals) => {
     expect(decimalsOf(step)).toBe(decimals)
+  })
+})
+
+describe("a text in a column of numbers", () => {
+  it.each([
+    ["−4.23", "−4", ".23"],
+    ["1\u202f234.5", "1\u202f234", ".5"],
+    ["120", "120", ""],
+    ["below 0.0001", "below 0", ".0001"],
+    ["1.2 × 10⁻⁷", "1", ".2 × 10⁻⁷"],
+    ["−0.103 to 0.42", "−0", ".103 to 0.42"],
+    ["not available", "not available", ""],
+  ])("%s stands by its point", (text, before, after) => {
+    expect(atPoint(text)).toEqual({ before, after })
   })
 })

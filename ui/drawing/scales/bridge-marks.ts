@@ -3,15 +3,19 @@
 
 import type { ScalesBlock, ScalesCandidate } from "../../../cells/block.ts"
 import { linkRole } from "../link-ink.ts"
-import { type SceneMark, tenth } from "../scene.ts"
+import { type SceneMark, tenth, textWidth } from "../scene.ts"
 import { bridgeHairs, etaAt, falls, joinArea, joinPath, type LabelledLine, labelledLines } from "./bridge.ts"
 import { stay } from "./curves.ts"
 import { type ScalesLayout, TICK_SIZE } from "./layout.ts"
 import { label, path } from "./pieces.ts"
 import { onSubjectScale } from "./preview.ts"
 
-/** The column for numbers along an edge: room for `−12.34`. */
+/** The column for numbers along an edge: room for `−12.34`, and more where numbers are longer. */
 const COLUMN = 50
+/** What stands in a column beside the number, in pixels: the tick before it and the knot after it. */
+const BESIDE = 18
+/** The lines keep at least this much of the bridge to bend in. */
+const BEND = 34
 
 /** Where the bridge's edges are, across the way its lines go. */
 export interface Ways {
@@ -29,13 +33,16 @@ export interface Ways {
 
 export function waysOf(layout: ScalesLayout): Ways {
   const { frame } = layout.bridge
+  const most = frame.right - frame.left - BEND - COLUMN
+  const column = (texts: readonly string[]): number =>
+    Math.min(most, Math.max(COLUMN, BESIDE + Math.max(0, ...texts.map((text) => textWidth(text, TICK_SIZE)))))
   return layout.arrangement === "beside"
     ? {
         runs: "down",
         near: frame.left,
         far: frame.right,
-        start: frame.left + COLUMN,
-        end: frame.right - COLUMN,
+        start: frame.left + column(labelled(layout).map(({ muText }) => muText)),
+        end: frame.right - column(labelled(layout).map(({ etaText }) => etaText)),
         low: frame.top,
         high: frame.bottom,
       }
@@ -58,9 +65,10 @@ export function labelled(layout: ScalesLayout): readonly LabelledLine[] {
   const known = remembered.get(layout)
   if (known !== undefined) return known
   const { bridge, subject } = layout
-  const { runs, low, high } = waysOf(layout)
+  const { top, bottom } = bridge.frame
+  const runs = layout.arrangement === "beside" ? "down" : "across"
   const falling = falls(subject.bridge)
-  const most = runs === "across" ? (falling ? 5 : 7) : falling ? 6 : Math.max(5, Math.floor((high - low) / 28))
+  const most = runs === "across" ? (falling ? 5 : 7) : falling ? 6 : Math.max(5, Math.floor((bottom - top) / 28))
   const lines = labelledLines(subject.bridge, { mu: bridge.mu, eta: bridge.eta, runs }, most)
   remembered.set(layout, lines)
   return lines

@@ -56,7 +56,7 @@ export function scalesLayout(block: ScalesBlock, width: number): ScalesLayout | 
   const stacked = width < STACKED_BELOW
   const head = HEAD_ROWS + (block.split === null ? 0 : KEY_ROW)
   const meanRange = meanRangeOf(block, subject)
-  const etaRange = etaRangeOf(subject, block.aligned ? block.candidates : [subject])
+  const etaRange = etaRangeOf(subject, block.aligned ? block.candidates : [subject], block.across.levels !== null)
   const held = block.held === null ? [] : brokenIntoLines(`Held: ${block.held}`, LABEL_SIZE, width - 8)
 
   const sideWidth = (range: readonly [number, number], height: number): number =>
@@ -160,6 +160,9 @@ class Span {
   }
 }
 
+/** How many times the extent of the means an interval at a level may reach beyond them: there it is all that is drawn. */
+const levelShare = 6
+
 /**
  * The range of means: all points and the subject's curve and band inside the data, other candidates' curves there too, and of what is
  * extrapolated at most as much again. An end of the possible range that is near is taken in, with a strip beyond it to hatch.
@@ -177,7 +180,7 @@ function meanRangeOf(block: ScalesBlock, subject: ScalesCandidate): readonly [nu
     curve.mu.forEach((mu, i) => {
       const inside = curve.inside[i] === 1
       all.takeWithin(mu, core, inside ? 1 : 0.9)
-      const share = inside ? (block.across.levels === null ? 0.4 : 1.5) : 0.25
+      const share = inside ? (block.across.levels === null ? 0.4 : levelShare) : 0.25
       all.takeWithin(curve.muLow[i], core, share)
       all.takeWithin(curve.muHigh[i], core, share)
     })
@@ -197,10 +200,16 @@ function meanRangeOf(block: ScalesBlock, subject: ScalesCandidate): readonly [nu
  * The range of η: the lines and bands inside the data and every working response of some weight; extrapolated lines, far bands and
  * working responses of next to no weight get a share of it and are cut beyond.
  */
-function etaRangeOf(subject: ScalesCandidate, drawn: readonly ScalesCandidate[]): readonly [number, number] {
+function etaRangeOf(subject: ScalesCandidate, drawn: readonly ScalesCandidate[], atLevels: boolean): readonly [number, number] {
   const core = new Span()
   for (const curve of subject.curves) for (const [i, eta] of curve.eta.entries()) if (curve.inside[i] === 1) core.take(eta)
   if (core.low > core.high) for (const curve of subject.curves) for (const eta of curve.eta) core.take(eta)
+  if (atLevels) {
+    const middles = core.copy()
+    for (const curve of subject.curves) {
+      for (const end of [...curve.etaLow, ...curve.etaHigh]) core.takeWithin(end, middles, levelShare)
+    }
+  }
   const heaviest = Math.max(0, ...subject.points.map((points) => points.weight.reduce((most, weight) => Math.max(most, weight), 0)))
   const all = core.copy()
   for (const points of subject.points) {

@@ -10,12 +10,18 @@ import type { PanelLayout, ScalesLayout } from "./layout.ts"
 import { path } from "./pieces.ts"
 import { onSubjectScale } from "./preview.ts"
 
-/** How the places of one level are shared out: the room of a curve, the step between neighbours, and who else stands there. */
+/** Where the observed mean, the fitted mean and the first of the other candidates stand at a level, in steps from one another. */
+const places = { observed: -0.75, fitted: 0.5, others: 1.4 } as const
+
+/**
+ * How the places of one level are shared out: the room of a curve, the step between neighbours, how far all are moved so that together they
+ * stand in the middle, and who else stands there.
+ */
 function shares(
   block: ScalesBlock,
   layout: ScalesLayout,
   which: Which,
-): { readonly room: number; readonly step: number; readonly others: readonly ScalesCandidate[] } {
+): { readonly room: number; readonly step: number; readonly moved: number; readonly others: readonly ScalesCandidate[] } {
   const { subject } = layout
   const { x } = layout[which]
   const comparable = (which === "mean" || block.aligned) && block.split === null
@@ -23,25 +29,27 @@ function shares(
     ? block.candidates.filter((other) => other !== subject && other.curves.length > 0 && other.trouble === null)
     : []
   const room = ((x.place(1) - x.place(0)) * 0.86) / Math.max(1, subject.curves.length)
-  return { room, step: Math.min(13, room / (3 + others.length)), others }
+  const last = others.length === 0 ? places.fitted : places.others + others.length - 1
+  const step = Math.min(13, room / (last - places.observed + 1))
+  return { room, step, moved: (-step * (last + places.observed)) / 2, others }
 }
 
 /** How far from the middle of its level the fitted mean of a curve is drawn. */
 export function fittedShift(block: ScalesBlock, layout: ScalesLayout, which: Which, curve: number): number {
   if (block.across.levels === null) return 0
-  const { room, step } = shares(block, layout, which)
-  return (curve - (layout.subject.curves.length - 1) / 2) * room + step / 2
+  const { room, step, moved } = shares(block, layout, which)
+  return (curve - (layout.subject.curves.length - 1) / 2) * room + moved + step * places.fitted
 }
 
 export function levelMarks(block: ScalesBlock, layout: ScalesLayout, ghost: ScalesCandidate | null, which: Which): readonly SceneMark[] {
   const { subject } = layout
   const panel = layout[which]
-  const { room, step, others: all } = shares(block, layout, which)
+  const { room, step, moved, others: all } = shares(block, layout, which)
   const others = all.filter((other) => other !== ghost)
   const groups = subject.curves.length
   const marks: SceneMark[] = []
   subject.curves.forEach((curve, g) => {
-    const centre = (g - (groups - 1) / 2) * room
+    const centre = (g - (groups - 1) / 2) * room + moved
     const level = levelIndex(block, curve, g)
     marks.push(
       ...intervalMarks(
@@ -50,7 +58,7 @@ export function levelMarks(block: ScalesBlock, layout: ScalesLayout, ghost: Scal
         valuesOf(curve, which, stay),
         panel,
         `${linkRole(subject.link)} solid level-${level}`,
-        centre + step / 2,
+        centre + step * places.fitted,
         true,
       ),
     )
@@ -64,7 +72,7 @@ export function levelMarks(block: ScalesBlock, layout: ScalesLayout, ghost: Scal
             valuesOf(same, which, stay),
             panel,
             `${linkRole(other.link)} solid others`,
-            centre + step * (1.4 + k),
+            centre + step * (places.others + k),
             false,
           ),
         )
@@ -72,16 +80,16 @@ export function levelMarks(block: ScalesBlock, layout: ScalesLayout, ghost: Scal
     })
     if (ghost !== null) {
       const same = ghost.curves[g]
-      const moved = block.aligned ? stay : onSubjectScale(subject, ghost)
+      const onAxis = block.aligned ? stay : onSubjectScale(subject, ghost)
       if (same !== undefined) {
         marks.push(
           ...intervalMarks(
             `ghost-${ghost.link}`,
             same,
-            ordered(valuesOf(same, which, moved)),
+            ordered(valuesOf(same, which, onAxis)),
             panel,
             `${linkRole(ghost.link)} ghost`,
-            centre + step * (1.4 + others.length),
+            centre + step * (places.others + others.length),
             true,
           ),
         )
@@ -101,7 +109,7 @@ export function levelMarks(block: ScalesBlock, layout: ScalesLayout, ghost: Scal
         shapeOf(block.split === null ? 0 : level),
         "",
         largest,
-        centre - step * 0.75,
+        centre + step * places.observed,
       ),
     )
   })

@@ -21,7 +21,7 @@ export function scalesScene(block: ScalesBlock, layout: ScalesLayout, preview: s
       ...panelMarks(block, layout, shown, "mean"),
       ...panelMarks(block, layout, shown, "predictor"),
       ...headMarks(block, layout),
-      ...layout.held.map((line, i) => label(`held-${i}`, "held", 4, layout.heldTop + 12 + i * 15, LABEL_SIZE, "start", line)),
+      ...layout.held.map((line, i) => label(`held-${i}`, "held", 0, layout.heldTop + 12 + i * 15, LABEL_SIZE, "start", line)),
     ],
   }
 }

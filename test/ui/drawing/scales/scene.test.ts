@@ -5,7 +5,17 @@ import type { ScalesBlock, ScalesCandidate } from "../../../../cells/block.ts"
 import { type ScalesLayout, scalesLayout, scalesLegend, scalesScene } from "../../../../ui/drawing/scales/index.ts"
 import { agreementMean, onSubjectScale } from "../../../../ui/drawing/scales/preview.ts"
 import { type Box, boxesMeet, type SceneMark, textBox, textsOf } from "../../../../ui/drawing/scene.ts"
-import { beetleScales, candidateOf, clottingScales, gridOver, levelScales, manyScales, maths } from "../../../browser/gallery/samples.ts"
+import {
+  beetleScales,
+  candidateOf,
+  clottingScales,
+  crowdedLevels,
+  gridOver,
+  largeScales,
+  levelScales,
+  manyScales,
+  maths,
+} from "../../../browser/gallery/samples.ts"
 
 const WIDTHS = [340, 390, 500, 560, 640, 720, 860, 990, 1300]
 
@@ -15,6 +25,8 @@ const blocks: readonly (readonly [string, ScalesBlock])[] = [
   ["a split", clottingScales()],
   ["a falling link", clottingScales("reciprocal", false)],
   ["levels", levelScales()],
+  ["crowded levels", crowdedLevels()],
+  ["large means", largeScales()],
   ["many points", manyScales(400)],
 ]
 
@@ -62,6 +74,49 @@ describe.each(blocks)("the two scales of %s", (_, block) => {
       for (const tick of yTicks) expect(tick.place >= frame.top - 0.01 && tick.place <= frame.bottom + 0.01).toBe(true)
       for (const tick of xTicks) expect(tick.place >= frame.left - 0.01 && tick.place <= frame.right + 0.01).toBe(true)
     }
+  })
+
+  it.each(WIDTHS)("keep what stands at a level clear of the frame and of its neighbours, at a width of %i", (width) => {
+    if (block.across.levels === null) return
+    const layout = laid(block, width)
+    const marks = scalesScene(block, layout, null).marks
+    for (const which of ["mean", "predictor"] as const) {
+      const { x } = layout[which]
+      const half = (x.place(1) - x.place(0)) / 2
+      for (const mark of within(marks, `panel ${which}`)) {
+        const place =
+          mark.type === "circle"
+            ? mark.x
+            : mark.type === "path" && /^(bar|fitted)\b/.test(mark.role)
+              ? Number(/[\d.]+/.exec(mark.d)?.[0])
+              : null
+        if (place === null) continue
+        const level = Math.round(x.value(place))
+        expect(Math.abs(place - x.place(level))).toBeLessThan(half - 4)
+        if (mark.type === "path" && mark.role.startsWith("fitted")) expect(mark.key.endsWith(`-${level}`)).toBe(true)
+      }
+    }
+  })
+
+  it("hold the whole interval of every level, unless it is out of all proportion", () => {
+    if (block.across.levels === null) return
+    const { mean, predictor, subject } = laid(block, 860)
+    for (const curve of subject.curves) {
+      expect([...curve.etaLow, ...curve.etaHigh].filter((eta) => eta < predictor.y.from || eta > predictor.y.to)).toEqual([])
+      expect([...curve.muLow, ...curve.muHigh].filter((mu) => mu < mean.y.from || mu > mean.y.to)).toEqual([])
+    }
+  })
+
+  it.each(WIDTHS)("keep the numbers of the bridge clear of its lines, at a width of %i", (width) => {
+    const layout = laid(block, width)
+    if (layout.arrangement === "stacked") return
+    const bridge = within(scalesScene(block, layout, null).marks, "bridge")
+    const knots = bridge.flatMap((mark) => (mark.type === "circle" ? [mark] : []))
+    const boxes = textsOf(bridge).map((text) => textBox(text))
+    const touching = knots.filter(({ x, y, r }) =>
+      boxes.some((box) => boxesMeet(box, { left: x - r, right: x + r, top: y - r, bottom: y + r })),
+    )
+    expect(touching).toEqual([])
   })
 
   it("hold every observed mean and every working response of weight", () => {
