@@ -65,6 +65,6 @@ describe("a notice of scales", () => {
   it("puts cloglog alone on the strip of a binomial model with an exposure", async () => {
     const book = await settledBook([...others, "scales\n  model rate\n  across x"], { "d.csv": csv })
     expect(book.notices("scales")).toEqual([])
-    expect(book.summary("scales").strip).toEqual([{ link: "cloglog", delta_aic: 0 }])
+    expect(book.summary("scales")["strip"]).toEqual([{ link: "cloglog", delta_aic: 0 }])
   })
 })
