@@ -217,4 +217,18 @@ describe("the ledger", () => {
     expect(engine.dispatched).toEqual([])
     expect(document.querySelector("etamu-editor")).toBeNull()
   })
+
+  it("fades the text of a note only where it is cut off, and shows all that is wrong with one", async () => {
+    const long = `note\n${"A line of a note that goes on for a while.\n\n".repeat(30)}`
+    const wrong = { ...unknownFile, clause: null, at: { clause: -1, from: 0, to: 0 } }
+    await laid(
+      ["note\nShort.", long, "note\n{nothing}"],
+      (id) => (id === "c2" ? { status: "fault", notices: [wrong], shown: null, last: null } : sentence("found")),
+      (id) => (id === "c2" ? [wrong] : []),
+    )
+    await vi.waitFor(() => expect([0, 1].map((i) => row(i).hasAttribute("data-cut"))).toEqual([false, true]))
+    const notices = row(2).querySelector(".saying .notices")?.getBoundingClientRect()
+    expect(notices?.height).toBeGreaterThan(10)
+    expect(notices?.bottom).toBeLessThanOrEqual(row(2).getBoundingClientRect().bottom)
+  })
 })

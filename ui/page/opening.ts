@@ -52,8 +52,11 @@ export async function bookOfSample({ file, title }: Sample): Promise<Book> {
   return bookOfTexts(title, texts, files)
 }
 
+/** What a notebook is called that nobody has named. */
+export const untitled = "Untitled"
+
 /** A notebook with nothing in it yet. */
-export const blankBook = (): Promise<Book> => bookOfTexts("Untitled", [], new Map())
+export const blankBook = (): Promise<Book> => bookOfTexts(untitled, [], new Map())
 
 const cellTexts = (file: string): readonly string[] => plainCells(file).map(({ text }) => text)
 

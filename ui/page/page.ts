@@ -17,7 +17,7 @@ import { type Command, commandOf, keyOf } from "./keys.ts"
 import type { ChooseEvent, Ledger } from "./ledger/ledger.ts"
 import { chooseLook, chosenLook, type Look } from "./light.ts"
 import type { MenuItem } from "./menu.ts"
-import { type Book, blankBook, bookOfFile, bookOfSample, now, type Sample, samples } from "./opening.ts"
+import { type Book, blankBook, bookOfFile, bookOfSample, now, type Sample, samples, untitled } from "./opening.ts"
 import type { KeysSheet } from "./shell/keys-sheet.ts"
 import { clock, type ShelfAsk, type ShelfSheet } from "./shell/shelf.ts"
 import "./blocks/block.ts"
@@ -361,9 +361,12 @@ export class Page extends LitElement {
       case "sample":
         await this.#put(await bookOfSample(ask.sample))
         break
-      case "blank":
-        await this.#put(await blankBook())
+      case "blank": {
+        // One that was begun before and never written in is as good, and the shelf does not fill up with nothing.
+        const untouched = this.books.find(({ title, cells }) => title === untitled && cells === 0)
+        if (untouched === undefined || !(await this.#take(untouched.id))) await this.#put(await blankBook())
         break
+      }
       case "file":
         this.#choose(null)
         break

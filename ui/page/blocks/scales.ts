@@ -170,6 +170,9 @@ export class ScalesElement extends LitElement {
       summary:hover {
         color: var(--ink);
       }
+      .points {
+        margin-top: 6px;
+      }
       figcaption {
         margin-top: 8px;
         max-width: 92ch;

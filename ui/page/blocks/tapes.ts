@@ -157,7 +157,7 @@ export class TapesElement extends LitElement {
 }
 
 function oneTape(tape: Tape): TemplateResult {
-  const name = html`<span class="name">${tape.name}${tape.called === null ? null : html`<span class="called">${tape.called}</span>`}</span>`
+  const name = html`<span class="name">${tape.name}${tape.called === null || tape.called === tape.name ? null : html`<span class="called">${tape.called}</span>`}</span>`
   const kind = html`<span class="kind">${tape.unit ?? WORDS[tape.columnType]}</span>`
   const says = html`<span class="says">${tape.says}</span>`
   if (tape.levels !== null) {

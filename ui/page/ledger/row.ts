@@ -323,6 +323,13 @@ export class Row extends LitElement {
     const lines = this.#editor.value?.lines ?? [...this.querySelectorAll(".statement .line")]
     // The text of a note may run on below the row, where it is not seen: its knots stay in the row.
     const tops = lines.map((line) => Math.min(Math.round(line.getBoundingClientRect().top - top + half), Math.round(height) - 14))
+    // Only text that is cut off fades out: the rest is to be read.
+    const statement = this.querySelector(".statement")
+    const saying = this.querySelector(".saying")
+    if (statement !== null && saying !== null) {
+      const room = Math.min(saying.clientHeight - 20, Number.parseFloat(getComputedStyle(statement).maxHeight) || Number.POSITIVE_INFINITY)
+      this.toggleAttribute("data-cut", statement.scrollHeight > room + 1)
+    }
     if (tops.length !== this.tops.length || tops.some((each, i) => each !== this.tops[i])) this.tops = tops
   }
 
