@@ -789,9 +789,10 @@ const infiniteHints: Readonly<Record<string, string>> = {
   poisson: "Where these predictors differ there is no count above 0; only data where there are some could say how much.",
 }
 
-/** `terms` with where each goes. */
+/** `terms` with where each goes; `separated` says which rows make it so. */
 export const atInfinity = (
   terms: readonly { readonly of: string; readonly toward: "infinity" | "-infinity" }[],
+  separated: string | null,
   family: string,
   at: Place,
 ): Notice =>
@@ -807,7 +808,7 @@ export const atInfinity = (
             terms.map(({ of, toward }) => `${of} goes to ${toward === "infinity" ? "∞" : "−∞"}`),
             6,
           )
-    }; what is shown is the limit.`,
+    }${separated === null ? "; what is shown is the limit." : `: ${separated}. What is shown is the limit.`}`,
     infiniteHints[family] ?? "The means run to the end of what the link can reach; another link may have them within.",
   )
 

@@ -8,6 +8,7 @@ import type { Problem } from "../statistics/problem.ts"
 import { isDiscrete } from "./family.ts"
 import * as say from "./notices.ts"
 import type { Response } from "./response.ts"
+import { separationSays } from "./separation.ts"
 import type { ModelSaid } from "./words.ts"
 
 type Say = (notice: Notice) => void
@@ -81,7 +82,7 @@ export function fitNotices(said: ModelSaid, problem: Problem, of: Fit, rowName: 
     const clause = name === "k" || name === "p" ? "family" : name.endsWith("limit") ? "limits" : "link"
     if (end !== 0) notice(say.parameterAtEnd(name, clause, value))
   })
-  if (certificate.class === "boundary" && (certificate.evidence?.edge.length ?? 0) > 0) {
+  if ((certificate.evidence?.edge.length ?? 0) > 0) {
     notice(
       say.atBoundary(
         (certificate.evidence?.edge ?? []).map(({ row }) => row),
@@ -90,9 +91,9 @@ export function fitNotices(said: ModelSaid, problem: Problem, of: Fit, rowName: 
       ),
     )
   }
-  if (certificate.class === "infinite") {
+  if ((certificate.evidence?.directions.length ?? 0) > 0) {
     const moved = of.coefficients.flatMap(({ of: term, toward }) => (toward === null ? [] : [{ of: term, toward }]))
-    notice(say.atInfinity(moved, problem.family.name, at))
+    notice(say.atInfinity(moved, separationSays({ problem, fit: of }), problem.family.name, at))
   }
   if (certificate.class === "several_maxima") notice(say.severalMaxima())
   if (of.df === 0 && of.dispersion.estimated && of.dispersion.value === null) notice(say.nothingLeft())

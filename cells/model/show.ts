@@ -6,13 +6,15 @@ import { absent, written, writtenCount, writtenProbability, writtenShare } from 
 import type { IntervalsFound, ModelFinding, ModelFound } from "../model-finding.ts"
 import type { Coefficient } from "../statistics/fit.ts"
 import type { IntervalEnd } from "../statistics/profile.ts"
+import { certificateSentences, errorsSay, linkTestSays } from "./certificate.ts"
 import { effectSentences } from "./effect.ts"
 import { coefficientName, equation } from "./equation.ts"
 import { list, rows } from "./notices.ts"
 
 export function shown(whole: ModelFound): readonly Block[] {
   const found = whole.parts.fit
-  const effects = effectSentences(whole)
+  // What is no maximum has no effects to tell.
+  const effects = found.fit.certificate.class === "gave_up" ? [] : effectSentences(whole)
   const blocks: Block[] = []
   if (effects.length > 0) blocks.push({ type: "sentence", text: effects.join(" "), tone: "lead" })
   return [
@@ -21,7 +23,11 @@ export function shown(whole: ModelFound): readonly Block[] {
     coefficients(found, whole.intervals),
     ...(found.fit.parameters.length === 0 ? [] : [parameters(found, whole.intervals)]),
     { type: "sentence", text: fitSays(found), tone: "plain" },
-    { type: "sentence", text: `${meanSays(found)} ${rowsSay(found)} ${certificateSays(found)} ${errorsSay(found)}`, tone: "quiet" },
+    {
+      type: "sentence",
+      text: `${meanSays(found)} ${rowsSay(found)} ${[...certificateSentences(found), errorsSay(found)].join(" ")}`,
+      tone: "quiet",
+    },
   ]
 }
 
@@ -135,9 +141,14 @@ function estimateDigits(beta: number, error: number | null): number {
 
 const exponentOf = (value: number): number => Number(value.toExponential().split("e")[1])
 
-function fitSays({ fit, problem }: ModelFinding): string {
+/** A deviance below this, for each row, is rounding: the fit meets every response. */
+const leastDeviance = 1e-13
+
+function fitSays(found: ModelFinding): string {
+  const { fit, problem } = found
   const parts: string[] = []
-  if (fit.deviance !== null) parts.push(`Deviance ${written(fit.deviance, 4)} on ${writtenCount(fit.df)} degrees of freedom`)
+  const deviance = fit.deviance !== null && fit.deviance < leastDeviance * fit.n && fit.dispersion.by === "one" ? 0 : fit.deviance
+  if (deviance !== null) parts.push(`Deviance ${written(deviance, 4)} on ${writtenCount(fit.df)} degrees of freedom`)
   if (fit.dispersion.by !== "one" && fit.dispersion.value !== null) {
     const by = { pearson: "by Pearson's X²", deviance: "by the deviance", likelihood: "by maximum likelihood", one: "" }
     parts.push(
@@ -154,6 +165,8 @@ function fitSays({ fit, problem }: ModelFinding): string {
     sentences.push(
       `Beside the predictors, η² has a score of ${written(fit.goodnessOfLink.statistic, 3)} (p ${pSays(fit.goodnessOfLink.p)}): ${linkVerdict(fit.goodnessOfLink.p)}.`,
     )
+  const linkTest = linkTestSays(found)
+  if (linkTest !== null) sentences.push(linkTest)
   return sentences.join(" ")
 }
 
@@ -186,42 +199,4 @@ function rowsSay({ fit, unused, problem }: ModelFinding): string {
   const used = `${rows(fit.rows)} used${counted}${weighted}`
   if (unused.length === 0) return `${used}.`
   return `${used}; not used: ${list(unused.map(({ by, rows: count }) => `${rows(count)} where ${by}`))}.`
-}
-
-function certificateSays({ fit, problem }: ModelFinding): string {
-  const { certificate } = fit
-  const steps = `${writtenCount(certificate.iterations)} ${certificate.iterations === 1 ? "step" : "steps"}`
-  if (problem.estimate === "bias_reduced" && certificate.class !== "gave_up")
-    return `The maximum of the likelihood penalised by ½ ln |X'WX|, reached in ${steps}; deviance and log-likelihood are the plain ones there.`
-  switch (certificate.class) {
-    case "interior":
-      return certificate.global
-        ? `The maximum of the likelihood, reached in ${steps}; there is no other.`
-        : `A maximum of the likelihood, reached in ${steps}; with this family and link there may be others.`
-    case "unidentified":
-      return `The maximum of the likelihood, reached in ${steps}; not every coefficient can be told apart.`
-    case "boundary":
-      if (fit.parameters.some(({ end }) => end !== 0) && (certificate.evidence?.edge.length ?? 0) === 0)
-        return `The best fit with a parameter at the end of what it can be, reached in ${steps}.`
-      return `The best fit at the edge of the possible means, reached in ${steps}.`
-    case "infinite":
-      return `The likelihood grows without end; what is shown is its limit, after ${steps}.`
-    case "several_maxima":
-      return `The highest of several maxima, reached in ${steps}.`
-    case "gave_up":
-      return `No maximum: given up after ${steps}.`
-  }
-}
-
-function errorsSay({ problem, fit }: ModelFinding): string {
-  switch (problem.standardErrors) {
-    case "expected":
-      return "Standard errors from the expected information."
-    case "observed":
-      return "Standard errors from the observed information."
-    case "sandwich":
-      return fit.clusters === null
-        ? "Sandwich standard errors by row."
-        : `Sandwich standard errors by ${writtenCount(fit.clusters)} clusters.`
-  }
 }

@@ -6,6 +6,8 @@ import type { IntervalsFound, ModelFinding, ModelFound } from "../model-finding.
 import type { Coefficient, Fit } from "../statistics/fit.ts"
 import type { Problem } from "../statistics/problem.ts"
 import type { IntervalEnd, ProfileInterval } from "../statistics/profile.ts"
+import { certificateSentences } from "./certificate.ts"
+import { separationSays } from "./separation.ts"
 
 /** Covariances of more coefficients than this would be most of the file. */
 const mostCovariances = 100
@@ -84,12 +86,15 @@ export const predictorSays = ({ problem }: ModelFinding): string => {
 }
 
 /** Rows at the edge by their number in the file, the first being 1, as every notice counts them. */
-function evidence({ fit, records }: ModelFinding): Json {
+function evidence(found: ModelFinding): Json {
+  const { fit, records } = found
   const shown = fit.certificate.evidence
   if (shown === null) return null
   const part = ({ column, times }: { readonly column: string; readonly times: number }): Json => ({ column, times: number(times) })
   const { stopped } = shown
   return {
+    says: certificateSentences(found).slice(1),
+    separated: separationSays(found),
     dependent: shown.dependent.map(({ column, on }) => ({ column, on: on.map(part) })),
     directions: shown.directions.map((direction) => direction.map(part)),
     edge: shown.edge.slice(0, mostRows).map(({ row, multiplier }) => ({ row: (records[row] ?? 0) + 1, multiplier: number(multiplier) })),

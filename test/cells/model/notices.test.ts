@@ -471,7 +471,7 @@ describe("warnings and remarks", () => {
   it("says which coefficients run to infinity, and why", async () => {
     const apart = await finding("response y\nfamily binomial\nlink logit\npredictor x", { x: number(1, 2, 3, 4), y: truth(0, 0, 1, 1) })
     expect(told(apart)).toEqual([
-      'warning infinite at "predictor": The fit gets ever better as intercept goes to −∞ and x goes to ∞; what is shown is the limit.',
+      'warning infinite at "predictor": The fit gets ever better as intercept goes to −∞ and x goes to ∞: every row with x up to 2 has no success and every row with x from 3 on only successes. What is shown is the limit.',
     ])
     expect(apart.notices[0]?.hint).toBe(
       "Something separates successes from failures wholly; only data where both occur could say how much.",

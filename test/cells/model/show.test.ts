@@ -128,7 +128,7 @@ describe("what qualifies a finding", () => {
     const table = { ...beds, frost: number(1, null, 3, 4, 5, 6, 7, 8) }
     const outcome = await finding("response buds\nfamily poisson\nlink log\npredictor frost\nstandard_errors sandwich by lot", table)
     expect(sentences(outcome, "quiet")[0]).toMatch(
-      /^μ is the mean of buds\. 7 rows used; not used: 1 row where frost is missing\. The maximum of the likelihood, reached in \d+ steps; there is no other\. Sandwich standard errors by 3 clusters\.$/,
+      /^μ is the mean of buds\. 7 rows used; not used: 1 row where frost is missing\. The maximum of the likelihood, reached in \d+ steps; there is no other, since the log-likelihood is concave in η under this family and link\. Sandwich standard errors by 3 clusters\.$/,
     )
   })
 
