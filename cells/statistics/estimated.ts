@@ -28,6 +28,8 @@ export type Spot = {
   readonly point: Point
   /** Whether the coefficients arrived inside; elsewhere slopes mean little. */
   readonly inside: boolean
+  /** φ in the likelihood of a Tweedie family, by which slopes are divided; 1 else. */
+  readonly phi: number
 }
 
 /** Rows, design and dispersion rule are the same at every spot; the responses are not. */
@@ -76,7 +78,7 @@ export class Surface {
     let [byLikelihood, powerSlope] = [1, 0]
     if (this.ofLikelihood) {
       if (problem.family.name === "tweedie") {
-        const best = await tweedieAtBest(problem, point.state.mu, this.phi(point), pace)
+        const best = await tweedieAtBest(problem, point.state.mu, near && near.phi !== 1 ? near.phi : this.phi(point), pace)
         objective = -2 * best.logLikelihood
         byLikelihood = best.phi
         powerSlope = best.byPower
@@ -108,11 +110,11 @@ export class Surface {
     const power = parameters.findIndex(({ part }) => part === "family")
     if (problem.family.name === "tweedie" && power >= 0) {
       gradient[power] = -2 * powerSlope
-      // The second slope is not worked out row by row: the search takes it from the slopes it meets.
-      hessian[power * q + power] = Number.NaN
+      // The second slope is not worked out row by row: the search takes it from the slopes it meets, here as last met.
+      hessian[power * q + power] = near ? (near.hessian[power * q + power] as number) : Number.NaN
     }
     const inside = found.end === "arrived" && factor !== null && gradient.every(Number.isFinite)
-    return { values: Float64Array.from(values), objective, gradient, hessian, problem, equations, point, inside }
+    return { values: Float64Array.from(values), objective, gradient, hessian, problem, equations, point, inside, phi: byLikelihood }
   }
 
   /** Coefficients under which the new link gives about the means of the old one: one weighted regression of its η. */
@@ -203,6 +205,8 @@ function leastShare({ y, trials, control }: Problem, side: 1 | -1): number {
 /** What the search came to; null where nothing could be fitted anywhere. */
 export type Estimated = {
   readonly spot: Spot
+  /** Steps of the search over the parameters. */
+  readonly steps: number
   /** Which parameters ended at a bound: −1 the lower, 1 the upper, 0 inside. */
   readonly ends: readonly (-1 | 0 | 1)[]
   /** Objectives of other minima that other beginnings led to. */
@@ -239,9 +243,11 @@ export async function bestParameters(surface: Surface, near: Spot | null = null)
   }
   let best: Spot | null = null
   let arrived = false
+  let steps = 0
   const others: number[] = []
   for (const start of starts) {
     const found = await descended(surface, start, free)
+    steps += found.steps
     const noticeable = 1e-7 * surface.unit(found.spot) + 1e-10 * Math.abs(found.spot.objective)
     if (best === null || found.spot.objective < best.objective - noticeable) {
       if (best !== null && arrived) others.push(best.objective)
@@ -259,7 +265,7 @@ export async function bestParameters(surface: Surface, near: Spot | null = null)
     const [low, high] = surface.bounds[j] as readonly [number, number]
     return spot.values[j] === low ? -1 : spot.values[j] === high ? 1 : 0
   })
-  return { spot, ends, others, arrived, powerVariance: await powerVarianceAt(surface, spot) }
+  return { spot, steps, ends, others, arrived, powerVariance: await powerVarianceAt(surface, spot) }
 }
 
 /** By the slopes a little to both sides, each of which is exact. */
@@ -289,16 +295,16 @@ export async function descended(
   surface: Surface,
   from: Spot,
   free: readonly number[],
-): Promise<{ readonly spot: Spot; readonly arrived: boolean }> {
+): Promise<{ readonly spot: Spot; readonly arrived: boolean; readonly steps: number }> {
   let spot = from
   let before: Spot | null = null
   for (let steps = 0; steps < mostSteps; steps++) {
     const step = stepFrom(surface, spot, before, free)
-    if (step === null) return { spot, arrived: spot.inside }
+    if (step === null) return { spot, arrived: spot.inside, steps }
     let decrement = 0
     for (let j = 0; j < step.length; j++) decrement -= 0.5 * (step[j] as number) * (spot.gradient[j] as number)
     const unit = surface.unit(spot)
-    if (spot.inside && decrement <= 1e-24 * unit) return { spot, arrived: true }
+    if (spot.inside && decrement <= 1e-24 * unit) return { spot, arrived: true, steps }
     const fine = spot.inside && decrement <= 1e-9 * unit
     let next: Spot | null = null
     let share = 1
@@ -317,13 +323,13 @@ export async function descended(
       }
       if (fine) break
     }
-    if (next === null) return { spot, arrived: spot.inside && decrement <= 1e-7 * unit }
+    if (next === null) return { spot, arrived: spot.inside && decrement <= 1e-7 * unit, steps }
     const level = !next.inside && spot.objective - next.objective < 1e-4 * unit
     before = spot
     spot = next
-    if (level) return { spot, arrived: false }
+    if (level) return { spot, arrived: false, steps }
   }
-  return { spot, arrived: false }
+  return { spot, arrived: false, steps: mostSteps }
 }
 
 /** A lower limit below the upper one. */
@@ -349,12 +355,14 @@ function stepFrom(surface: Surface, spot: Spot, before: Spot | null, free: reado
   if (open.length === 0) return null
   const H = open.map((j) =>
     open.map((k) => {
-      const value = spot.hessian[j * q + k] as number
-      if (!Number.isNaN(value)) return value
-      // By the secant of the last step.
+      const at = j * q + k
+      const value = spot.hessian[at] as number
+      const bySecant = j === k && surface.parameters[j]?.part === "family" && surface.problem.family.name === "tweedie"
+      if (!bySecant) return value
       const moved = before ? (spot.values[j] as number) - (before.values[j] as number) : 0
       const secant = before && moved !== 0 ? ((spot.gradient[j] as number) - (before.gradient[j] as number)) / moved : Number.NaN
-      return secant > 0 ? secant : Math.abs(spot.gradient[j] as number) / 0.05
+      if (secant > 0) spot.hessian[at] = secant
+      return secant > 0 ? secant : value > 0 ? value : Math.abs(spot.gradient[j] as number) / 0.05
     }),
   )
   const solved = solvedPositive(

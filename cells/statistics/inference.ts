@@ -129,7 +129,8 @@ export async function findings(given: Findings): Promise<Fit> {
     certificate: {
       class: certificate,
       global: (limit.type === "inside" || limit.type === "edge" || limit.type === "infinite") && isConcave(problem.family, problem.link),
-      iterations: climb.found.iterations + (limit.type === "infinite" ? (limit.rest?.found.iterations ?? 0) : 0),
+      iterations:
+        climb.found.iterations + (given.estimated?.steps ?? 0) + (limit.type === "infinite" ? (limit.rest?.found.iterations ?? 0) : 0),
       scaledScore: measured && point ? scaledScore(measured, point, phi === null || phi === 0 ? 1 : phi) : 0,
       condition: measured && point && limit.type !== "edge" ? conditionOf(measured, point, factor) : Number.NaN,
       evidence: evidenceOf(given, dependences),

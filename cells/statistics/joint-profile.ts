@@ -13,7 +13,6 @@ import type { Problem } from "./problem.ts"
 import type { IntervalEnd, ProfileInterval } from "./profile.ts"
 import { Pace, type Point } from "./scoring.ts"
 import { chiSquareUpperQuantile } from "./special.ts"
-import { tweedieAtBest } from "./tweedie-fit.ts"
 
 /** One point of a profile. */
 type Height = { readonly at: number; readonly objective: number; readonly slope: number; readonly inside: boolean; readonly spot: Spot }
@@ -69,8 +68,7 @@ export async function jointIntervals(
       let slope = 0
       const { score } = spot.point.state
       for (let i = 0; i < x.length; i++) slope += (score[i] as number) * (x[i] as number)
-      const by = await likelihoodUnit(spot, phi, pace)
-      return { at, objective: spot.objective, slope: (-2 * slope) / by, inside: spot.inside, spot }
+      return { at, objective: spot.objective, slope: (-2 * slope) / spot.phi, inside: spot.inside, spot }
     }
     const error = standardError !== null && standardError > 0 ? standardError : Math.abs(beta) * 0.1 || 1
     const low = await endOf(profile, top, beta, -1, error, cut, [-Infinity, Infinity])
@@ -78,12 +76,6 @@ export async function jointIntervals(
     found.push({ low, high })
   }
   return found
-}
-
-/** What the slope of ℓ in a coefficient is divided by: φ at its best for a Tweedie likelihood, else nothing. */
-async function likelihoodUnit({ problem, point }: Spot, phi: (point: Point) => number, pace: Pace): Promise<number> {
-  if (problem.family.name !== "tweedie" || (problem.family.estimated?.length ?? 0) === 0) return 1
-  return (await tweedieAtBest(problem, point.state.mu, phi(point), pace)).phi
 }
 
 /** An interval for each estimated parameter: of a link or limit by D, of k and p by −2ℓ. Null for one at an end of its range, and for limits beyond. */

@@ -42,17 +42,18 @@ export async function tweedieAtBest(problem: Problem, mu: Float64Array, start: n
   let at = await tweedieLikelihood(problem, mu, start, pace)
   for (let k = 0; k < 60; k++) {
     const step = at.byLogPhiTwice < 0 ? -at.byLogPhi / at.byLogPhiTwice : at.byLogPhi > 0 ? 1 : -1
+    // So near to the end the likelihood is level to its last digits, and the slope alone says whether a step helps.
+    const near = Math.abs(step) < 1e-4
     let share = 1
-    let next = at
-    for (let halving = 0; halving < 30; halving++) {
-      next = await tweedieLikelihood(problem, mu, exp(log(at.phi) + Math.max(-2, Math.min(2, share * step))), pace)
-      if (next.logLikelihood >= at.logLikelihood - 1e-13 * Math.abs(at.logLikelihood)) break
-      share /= 2
+    let next: TweedieLikelihood | null = null
+    for (let halving = 0; halving < 30 && next === null; halving++, share /= 2) {
+      const trial = await tweedieLikelihood(problem, mu, exp(log(at.phi) + Math.max(-2, Math.min(2, share * step))), pace)
+      if (near ? Math.abs(trial.byLogPhi) < Math.abs(at.byLogPhi) : trial.logLikelihood >= at.logLikelihood) next = trial
+      else if (near) return at
     }
-    const arrived = Math.abs(share * step) < 1e-9
-    if (next.logLikelihood < at.logLikelihood && arrived) return at
+    if (next === null) return at
     at = next
-    if (arrived) return at
+    if (Math.abs(step) < 1e-10) return at
   }
   return at
 }

@@ -64,6 +64,29 @@ describe("k of the negative binomial by maximum likelihood", () => {
   })
 })
 
+describe("the power of a Tweedie family by its profile", () => {
+  // Computed at 32 digits by mpmath: the root of the profile score, φ at its best for each power.
+  it("is that of the made-up amounts g18", async () => {
+    const set = referenceSets("generated-glm.json").find(({ id }) => id === "g18")
+    const model = set?.models.find(({ id }) => id === "tweedie-1.5-log")
+    if (!set || !model) throw new Error("the set is there")
+    const problem: Problem = { ...(problemOf(set, model) as Problem), family: { name: "tweedie", parameters: [1.5], estimated: [0] } }
+    const found = await fitted(problem)
+    expect(digits(found.parameters[0]?.value, "1.27626980615878")).toBeGreaterThan(12)
+    expect(digits(found.parameters[0]?.standardError, "0.088866152603698")).toBeGreaterThan(10)
+    expect(digits(found.logLikelihood, "-61.4877616525493518")).toBeGreaterThan(13)
+    expect(digits(found.coefficients[0]?.beta, "0.5179810520722611")).toBeGreaterThan(12)
+    expect(digits(found.coefficients[1]?.beta, "0.4287223808969423")).toBeGreaterThan(12)
+    // Two coefficients, φ and p.
+    expect([found.df, found.parametersCounted]).toEqual([28, 4])
+    const [interval] = await parameterIntervals(problem, found, pause)
+    for (const end of [interval?.low, interval?.high]) {
+      const held = await fitted({ ...problem, family: { name: "tweedie", parameters: [end as number] } })
+      expect(Math.abs(2 * ((found.logLikelihood as number) - (held.logLikelihood as number)) - 3.841458820694124)).toBeLessThan(1e-8)
+    }
+  })
+})
+
 describe("links whose parameter is estimated, against profiles at 20 digits", () => {
   const stated = (profile: (typeof linkProfiles.profiles)[number]): Problem => {
     const name = profile.family_of_links === "power" ? "power" : "aranda-ordaz"
