@@ -1,15 +1,16 @@
 // Fits: a problem in, everything known about its maximum out. The climbing is in scoring.ts, what errors and tests follow from it in
 // inference.ts, what is certified about it in certificate.ts; this file puts them in order. Definitions: README.md.
 
-import { basisOf, type Dependence, mostInflation, reweightedBasis } from "./basis.ts"
+import { type Dependence, mostInflation, reweightedBasis } from "./basis.ts"
 import { biasReducedFit } from "./bias-reduced.ts"
 import { basisCoefficients, designCoefficients } from "./change.ts"
 import { isConcave } from "./concavity.ts"
-import { columnsNeeded, type Design, designOf, mostColumns, recipeOf } from "./design.ts"
+import { columnsNeeded, type Design, mostColumns } from "./design.ts"
 import { dispersionRule } from "./dispersion.ts"
 import { bestParameters, type Estimated, Surface, startingValues } from "./estimated.ts"
 import { familyOf } from "./families.ts"
 import { Factor } from "./gram.ts"
+import { groundOf } from "./ground.ts"
 import { type Findings, findings, scaledScore } from "./inference.ts"
 import { estimatedParameters, problemAt } from "./joint-information.ts"
 import { type Climb, limitOf } from "./limits.ts"
@@ -173,15 +174,9 @@ export async function searched(
   if (needed > mostColumns)
     return { ok: false, why: "gave_up", detail: `the predictor makes up to ${needed} columns, and at most ${mostColumns} are fitted` }
   const pace = new Pace(pause)
-  const design = designOf(
-    recipeOf(problem.terms, problem.intercept, problem.variables, problem.rows, problem.repeat),
-    problem.variables,
-    problem.rows,
-  )
-  const unfit = missingIn(design)
-  if (unfit !== null) return { ok: false, why: "gave_up", detail: unfit }
-  if (pace.due(50 * problem.rows)) await pace.rest()
-  const { basis, dependences } = await basisOf(design, pace)
+  const ground = await groundOf(problem, pace)
+  if (typeof ground === "string") return { ok: false, why: "gave_up", detail: ground }
+  const { design, basis, dependences } = ground
   const phi = provisionalDispersion(problem, familyOf(problem.family).discrete)
   const columns = design.recipe.columns.length
   const constant = design.constant ? 0 : -1
@@ -277,7 +272,7 @@ async function fromOtherStarts({ equations, found }: Climb, phi: (point: Point) 
       possible = await equations.fill(begin, "expected")
     }
     if (!possible) continue
-    const again = await maximum(equations, begin, phi)
+    const again = await maximum(equations, begin, phi, best.end === "arrived" ? best.point.gamma : null)
     const gap = again.point.deviance - best.point.deviance
     const noticeable = 1e-7 * phi(best.point) + 1e-10 * Math.abs(best.point.deviance)
     if (gap < -noticeable) {
@@ -306,7 +301,7 @@ function provisionalDispersion(problem: Problem, discrete: boolean): (rank: numb
  */
 async function sharpened(climb: Climb, phi: (point: Point) => number): Promise<Climb> {
   const { design, equations, found } = climb
-  if (!sameWeights(equations)) await equations.fill(found.point, "expected", true)
+  if (!sameWeights(equations) && !found.expected) await equations.fill(found.point, "expected", true)
   const inflation = Factor.of(found.point.gram)?.inflation() ?? Number.POSITIVE_INFINITY
   if (inflation < mostInflation) return climb
   const basis = reweightedBasis(design, equations.basis, found.point.state.weight)
@@ -318,7 +313,7 @@ async function sharpened(climb: Climb, phi: (point: Point) => number): Promise<C
   if (!(await next.fill(point, "expected", true))) return climb
   const again = await polished(next, point, next.point(), phi, found.iterations)
   if (again.end !== "arrived") return climb
-  await next.fill(again.point, "expected", true)
+  if (!again.expected) await next.fill(again.point, "expected", true)
   return { ...climb, equations: next, found: again }
 }
 
@@ -327,18 +322,3 @@ const named = (dependences: readonly Dependence[], design: Design): DependentTer
     column: design.recipe.columns[column] as string,
     on: on.map((part) => ({ column: design.recipe.columns[part.column] as string, times: part.times })),
   }))
-
-/** Rows used have everything present; where that is not so it is our mistake, said rather than computed with. */
-function missingIn(design: Design): string | null {
-  for (const { column, values } of design.plain) {
-    for (let i = 0; i < design.rows; i++)
-      if (!Number.isFinite(values[i] as number)) return `${design.recipe.columns[column]} is missing in a row`
-  }
-  for (const { cells, multiplier, columns } of design.blocks) {
-    for (let i = 0; i < design.rows; i++) {
-      if ((cells[i] as number) < 0 || (multiplier && !Number.isFinite(multiplier[i] as number)))
-        return `${design.recipe.columns[columns[0] as number]} is missing in a row`
-    }
-  }
-  return null
-}

@@ -32,10 +32,21 @@ export type Maximum = {
   readonly decrement: number
   /** The last whole step in the basis, for who asks where a fit that does not arrive was going. */
   readonly step: Float64Array
+  /** Set where the point is filled with expected weights, so that nobody needs to fill it again for them. */
+  readonly expected?: true
 }
 
 /** Scoring until (δ'Jδ)/φ is below this: the next steps are Newton's. */
 const scoringEnds = 1e-10
+
+/** Below this many φ the next steps of a link that is not canonical are Newton's: scoring would gain a fixed share a step. */
+const closing = 1
+
+/**
+ * Below this many φ the observed information is known well enough: an error of 3e-7 standard errors changes it by as little, and each step by
+ * it leaves that share of the error. The passes that are left are with the expected weights, which errors are made of.
+ */
+const lastSteps = 1e-13
 
 /** A decrement of 1e-26·φ is an error of 1e-13 standard errors, which is rounding. */
 const noMoreToGain = 1e-26
@@ -172,9 +183,15 @@ export class Equations {
 
 /**
  * Climbs from a point that is filled with expected weights.
- * @param phi  dispersion at a point: a number, or made from Pearson's X² and D as the problem says
+ * @param phi    dispersion at a point: a number, or made from Pearson's X² and D as the problem says
+ * @param known  coefficients of a maximum that is known: a search that is all but there ends as `slow`
  */
-export async function maximum(equations: Equations, start: Point, phi: (point: Point) => number): Promise<Maximum> {
+export async function maximum(
+  equations: Equations,
+  start: Point,
+  phi: (point: Point) => number,
+  known: Float64Array | null = null,
+): Promise<Maximum> {
   const { canonical } = equations.responses
   let current = start
   let other = equations.point()
@@ -193,11 +210,13 @@ export async function maximum(equations: Equations, start: Point, phi: (point: P
     if (factor === null) return { point: current, iterations, end: "singular", decrement: Number.NaN, step }
     step = factor.solve(current.score)
     const decrement = dot(step, current.score)
+    if (known && isNear(current, step, known, phi(current))) return { point: current, iterations, end: "slow", decrement, step }
     if (decrement <= scoringEnds * phi(current) || decrement <= equations.responses.rounding) break
     // Scoring gains a fixed share a step off the canonical link; where that share is small, Newton's steps are taken early.
     const slow = decrement > 0.02 * before
     before = decrement
-    const next: Information = !canonical && iterations >= 2 && slow ? "observed" : information
+    const near = decrement < closing * phi(current)
+    const next: Information = !canonical && (near || (iterations >= 2 && slow)) ? "observed" : information
     let share = 1
     let taken = false
     for (let halving = 0; halving < mostHalvings; halving++) {
@@ -214,23 +233,34 @@ export async function maximum(equations: Equations, start: Point, phi: (point: P
     ;[current, other] = [other, current]
   }
   if (iterations === mostSteps) return { point: current, iterations, end: "slow", decrement: before, step }
-  return polished(equations, current, other, phi, iterations)
+  return polished(equations, current, other, phi, iterations, information)
 }
 
-/** Newton's steps with observed weights until the score falls no more, η to full precision. */
+/** Whether the next step ends within a tenth of a standard error of these coefficients. */
+function isNear({ gamma, gram }: Point, step: Float64Array, known: Float64Array, phi: number): boolean {
+  const off = step.map((s, j) => (gamma[j] as number) + s - (known[j] as number))
+  return dot(off, gram.times(off)) < 0.01 * phi
+}
+
+/**
+ * Newton's steps with observed weights until the score falls no more, η to full precision.
+ * @param filled  weights that the start is filled with
+ */
 export async function polished(
   equations: Equations,
   start: Point,
   spare: Point,
   phi: (point: Point) => number,
   steps: number,
+  filled: Information = "expected",
 ): Promise<Maximum> {
   let current = start
   let other = spare
   let information: Information = "observed"
   let iterations = steps
   // Under the canonical link the weights at hand are the observed ones already.
-  if (!sameWeights(equations)) await equations.fill(current, information, true)
+  const asObserved = filled === "observed" && equations.basis.change.type === "scaled"
+  if (!sameWeights(equations) && !asObserved) await equations.fill(current, information, true)
   let factor = Factor.of(current.gram)
   if (factor === null) {
     information = "expected"
@@ -242,6 +272,7 @@ export async function polished(
   let step = factor.solve(current.score)
   let decrement = dot(step, current.score)
   let left = false
+  let expected = information === "expected"
   // A perfect fit has no dispersion to measure by: its steps end where rounding does.
   for (let k = 0; k < 30 && decrement > noMoreToGain * phi(current); k++) {
     const { gamma, gammaLow } = current
@@ -250,26 +281,36 @@ export async function polished(
       other.gamma[j] = high
       other.gammaLow[j] = low
     }
-    if (!(await equations.fill(other, information, true))) {
+    const last = decrement <= lastSteps * phi(current)
+    if (!(await equations.fill(other, last ? "expected" : information, true))) {
       left = true
       break
     }
-    const nextFactor = Factor.of(other.gram)
+    const nextFactor: Factor | null = last ? factor : Factor.of(other.gram)
     if (nextFactor === null) break
     const nextStep = nextFactor.solve(other.score)
     const next = dot(nextStep, other.score)
     if (!(next < decrement)) break
     const gain = next / decrement
     ;[current, other] = [other, current]
+    factor = nextFactor
     step = nextStep
     decrement = next
+    expected = last || information === "expected"
     iterations++
     if (gain > 0.25) break
   }
   // Where the next step would leave the possible means and the score has not vanished, the maximum is not inside.
   const tolerance = left ? 1e-12 : 1e-9
   const arrived = decrement <= tolerance * phi(current) || decrement <= 1e4 * equations.responses.rounding
-  return { point: current, iterations, end: arrived ? "arrived" : left ? "stuck" : "slow", decrement, step }
+  const found = {
+    point: current,
+    iterations,
+    end: arrived ? ("arrived" as const) : left ? ("stuck" as const) : ("slow" as const),
+    decrement,
+    step,
+  }
+  return expected ? { ...found, expected } : found
 }
 
 /** Whether a pass with expected weights is also one with observed weights and η to full precision. */
