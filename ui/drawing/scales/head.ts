@@ -47,7 +47,13 @@ export function headMarks(block: ScalesBlock, layout: ScalesLayout): readonly Sc
       label("bridge-eta", "symbol ink", bridge.frame.right, bridge.frame.top - 8, TITLE_SIZE, "middle", "η"),
     )
     const foot = falling ? "larger μ, smaller η" : "each μ meets its η"
-    marks.push(label("bridge-foot", "sub", middle, bridge.frame.bottom + 18, TICK_SIZE, "middle", fitted(foot, TICK_SIZE, width - 24)))
+    // It stands in a line with the numbers of both panels, which may reach under the bridge; where it is too tight it goes without saying.
+    const reach = (panel: PanelLayout): number =>
+      Math.max(0, ...panel.xTicks.map(({ place, text }) => Math.abs(place - middle) * -1 + textWidth(text, TICK_SIZE) / 2 + width / 2))
+    const free = width - 2 * Math.max(12, reach(mean) + 6, reach(predictor) + 6)
+    if (textWidth(foot, TICK_SIZE) <= free) {
+      marks.push(label("bridge-foot", "sub", middle, bridge.frame.bottom + 18, TICK_SIZE, "middle", foot))
+    }
   } else {
     marks.push(
       label("bridge-mu", "symbol ink", bridge.frame.left - 12, bridge.frame.top + 4, TITLE_SIZE, "end", "μ"),

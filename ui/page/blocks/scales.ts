@@ -177,6 +177,12 @@ export class ScalesElement extends LitElement {
         margin-top: 8px;
         max-width: 92ch;
       }
+      @media (forced-colors: active) {
+        .candidate[aria-pressed="true"] {
+          outline: 3px solid Highlight;
+          outline-offset: -3px;
+        }
+      }
       @media print {
         .reading {
           display: none;

@@ -26,7 +26,7 @@ export class TapesElement extends LitElement {
         margin: 0;
         padding: 0;
         display: grid;
-        grid-template-columns: minmax(60px, max-content) max-content minmax(30px, max-content) minmax(140px, 1fr) minmax(30px, max-content) minmax(90px, max-content);
+        grid-template-columns: fit-content(26%) fit-content(16%) minmax(30px, max-content) minmax(140px, 1fr) minmax(30px, max-content) minmax(90px, max-content);
         column-gap: 12px;
         align-items: center;
       }
@@ -103,7 +103,7 @@ export class TapesElement extends LitElement {
         font-variant-numeric: tabular-nums;
         margin-left: 4px;
       }
-      @container (max-width: 560px) {
+      @container (max-width: 640px) {
         ul {
           grid-template-columns: fit-content(52%) minmax(0, 1fr) fit-content(40%);
         }

@@ -167,6 +167,11 @@ export const editorInk = css`
     text-overflow: ellipsis;
   }
 
+  /* The line of help of the one that is chosen is there whole. */
+  .cm-editor li[aria-selected] .cm-completionDetail {
+    white-space: normal;
+  }
+
   .cm-editor .cm-diagnostic {
     max-width: 460px;
     padding: 6px 12px;

@@ -27,7 +27,7 @@ export function surroundings(desk: Desk, id: CellId): Surroundings | null {
     }),
     columns: table === undefined ? [] : columns(desk.state(table.id), table),
     files: desk.notebook.enclosures.map(({ name }) => name),
-    families: Object.values(families).filter(({ later }) => !later),
+    families: Object.values(families),
     links: (family) => linksFor(family === null ? Object.keys(links) : legalLinks(family)),
     functions: [...functions, ...modelFunctions].map(([name, { form, says }]) => ({ name, says: `${form}: ${says}` })),
     predictorCalls: [...makers].map(([name, { form, says }]) => ({ name, says: `${form}: ${says}` })),
