@@ -36,10 +36,13 @@ function between(possible: Range, [low, high]: readonly [number, number]): numbe
   const least = possible.low === 0 ? Math.max(low, high / 500) : low
   const means: number[] = []
   for (let i = 0; i < steps; i++) means.push(least + ((high - least) * i) / (steps - 1))
+  // Means that are all one, or beyond each other's reach, have no round numbers between them.
+  const quarter = high / 4 - least / 4
+  if (!(quarter > 0 && quarter < Infinity)) return means.filter(Number.isFinite)
   let step = 1
-  while (step > (high - least) / 4) step /= 10
-  while (step * 10 <= (high - least) / 4) step *= 10
-  if (!(step > 0) || !Number.isFinite(step)) return means
+  while (step > quarter) step /= 10
+  while (step * 10 <= quarter) step *= 10
+  if (!(step > 0)) return means
   for (let k = Math.ceil(least / step); k * step <= high && means.length < 2 * steps; k++) means.push(Number((k * step).toPrecision(12)))
   for (let power = 0, size = 1; power < powers; power++, size *= 10) {
     for (const digit of [1, 2, 5]) {
