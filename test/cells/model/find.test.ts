@@ -33,12 +33,11 @@ describe("rows", () => {
     const table = {
       ...beds,
       x: number(null, 2, 3, 4, 5, 6, 7, 8),
-      buds: count(2, null, 3, 6, 5, 9, 8, 13),
+      buds: count(2, null, 0, 6, 5, 9, 8, 13),
       pots: count(20, 20, 0, 20, 22, 20, 20, 20),
       r: count(1, 1, 1, 0, 2, 1, 1, null),
     }
     const outcome = await finding("response buds out of pots\nfamily binomial\nlink logit\npredictor x\nrepeat r", table)
-    // Three buds out of no pots would be more than there can be, were the row used.
     expect(codes(outcome)).toEqual([])
     const found = fitOf(outcome)
     expect(Array.from(found.records)).toEqual([13, 14, 15])
@@ -50,6 +49,16 @@ describe("rows", () => {
       { by: "repeat is 0", rows: 1 },
     ])
     expect([found.fit.rows, found.fit.n]).toEqual([3, 4])
+  })
+
+  it("with successes out of no trials are a fault, though rows without trials take no part", async () => {
+    const table = {
+      ...beds,
+      x: number(1, 2, 3, 4, 5, 6, 7, 8),
+      buds: count(2, 1, 3, 6, 5, 9, 8, 13),
+      pots: count(20, 20, 0, 20, 22, 20, 20, 20),
+    }
+    expect(codes(await finding("response buds out of pots\nfamily binomial\nlink logit\npredictor x", table))).toEqual(["more-than-trials"])
   })
 
   it("that are repeated count as if they stood there", async () => {
