@@ -19,7 +19,16 @@ import type { Responses } from "./rows.ts"
 import { directionScore, spansConstant } from "./score-direction.ts"
 import type { Equations, Point } from "./scoring.ts"
 import { singularValues } from "./singular-values.ts"
-import { chiSquareUpperTail, fUpperTail, normalQuantile, normalUpperTail, tUpperQuantile, tUpperTail } from "./special.ts"
+import {
+  chiSquareUpperTail,
+  fUpperTail,
+  halfLogTwoPi,
+  normalQuantile,
+  normalUpperTail,
+  stirlingError,
+  tUpperQuantile,
+  tUpperTail,
+} from "./special.ts"
 import { tweedieAtBest } from "./tweedie-fit.ts"
 
 export type Findings = {
@@ -484,6 +493,8 @@ async function logLikelihoodOf(climb: Climb, point: Point, phi: number): Promise
   const { problem } = climb
   const { repeat, precision, trials } = problem
   const { eta, mu } = point.state
+  const short = likelihoodByDeviance(climb, point, phi)
+  if (short !== null) return Number.isFinite(short) ? short : null
   const density = family.name === "gamma" ? gammaDensity(family) : family.logDensity
   let total = 0
   let part = 0
@@ -502,6 +513,33 @@ async function logLikelihoodOf(climb: Climb, point: Point, phi: number): Promise
   }
   total += part
   return Number.isFinite(total) ? total : null
+}
+
+/** ℓ = ℓ(y; y) − D/(2φ) where the first part is no more than sums over the responses; null for the other families, and where φ differs by row. */
+function likelihoodByDeviance({ responses, problem }: Climb, point: Point, phi: number): number | null {
+  const { family, y, a, logY, rows } = responses
+  if (family.name === "binomial") {
+    const single = (problem.trials === null || problem.trials.every((m) => m === 1)) && y.every((share) => share === 0 || share === 1)
+    return single ? -point.deviance / 2 : null
+  }
+  const counts = family.name === "poisson"
+  if (!counts && (family.name !== "gamma" || problem.precision !== null)) return null
+  const constant = counts ? -halfLogTwoPi : family.logDensity(1, 1, 0, 1, phi)
+  let saturated = 0
+  let part = 0
+  for (let i = 0; i < rows; i++) {
+    const response = y[i] as number
+    const own = a[i] as number
+    if (own > 0 && response > 0) {
+      const size = logY === null ? log(response) : (logY[i] as number)
+      part += own * (counts ? constant - 0.5 * size - stirlingError(response) : constant - size)
+    }
+    if (i % 128 === 127) {
+      saturated += part
+      part = 0
+    }
+  }
+  return saturated + part - point.deviance / (2 * (counts ? 1 : phi))
 }
 
 /** The gamma density as C(φ) − log y − u/(2φ), the dear C computed once for each φ in turn: a row at μ = y = 1 has nothing else. */

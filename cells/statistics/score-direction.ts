@@ -1,7 +1,7 @@
 // The score of a direction: would the model be better with v as one more column? No refit is needed. This is the test of the link (v = η²),
 // of a link family (v = ∂g/∂γ) and of terms left out. Rao 1948; Pregibon 1980; conventions, choosing the link.
 
-import { Factor } from "./gram.ts"
+import { blockRows, Factor } from "./gram.ts"
 import { cellTerms, type Equations, linearPredictor, type Point } from "./scoring.ts"
 
 type DirectionScore = {
@@ -48,14 +48,15 @@ export async function directionScore(
     rest[i] = w === 0 ? 0 : (v[i] as number) - mean
     whole += w * (rest[i] as number) * (rest[i] as number)
   }
-  // Projected twice: what the first time leaves by rounding, the second takes.
-  for (let round = 0; round < 2; round++) await project(equations, weight, factor, rest)
-  let [information, u] = [0, 0]
-  for (let i = 0; i < n; i++) {
-    const x = rest[i] as number
-    information += (weight[i] as number) * x * x
-    u += x * (score[i] as number)
+  await project(equations, weight, factor, rest)
+  let information = weightedSquares(weight, rest)
+  // What the first time leaves by rounding the second takes; it is felt only where little else is left.
+  if (!(information > 1e-4 * whole)) {
+    await project(equations, weight, factor, rest)
+    information = weightedSquares(weight, rest)
   }
+  let u = 0
+  for (let i = 0; i < n; i++) u += (rest[i] as number) * (score[i] as number)
   let variance = phi * information
   if (sandwich) {
     variance = 0
@@ -75,6 +76,12 @@ export async function directionScore(
   return { statistic: (u * u) / variance, step: u / information, index: whole > 0 ? information / whole : 0, information }
 }
 
+const weightedSquares = (weight: Float64Array, x: Float64Array): number => {
+  let sum = 0
+  for (let i = 0; i < x.length; i++) sum += (weight[i] as number) * (x[i] as number) * (x[i] as number)
+  return sum
+}
+
 /** v − X(X'WX)⁻¹X'Wv in place. */
 async function project(equations: Equations, weight: Float64Array, factor: Factor, v: Float64Array): Promise<void> {
   if (equations.pace.due(v.length * (20 + 4 * equations.basis.size))) await equations.pace.rest()
@@ -82,17 +89,13 @@ async function project(equations: Equations, weight: Float64Array, factor: Facto
   const weighted = new Float64Array(v.length)
   for (let i = 0; i < v.length; i++) weighted[i] = (weight[i] as number) === 0 ? 0 : (weight[i] as number) * (v[i] as number)
   const gamma = factor.solve(equations.scored(weighted))
-  const fitted = new Float64Array(v.length)
-  linearPredictor(
-    basis,
-    gamma,
-    basis.blocks.map((block) => cellTerms(block, gamma)),
-    null,
-    0,
-    v.length,
-    fitted,
-  )
-  for (let i = 0; i < v.length; i++) v[i] = (v[i] as number) - (fitted[i] as number)
+  const cellValues = basis.blocks.map((block) => cellTerms(block, gamma))
+  const fitted = weighted
+  for (let from = 0; from < v.length; from += blockRows) {
+    const to = Math.min(v.length, from + blockRows)
+    linearPredictor(basis, gamma, cellValues, null, from, to, fitted)
+    for (let i = from; i < to; i++) v[i] = (v[i] as number) - (fitted[i] as number)
+  }
 }
 
 /** Whether the columns span a constant: what is left of it after projection is rounding. */
