@@ -12,8 +12,6 @@ export type FamilyWords = {
   readonly variance: string
   /** The link where none is said: the canonical one, or the one the language takes. */
   readonly link: string
-  /** In the language, but not in this version yet. */
-  readonly later: boolean
 }
 
 export type LinkWords = {
@@ -24,7 +22,6 @@ export type LinkWords = {
   readonly formula: string
   /** The means on which it is defined. */
   readonly mean: "any" | "positive" | "unit"
-  readonly later: boolean
 }
 
 const family = (
@@ -34,7 +31,7 @@ const family = (
   link: string,
   says: string,
   parameters: readonly string[] = [],
-): FamilyWords => ({ name, says, parameters, mean, variance, link, later: name === "quasi_likelihood" })
+): FamilyWords => ({ name, says, parameters, mean, variance, link })
 
 /** By name, in the order of the language. */
 export const families: Readonly<Record<string, FamilyWords>> = byName([
@@ -54,7 +51,6 @@ const link = (name: string, mean: LinkWords["mean"], formula: string, says: stri
   parameters,
   formula,
   mean,
-  later: false,
 })
 
 /** By name, in the order of the language. */
@@ -83,7 +79,8 @@ export function legalLinks(familyName: string): readonly string[] {
   if (known === undefined) return []
   // A normal mean may be any number; its means are then those of the link. Else the link must be defined for every possible mean.
   const legal = Object.values(links).filter(
-    ({ mean, later }) => !later && (known.name === "normal" || known.mean === "unit" || mean === "any" || mean === known.mean),
+    ({ mean }) =>
+      known.name === "normal" || known.name === "quasi_likelihood" || known.mean === "unit" || mean === "any" || mean === known.mean,
   )
   const names = legal.map(({ name }) => name)
   return names.includes(known.link) ? [known.link, ...names.filter((name) => name !== known.link)] : names
@@ -100,7 +97,12 @@ export function linkFormula(says: string): string {
   const words = Object.hasOwn(links, name) ? links[name] : undefined
   if (words === undefined) return says
   const numbers = (found?.[2] ?? "").split(",").map((number) => number.trim())
-  if ((name === "power" || name === "box_cox") && Number(numbers[0] || Number.NaN) === 0) return "ln μ"
+  const first = Number(numbers[0] || Number.NaN)
+  const atNought = formulasAtNought[name]
+  if (first === 0 && atNought !== undefined) return atNought
+  // Two signs one after the other would be hard to read.
+  if (name === "aranda_ordaz" && first < 0) return `ln((1 − (1 − μ)^${-first})/${-first})`
+  if (name === "box_cox" && first < 0) return `(1 − μ^−${-first})/${-first}`
   return words.parameters.reduce((formula, parameter, k) => {
     const number = numbers[k]
     if (number === undefined || number === "") return formula
@@ -118,6 +120,14 @@ const parameterRanges: Readonly<Record<string, { readonly says: string; readonly
   tweedie: { says: "a number between 1 and 2", holds: (p) => p > 1 && p < 2 },
   aranda_ordaz: { says: "a number from −1 on", holds: (a) => a >= -1 },
   symmetric_power: { says: "a number from 0 to 1", holds: (a) => a >= 0 && a <= 1 },
+}
+
+/** What a formula tends to as its parameter does to 0. */
+const formulasAtNought: Readonly<Record<string, string>> = {
+  power: "ln μ",
+  box_cox: "ln μ",
+  aranda_ordaz: "ln(−ln(1 − μ))",
+  symmetric_power: "ln(μ/(1 − μ))",
 }
 
 function byName<W extends { readonly name: string }>(words: readonly W[]): Readonly<Record<string, W>> {

@@ -6,10 +6,10 @@ import { nearest } from "../../runtime/nearest.ts"
 import type { Notice } from "../../runtime/notice.ts"
 import type { Name, Value } from "../../runtime/value.ts"
 import { variablesOf } from "../language/predictor.ts"
-import { canonicalLink, families, links, parameterRange } from "../language/vocabulary.ts"
+import { canonicalLink, families, legalLinks, links, parameterRange } from "../language/vocabulary.ts"
 import { fitPart, type Label, type ModelFinding, type ModelFound, modelIn } from "../model-finding.ts"
 import type { Fit } from "../statistics/fit.ts"
-import { fit, samplingWeights, whyNotReduced } from "../statistics/index.ts"
+import { fit, isLegal, samplingWeights, whyNotReduced } from "../statistics/index.ts"
 import type { FamilySpec, LinkSpec, Problem, Term, Variable } from "../statistics/problem.ts"
 import type { Column } from "../table/column.ts"
 import { isDiscrete } from "./family.ts"
@@ -20,9 +20,11 @@ import { offsetFinding, offsetOf } from "./offset.ts"
 import { ownLinkOf } from "./own-link.ts"
 import { fitNotices, remarks } from "./remarks.ts"
 import { labelOf, numbersOf, responseOf } from "./response.ts"
+import { rowsWhere } from "./response-rows.ts"
 import { type TableHere, tableOf } from "./table.ts"
 import { rowsUsed, weightFaults } from "./used-rows.ts"
 import { clusterCodes, keptRows, numbersAt, variableOf } from "./variables.ts"
+import { varianceOf } from "./variance.ts"
 import { type CallSaid, columnsOf, isOwnName, type ModelSaid } from "./words.ts"
 
 type Inputs = ReadonlyMap<Name, Input>
@@ -55,6 +57,7 @@ export async function found(said: ModelSaid, inputs: Inputs, work: Work): Promis
   const precision = said.precision === null ? null : numbersOf(said.precision, "a precision", table, notice, "precision")
   const sampling = said.sampling === null ? null : numbersOf(said.sampling, "a sampling weight", table, notice, "sampling")
   await work.checkpoint()
+  if (familySpec?.variance !== undefined && link !== null) varianceFaults(said, familySpec, link.spec, notice)
   if (response === null || link === null || familySpec === null || hasFault(notices)) return nothing()
 
   const choice = await rowsUsed(said, table, { response, terms, predictors, offset, repeat, precision, sampling, isControl }, notice, work)
@@ -62,6 +65,12 @@ export async function found(said: ModelSaid, inputs: Inputs, work: Work): Promis
   // A row of no dose has a response and weights like any other.
   const either = choice.control === null ? choice.used : choice.used.map((is, row) => is | ((choice.control as Uint8Array)[row] as number))
   for (const fault of response.faults(either)) notice(fault)
+  if (familySpec.variance !== undefined && responseSaid.type === "column") {
+    const [low, high] = familySpec.variance.range
+    const outside = rowsWhere(response.y, either, (y) => y < low || y > high)
+    if (outside !== null)
+      notice(say.outsideVariance(responseSaid.column.name, familySpec.variance, outside, table.rowName, responseSaid.column.at))
+  }
   weightFaults(said, table, either, { exposure, repeat, precision, sampling }, notice)
   const rows = choice.used.reduce((count, is) => count + is, 0)
   if (hasFault(notices)) return nothing()
@@ -145,6 +154,19 @@ function missingColumns(said: ModelSaid, table: TableHere, notice: Say): void {
   }
 }
 
+/** What cannot be beside a variance: a link that is not defined wherever it is above 0, a rate whose mean may be below 0, a likelihood. */
+function varianceFaults(said: ModelSaid, family: FamilySpec, link: LinkSpec, notice: Say): void {
+  const { range, says } = family.variance as NonNullable<FamilySpec["variance"]>
+  if (!isLegal(family, link)) {
+    const legal = legalLinks(family.name).filter(
+      (name) => links[name]?.parameters.length === 0 && isLegal(family, { name, parameters: [] }),
+    )
+    notice(say.linkNotOfVariance(link.name, says, range, legal, said.link?.at ?? said.family?.at ?? { clause: -1, from: 0, to: 0 }))
+  }
+  if (said.exposure !== null && !(range[0] === 0 && range[1] === Infinity)) notice(say.exposureNotOfFamily(family.name, said.exposure.at))
+  if (said.dispersion?.value === "likelihood") notice(say.dispersionWithoutLikelihood(said.dispersion.at))
+}
+
 type LinkHere = { readonly spec: LinkSpec; readonly says: string; readonly chosen: boolean }
 
 /** The link with numbers for its dials; null once a fault was said. */
@@ -170,7 +192,9 @@ const estimatedSays = ({ name, parameters, estimated }: LinkSpec): string =>
 
 /** The family with numbers for its dials; null once a fault was said. */
 function familyOf(said: CallSaid, inputs: Inputs, notice: Say): FamilySpec | null {
-  return parametersOf(said, "family", inputs, notice)
+  if (said.name !== "quasi_likelihood") return parametersOf(said, "family", inputs, notice)
+  const variance = varianceOf(said, inputs, notice)
+  return variance === null ? null : { name: said.name, parameters: [], variance }
 }
 
 /** Numbers for what stands in the brackets, and the places of what is estimated; null once a fault was said. */

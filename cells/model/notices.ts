@@ -135,15 +135,6 @@ export const noSuchLink = (name: string, near: string | null, known: readonly st
     near === null ? null : puts(clause, at, near),
   )
 
-export const notAvailableYet = (clause: "family" | "link", what: string, instead: readonly string[], at: Place): Notice =>
-  fault(
-    "not-available-yet",
-    clause,
-    at,
-    `The ${clause} ${what} is not available yet.`,
-    `It belongs to the language and comes with a later version; until then there are ${list(instead)}.`,
-  )
-
 const exampleOf = (name: string): string =>
   ({ negative_binomial: "negative_binomial(2)", tweedie: "tweedie(1.5)", stukel: "stukel(0.2, 0.2)" })[name] ?? `${name}(0.5)`
 
@@ -246,6 +237,80 @@ export const linkNotChosen = (link: string, family: string): Notice =>
 
 export const notANumber = (name: Name, clause: string, at: Place): Notice =>
   fault("not-a-number", clause, at, `${name} is not a number here.`, "Name a dial or a value that is a finite number.")
+
+// The variance of quasi-likelihood.
+
+export const varianceMissing = (at: Place): Notice =>
+  fault(
+    "variance-missing",
+    "family",
+    at,
+    "Quasi-likelihood needs the variance as an expression of the mean mu.",
+    "Write such as family quasi_likelihood(mu), or quasi_likelihood(mu*(1 - mu)) for shares.",
+    writes("family", "quasi_likelihood(mu)"),
+  )
+
+export const varianceNotSmooth = (part: string, at: Place): Notice =>
+  fault(
+    "variance-not-smooth",
+    "family",
+    at,
+    `A variance is a smooth function of mu, and ${part} has no place in it.`,
+    "Signs, powers, exp, log, square_root and their like can stand there.",
+  )
+
+export const varianceNotPositive = (says: string, at: Place): Notice =>
+  fault(
+    "variance-not-positive",
+    "family",
+    at,
+    `The variance ${says} is not above 0 for all numbers, nor for all above 0, nor for all shares between 0 and 1.`,
+    "Write a variance that is above 0 wherever a mean can be, such as mu, mu^2 or mu*(1 - mu).",
+  )
+
+export const outsideVariance = (
+  name: Name,
+  { says, range }: { readonly says: string; readonly range: readonly [number, number] },
+  at: RowsAt,
+  row: RowName,
+  place: Place,
+): Notice =>
+  fault(
+    "outside-variance",
+    "response",
+    place,
+    `With the variance ${says} a response is ${rangeSays(range)}, but ${isIn(name, "not", at, row)}.`,
+    "If the entry stands for a missing value, say so in the data with a missing clause.",
+  )
+
+const rangeSays = ([low, high]: readonly [number, number]): string =>
+  high === 1 ? "between 0 and 1" : low === 0 ? "0 or above" : "any number"
+
+export const linkNotOfVariance = (
+  link: string,
+  says: string,
+  range: readonly [number, number],
+  legal: readonly string[],
+  at: Place,
+): Notice =>
+  fault(
+    "link-not-legal",
+    "link",
+    at,
+    `The link ${link} is not defined wherever the variance ${says} is above 0, which is ${range[1] === 1 ? "between 0 and 1" : range[0] === 0 ? "above 0" : "everywhere"}.`,
+    `Links for it are ${list(legal)}.`,
+    legal[0] === undefined ? null : writes("link", legal[0]),
+  )
+
+export const dispersionWithoutLikelihood = (at: Place): Notice =>
+  fault(
+    "dispersion-without-likelihood",
+    "dispersion",
+    at,
+    "Quasi-likelihood has no likelihood from which a dispersion could come.",
+    "Write dispersion pearson, which is also taken where nothing is said.",
+    writes("dispersion", "pearson"),
+  )
 
 // Limits of the mean.
 
@@ -458,7 +523,7 @@ export const notZeroOrOne = (name: Name, at: RowsAt, row: RowName, shares: boole
     place,
     `A binomial response without trials is 0 or 1, but ${isIn(name, "neither", at, row)}.`,
     shares
-      ? `Say successes out of trials, such as: response killed out of n; a share whose trials are not known is family quasi_likelihood(mu*(1 - mu)), which is not available yet.`
+      ? `Say successes out of trials, such as: response killed out of n; a share whose trials are not known is family quasi_likelihood(mu*(1 - mu)).`
       : `Say the trials, such as: response ${name} out of n.`,
   )
 
@@ -477,7 +542,7 @@ export const countNotWhole = (name: Name, family: string, at: RowsAt, row: RowNa
     "response",
     place,
     `The family ${family} is for counts, but ${isIn(name, "not whole", at, row)}.`,
-    "A rate is a count with an exposure clause; other amounts with variance μ are family quasi_likelihood(mu), which is not available yet.",
+    "A rate is a count with an exposure clause; other amounts with variance μ are family quasi_likelihood(mu).",
   )
 
 export const countNegative = (name: Name, at: RowsAt, row: RowName, place: Place): Notice =>

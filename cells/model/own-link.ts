@@ -44,7 +44,7 @@ export function ownLinkOf(
   const [low, high] = found.range
   if (!isLegalOn(family, found.range)) {
     const plain = legal.filter((other) => links[other]?.parameters.length === 0)
-    const goesWith = Object.values(families).filter((other) => !other.later && isLegalOn(other.name, found.range))
+    const goesWith = Object.values(families).filter((other) => isLegalOn(other.name, found.range))
     notice(
       say.linkNotLegal(
         name,

@@ -16,17 +16,19 @@ export function familySaid(slot: CallSlot, statement: Statement, notices: Notice
   if (slot === null) return null
   const { call, at } = slot
   const known = Object.hasOwn(families, call.name) ? families[call.name] : undefined
-  const available = Object.values(families).filter(({ later }) => !later)
+  const available = Object.values(families)
   if (known === undefined) {
     const near = nearest(call.name, Object.keys(families))
     const names = available.map(({ name }) => name)
     notices.push(say.noSuchFamily(call.name, near, names, clauseOf(statement, "family"), { ...at, to: at.from + 1 }))
     return null
   }
-  if (known.later) {
-    const names = available.map(({ name }) => name)
-    notices.push(say.notAvailableYet("family", known.name, names, at))
-    return null
+  if (known.name === "quasi_likelihood") {
+    if (call.expression === null) {
+      notices.push(say.varianceMissing(at))
+      return null
+    }
+    return { name: known.name, parameters: [], expression: call.expression, at }
   }
   // Of a family all parameters may be left out, and are then estimated.
   const parameters: readonly Bound[] = call.bounds ?? known.parameters.map(() => ({ type: "estimate" }))
@@ -43,16 +45,12 @@ export function linkSaid(slot: CallSlot, family: CallSaid | null, statement: Sta
   if (slot === null) return null
   const { call, at } = slot
   const known = Object.hasOwn(links, call.name) ? links[call.name] : undefined
-  const legal = family === null ? Object.keys(links).filter((name) => links[name]?.later === false) : legalLinks(family.name)
+  const legal = family === null ? Object.keys(links) : legalLinks(family.name)
   // A link of the user's own is made by a cell; whether there is one of this name, the evaluation knows.
   if (known === undefined && call.bounds === null && call.expression === null) return { name: call.name, parameters: [], at }
   if (known === undefined) {
     const near = nearest(call.name, Object.keys(links))
     notices.push(say.noSuchLink(call.name, near, legal, clauseOf(statement, "link"), { ...at, to: at.from + 1 }))
-    return null
-  }
-  if (known.later) {
-    notices.push(say.notAvailableYet("link", known.name, legal, at))
     return null
   }
   const parameters = call.bounds ?? []
@@ -63,7 +61,7 @@ export function linkSaid(slot: CallSlot, family: CallSaid | null, statement: Sta
   if (parameters.some(({ type }) => type === "infinity")) notices.push(say.parameterInfinite("link", known.name, at))
   if (family !== null && !legal.includes(known.name)) {
     const plain = legal.filter((name) => links[name]?.parameters.length === 0)
-    const goesWith = Object.values(families).filter(({ name, later }) => !later && legalLinks(name).includes(known.name))
+    const goesWith = Object.values(families).filter(({ name }) => legalLinks(name).includes(known.name))
     const names = goesWith.map(({ name }) => name)
     notices.push(say.linkNotLegal(known.name, family.name, plain, names, at))
   }

@@ -61,7 +61,11 @@ export function summary({ parts: { fit: found }, intervals }: ModelFound): Json 
 
 /** The family as a clause would say it: `negative_binomial(2)`, and without a number where that is estimated. */
 const familySays = ({ family }: Problem): string =>
-  family.parameters.length === 0 || (family.estimated?.length ?? 0) > 0 ? family.name : `${family.name}(${family.parameters.join(", ")})`
+  family.variance !== undefined
+    ? `${family.name}(${family.variance.says})`
+    : family.parameters.length === 0 || (family.estimated?.length ?? 0) > 0
+      ? family.name
+      : `${family.name}(${family.parameters.join(", ")})`
 
 /** What the trail notes of a fit that was shown. */
 export function tried({ parts: { fit: found } }: ModelFound): readonly Json[] {

@@ -21,7 +21,13 @@ export type ResponseSaid =
   | { readonly type: "level"; readonly column: Named; readonly level: string; readonly at: Place }
 
 /** A family or a link by name; parameters are numbers or the names of dials. */
-export type CallSaid = { readonly name: string; readonly parameters: readonly Bound[]; readonly at: Place }
+export type CallSaid = {
+  readonly name: string
+  readonly parameters: readonly Bound[]
+  /** The variance of quasi_likelihood, in mu. */
+  readonly expression?: Expression
+  readonly at: Place
+}
 
 export type DispersionSaid = "one" | "pearson" | "deviance" | "likelihood" | number
 
@@ -150,6 +156,9 @@ export const modelWords: Words<ModelSaid> = {
     }
     // A bare name in an expression is a column or a cell; which, the table decides.
     for (const { name, at } of offset) if (name !== said.name) uses.push({ name, parts: "all", either: true, at })
+    for (const { name, at } of said.family?.expression === undefined ? [] : namesIn(said.family.expression)) {
+      if (name !== "mu") uses.push({ name, parts: "all", either: false, at })
+    }
     const limits = said.limits === null ? [] : [said.limits.low, said.limits.high]
     for (const bound of [...(said.family?.parameters ?? []), ...(said.link?.parameters ?? []), ...limits]) {
       if (bound.type === "cell") uses.push({ name: bound.name, parts: "all", either: false, at: bound.at })

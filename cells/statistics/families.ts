@@ -5,11 +5,21 @@ import { log, log1p } from "./elementary.ts"
 import type { Family } from "./family.ts"
 import { negativeBinomial } from "./negative-binomial.ts"
 import type { FamilySpec } from "./problem.ts"
+import { quasiLikelihood } from "./quasi-likelihood.ts"
 import { devianceTerm, halfLogTwoPi, stirlingError } from "./special.ts"
 import { tweedie } from "./tweedie.ts"
 
 /** Names of all families, in the order in which they are offered. */
-export const familyNames = ["normal", "binomial", "poisson", "gamma", "inverse_gaussian", "negative_binomial", "tweedie"] as const
+export const familyNames = [
+  "normal",
+  "binomial",
+  "poisson",
+  "gamma",
+  "inverse_gaussian",
+  "negative_binomial",
+  "tweedie",
+  "quasi_likelihood",
+] as const
 export type FamilyName = (typeof familyNames)[number]
 
 export const isFamilyName = (name: string): name is FamilyName => (familyNames as readonly string[]).includes(name)
@@ -23,6 +33,7 @@ export const familyParameters: Readonly<Record<FamilyName, number>> = {
   inverse_gaussian: 0,
   negative_binomial: 1,
   tweedie: 1,
+  quasi_likelihood: 0,
 }
 
 /** @throws RangeError for a name that is none: what a statement says is checked before */
@@ -33,6 +44,10 @@ export const familyOf = (spec: FamilySpec): Family => {
   // With k at infinity it is Poisson's law.
   if (name === "negative_binomial")
     return parameters[0] === Infinity ? { ...poisson, name: "negative_binomial(∞)" } : negativeBinomial(parameters[0] as number)
+  if (name === "quasi_likelihood") {
+    if (!spec.variance) throw new RangeError("Quasi-likelihood needs a variance.")
+    return quasiLikelihood(spec.variance)
+  }
   if (name === "tweedie") return tweedie(parameters[0] as number)
   return families[name]
 }
@@ -118,7 +133,7 @@ const inverseGaussian: Family = {
     -halfLogTwoPi - 0.5 * log(phi) - 1.5 * log(y) - (((y - mu) / mu) * ((y - mu) / mu)) / y / (2 * phi),
 }
 
-const families: Readonly<Record<Exclude<FamilyName, "negative_binomial" | "tweedie">, Family>> = {
+const families: Readonly<Record<Exclude<FamilyName, "negative_binomial" | "tweedie" | "quasi_likelihood">, Family>> = {
   normal,
   binomial,
   poisson,

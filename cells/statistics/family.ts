@@ -19,4 +19,6 @@ export interface Family {
   unitDeviance(y: number, mu: number, rest: number): number
   /** log f(y; μ, φ/w) with every constant; `trials` is m. */
   logDensity(y: number, mu: number, rest: number, trials: number, phi: number): number
+  /** Quasi-likelihood: whether the deviance of this response is infinite whatever the mean, so that only differences of it mean something. */
+  isEndless?(y: number): boolean
 }

@@ -67,6 +67,7 @@ export async function findings(given: Findings): Promise<Fit> {
   const means = wholeMeans(given, point)
   const moved = limit.type === "infinite" ? movedRows(climb, limit.rows, means.mu) : { deviance: 0, pearson: 0 }
   const perfect = !family.discrete && isPerfect(responses, means.mu)
+  const endless = family.isEndless !== undefined && responses.y.some((y, i) => (responses.a[i] as number) > 0 && family.isEndless?.(y))
   const control = controlSums(problem)
   const deviance = perfect ? 0 : (point?.deviance ?? 0) + moved.deviance + control.deviance
   const pearson = perfect ? 0 : (point?.pearson ?? 0) + moved.pearson + control.pearson
@@ -75,7 +76,14 @@ export async function findings(given: Findings): Promise<Fit> {
     problem.family.name === "tweedie" && deviance > 0
       ? (await tweedieAtBest(problem, means.mu, deviance / Math.max(1, n), climb.equations.pace)).phi
       : dispersionByLikelihood(problem, deviance, n)
-  const estimate = problem.dispersion === "likelihood" ? ml : df > 0 ? (problem.dispersion === "deviance" ? deviance : pearson) / df : null
+  const estimate =
+    problem.dispersion === "likelihood"
+      ? ml
+      : problem.dispersion === "deviance" && endless
+        ? null
+        : df > 0
+          ? (problem.dispersion === "deviance" ? deviance : pearson) / df
+          : null
   const phi = rule.given ?? estimate
 
   const clusters = problem.standardErrors === "sandwich" && problem.cluster ? new Set(problem.cluster).size : null
@@ -127,9 +135,9 @@ export async function findings(given: Findings): Promise<Fit> {
     }),
     family: problem.family,
     link: problem.link,
-    deviance: Number.isFinite(deviance) ? deviance : null,
+    deviance: Number.isFinite(deviance) && !endless ? deviance : null,
     logLikelihood,
-    interceptOnly: constant ? { deviance: none ? none.deviance + control.deviance : null, df: n - 1 } : null,
+    interceptOnly: constant ? { deviance: none && !endless ? none.deviance + control.deviance : null, df: n - 1 } : null,
     aic: criteria ? 2 * counted - 2 * logLikelihood : null,
     bic: criteria ? log(trialsCounted(problem)) * counted - 2 * logLikelihood : null,
     pearson,

@@ -9,9 +9,20 @@ import type { FamilySpec, LinkSpec } from "./problem.ts"
 /** Whether the link is defined for every mean the family can have. Conventions: README.md, links. */
 export const isLegal = (family: FamilySpec, link: LinkSpec): boolean => {
   if (!isFamilyName(family.name)) return false
+  if (family.variance !== undefined) return isDefinedOn(family.variance.range, link)
   if (link.own !== undefined) return isLegalOn(family.name, link.own.range)
   if (!isLinkName(link.name)) return false
-  return family.name === "normal" || family.name === "binomial" || !ontoShares.has(link.name)
+  return anyLink.has(family.name) || !ontoShares.has(link.name)
+}
+
+/** Families that take every link; quasi-likelihood takes those defined wherever its variance is above 0, which no one knows of the name alone. */
+const anyLink: ReadonlySet<string> = new Set(["normal", "binomial", "quasi_likelihood"])
+
+const isDefinedOn = ([low, high]: readonly [number, number], link: LinkSpec): boolean => {
+  if (link.own !== undefined) return link.own.range[0] <= low && link.own.range[1] >= high
+  const from = link.name === "identity" ? Number.NEGATIVE_INFINITY : 0
+  const to = ontoShares.has(link.name) ? 1 : Number.POSITIVE_INFINITY
+  return isLinkName(link.name) && from <= low && to >= high
 }
 
 /** A link of one's own: for shares and for normal means it may leave some out, which the fit then cannot have; elsewhere it takes all. */
@@ -40,7 +51,12 @@ export const canonicalLink = (family: FamilySpec): LinkSpec => {
 /** Whether the link is canonical, up to a linear change: `power(−1)` is the reciprocal, and so is `box_cox(−1)`. */
 export const isCanonical = (family: FamilySpec, link: LinkSpec): boolean => {
   if (link.own !== undefined) return link.own.canonical === family.name
-  if (family.name === "negative_binomial" || (link.limits && (link.limits.low !== 0 || link.limits.high !== 1))) return false
+  if (
+    family.name === "negative_binomial" ||
+    family.name === "quasi_likelihood" ||
+    (link.limits && (link.limits.low !== 0 || link.limits.high !== 1))
+  )
+    return false
   if (family.name === "tweedie") return powerOf(link) === 1 - (family.parameters[0] ?? Number.NaN)
   return canonicalLink(family).name === plainLink(link).name
 }
@@ -62,6 +78,7 @@ const canonicalLinks: Readonly<Record<(typeof familyNames)[number], LinkName>> =
   inverse_gaussian: "reciprocal_square",
   negative_binomial: "log",
   tweedie: "log",
+  quasi_likelihood: "identity",
 }
 
 /** Links from the open interval (0, 1): counts and amounts can have means above 1. */

@@ -1,13 +1,21 @@
 // A problem: everything a fit needs, as numbers. All columns have the same length and hold the rows used, no missing value among them.
 // Symbols are those of the README: y response, m trials, R repeat, w precision, o offset, E exposure.
 
-import type { OwnLink } from "./own-link.ts"
+import type { OwnLink, Program } from "./own-link.ts"
 
 /**
  * Families and links by name, with their parameters in order. Of a parameter that is estimated the number here is where its search starts, and in
  * the problem of a finding where it ended; which those are stands beside, by their places.
  */
-export type FamilySpec = { readonly name: string; readonly parameters: readonly number[]; readonly estimated?: readonly number[] }
+export type FamilySpec = {
+  readonly name: string
+  readonly parameters: readonly number[]
+  readonly estimated?: readonly number[]
+  /** Of quasi_likelihood. */
+  readonly variance?: Variance
+}
+/** V(μ) and V'(μ) as a program, and the means for which V is above 0. */
+export type Variance = { readonly says: string; readonly program: Program; readonly range: readonly [number, number] }
 /** A link of the user's own carries itself, and has no parameters. */
 export type LinkSpec = {
   readonly name: string

@@ -50,8 +50,18 @@ describe("faults of the statement", () => {
       "family poisson",
     ],
     [
+      "family quasi_likelihood",
+      'fault variance-missing at "quasi_likelihood": Quasi-likelihood needs the variance as an expression of the mean mu.',
       "family quasi_likelihood(mu)",
-      'fault not-available-yet at "quasi_likelihood(mu)": The family quasi_likelihood is not available yet.',
+    ],
+    [
+      "family quasi_likelihood(abs(mu))",
+      'fault variance-not-smooth at "quasi_likelihood(abs(mu))": A variance is a smooth function of mu, and abs(mu) has no place in it.',
+      null,
+    ],
+    [
+      "family quasi_likelihood(mu - 3)",
+      'fault variance-not-positive at "quasi_likelihood(mu - 3)": The variance mu - 3 is not above 0 for all numbers, nor for all above 0, nor for all shares between 0 and 1.',
       null,
     ],
     ["family poisson(2)", 'fault parameters-off at "poisson(2)": The family poisson has no parameter.', "family poisson"],
@@ -93,7 +103,7 @@ describe("faults of the statement", () => {
   it("lists the links that are legal", async () => {
     const [notice] = (await finding("response buds\nfamily gamma\nlink probit\npredictor frost", beds)).notices
     expect(notice?.hint).toBe(
-      "Links for gamma are reciprocal, identity, log, reciprocal_square and square_root; probit goes with normal and binomial.",
+      "Links for gamma are reciprocal, identity, log, reciprocal_square and square_root; probit goes with normal, binomial and quasi_likelihood.",
     )
   })
 

@@ -51,7 +51,7 @@ const points: Readonly<Record<string, { readonly y: readonly number[]; readonly 
 }
 
 describe("families", () => {
-  it.each(familyNames)("%s obeys the laws of deviance, variance and density", (name) => {
+  it.each(familyNames.filter((name) => name !== "quasi_likelihood"))("%s obeys the laws of deviance, variance and density", (name) => {
     const it = family(name)
     const { y: responses, mu: means, trials } = points[name] as (typeof points)[string]
     for (const y of responses) {

@@ -16,7 +16,7 @@ describe("legal pairs", () => {
     expect(legalLinks(spec("inverse_gaussian"))[0]).toBe("reciprocal_square")
     expect(new Set(legalLinks(spec("gamma")))).toEqual(new Set(legalLinks(spec("poisson"))))
     expect(isLegal(spec("gamma"), spec("probit"))).toBe(false)
-    expect(legalFamilies(spec("cloglog"))).toEqual(["normal", "binomial"])
+    expect(legalFamilies(spec("cloglog"))).toEqual(["normal", "binomial", "quasi_likelihood"])
   })
 
   it("knows no family and no link that is not there", () => {
@@ -32,6 +32,7 @@ describe("legal pairs", () => {
       "reciprocal_square",
       "log",
       "log",
+      "identity",
     ])
     expect(isCanonical(spec("tweedie", 1.5), spec("power", -0.5))).toBe(true)
     expect(isCanonical(spec("tweedie", 1.5), spec("log"))).toBe(false)

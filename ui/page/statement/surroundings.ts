@@ -40,9 +40,7 @@ export function surroundings(desk: Desk, id: CellId): Surroundings | null {
 function linksFor(names: readonly string[]): ReturnType<Surroundings["links"]> {
   return names
     .flatMap((name) => links[name] ?? [])
-    .flatMap(({ name, says, formula, parameters, later }) =>
-      later ? [] : [{ name, says: `${formula} · ${says}`, takes: parameters.length > 0 }],
-    )
+    .map(({ name, says, formula, parameters }) => ({ name, says: `${formula} · ${says}`, takes: parameters.length > 0 }))
 }
 
 /** The cell itself and all it reads, however distantly, nearest first. */
