@@ -128,9 +128,11 @@ export function curveOf(
     curve.etaLow[i] = eta - half
     curve.etaHigh[i] = eta + half
     curve.mu[i] = gives ? mean : Number.NaN
-    const ends = [eta - half, eta + half].map((end) => (gives ? meanWithin(link, possible, end) : Number.NaN))
-    curve.muLow[i] = Math.min(...ends)
-    curve.muHigh[i] = Math.max(...ends)
+    // Written out without arrays: this runs for every candidate at every step of a drag.
+    const below = gives ? meanWithin(link, possible, eta - half) : Number.NaN
+    const above = gives ? meanWithin(link, possible, eta + half) : Number.NaN
+    curve.muLow[i] = Math.min(below, above)
+    curve.muHigh[i] = Math.max(below, above)
   }
   return curve
 }

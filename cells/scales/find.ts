@@ -64,7 +64,7 @@ export async function found(said: ScalesSaid, inputs: Inputs, work: Work): Promi
   const meanwhile: CandidateFound[] = []
   for (const { spec, says } of others) {
     const known = before.get(says)?.fit ?? null
-    meanwhile.push(known === null ? plot.unfitted(spec, says) : await plot.candidate(spec, says, false, known))
+    meanwhile.push(known === null ? plot.unfitted(spec, says) : await plot.candidate(spec, says, false, known, own))
   }
   const soFar: Outcome<ScalesFinding> = {
     ok: true,

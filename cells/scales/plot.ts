@@ -53,7 +53,11 @@ export class Plot {
     })
   }
 
-  async candidate(spec: LinkSpec, says: string, own: boolean, of: Fit): Promise<CandidateFound> {
+  /**
+   * A candidate drawn from its fit. In a drag the others take their points from `like`, the model's own: where points stand on the mean scale
+   * does not depend on the link, only a preview shows working responses of another one, and a hand on a dial is not on the strip.
+   */
+  async candidate(spec: LinkSpec, says: string, own: boolean, of: Fit, like: CandidateFound | null = null): Promise<CandidateFound> {
     const { model, plan, grid, work } = this
     const link = this.link(spec, of)
     const c = criticalValue(of, model.problem.confidence)
@@ -65,7 +69,7 @@ export class Plot {
         ? await averagedLine(model, of, link, plan.of, grid, code, () => work.checkpoint())
         : heldLine(model, of, plan.of, grid, code)
       curves.push(curveOf(link, this.possible, line, c, grid, level, inside))
-      if (!plan.points || rows.length === 0) continue
+      if (!plan.points || rows.length === 0 || like !== null) continue
       const known = plan.averaged ? await this.averagedAt(of, link, rows, code, line) : null
       const at = (x: Float64Array): Float64Array =>
         known === null ? heldLine(model, of, plan.of, x, code).eta : along(known.x, known.eta, x)
@@ -83,7 +87,7 @@ export class Plot {
       fitted: true,
       curves,
       points,
-      bridge: this.bridge(link, curves, points),
+      bridge: this.bridge(link, curves, like?.points ?? points),
       middle: { eta: link.eta(mean), slope: 1 / link.slope(link.eta(mean)) },
       fit: own || model.problem.rows > keptRows ? null : of,
     }
@@ -134,9 +138,10 @@ export class Plot {
 
   /** The bridge over what curves and points span; without them, over what was observed. */
   private bridge(link: Link, curves: readonly ScalesCurve[], points: CandidateFound["points"]): Bridge {
-    const seen = Float64Array.from(this.model.problem.y, (_, row) => observedMean(this.model.problem, row))
+    const { problem } = this.model
     const drawn = [...curves.flatMap(({ mu }) => finite(mu)), ...points.flatMap(({ mean }) => finite(mean))]
-    return bridgeOf(link, this.possible, ends(drawn.length === 0 ? seen : Float64Array.from(drawn)))
+    const seen = (): Float64Array => Float64Array.from(problem.y, (_, row) => observedMean(problem, row))
+    return bridgeOf(link, this.possible, ends(drawn.length === 0 ? seen() : Float64Array.from(drawn)))
   }
 }
 
