@@ -26,9 +26,9 @@ export async function nullModel(responses: Responses, pace: Pace, phi: (point: P
     total += size
   }
   const mean = sum / total
-  // Counts that are all nought, or shares that are all at one end: the deviance tends to 0 there, whatever the offsets are.
-  if (family.discrete && mean === 0 && reaches(responses, 0)) return { eta: link.eta(0), deviance: 0 }
-  if (family.name === "binomial" && mean === 1 && reaches(responses, 1)) return { eta: link.eta(1), deviance: 0 }
+  // Counts that are all nought, or shares that are all at one end.
+  if (family.discrete && mean === 0 && reaches(responses, 0)) return atEnd(responses, 0)
+  if (family.name === "binomial" && mean === 1 && reaches(responses, 1)) return atEnd(responses, 1)
   let eta = link.eta(mean)
   const plain = offset === null && scale === null
   if (plain && eta > responses.low && eta < responses.high) {
@@ -69,6 +69,28 @@ export async function nullModel(responses: Responses, pace: Pace, phi: (point: P
   if (!(await equations.fill(point, "expected"))) return null
   const found = await maximum(equations, point, phi)
   return found.end === "arrived" ? { eta: found.point.gamma[0] as number, deviance: found.point.deviance } : null
+}
+
+/**
+ * The best constant where all responses are at one end of the means. An end at an infinite η is tended to whatever the offsets are; one at a
+ * finite η is reached by the row with the outermost offset, and the others stay off it.
+ */
+function atEnd({ family, link, y, a, offset, scale, rows, low, high }: Responses, end: number): NullModel | null {
+  const eta = link.eta(end)
+  if (offset === null || !Number.isFinite(eta)) return { eta, deviance: 0 }
+  let outermost = eta === high ? Number.NEGATIVE_INFINITY : Number.POSITIVE_INFINITY
+  for (const o of offset) outermost = eta === high ? Math.max(outermost, o) : Math.min(outermost, o)
+  const constant = eta - outermost
+  let deviance = 0
+  for (let i = 0; i < rows; i++) {
+    const own = (offset[i] as number) - outermost
+    if (own === 0) continue
+    const at = eta + own
+    if (!(at > low && at < high)) return null
+    const mean = link.mean(at) * (scale ? (scale[i] as number) : 1)
+    deviance += (a[i] as number) * family.unitDeviance(y[i] as number, mean, link.complement === null ? 1 - mean : link.complement(at))
+  }
+  return { eta: constant, deviance }
 }
 
 /** Whether this end of the means is among those the link can tend to. */

@@ -234,4 +234,20 @@ describe("what is odd but not wrong", () => {
     )
     expect(through.interceptOnly).toBeNull()
   })
+
+  // With offsets only the outermost row reaches an end of the means that lies at a finite η, by hand: μ is 1, 0.75 and 0.5 on the line, and
+  // (1)², (0.75)² and (0.5)² under the square root; counts of 0 have means 0, 0.25 and 0.5.
+  it.each([
+    ["binomial", "identity", 1, -2 * (Math.log(0.75) + Math.log(0.5))],
+    ["binomial", "square_root", 1, -4 * (Math.log(0.75) + Math.log(0.5))],
+    ["poisson", "identity", 0, 2 * (0.25 + 0.5)],
+    ["binomial", "logit", 1, 0],
+    ["poisson", "log", 0, 0],
+  ])("has a null deviance for %s with %s where every response is %d, offsets kept", async (family, link, y, deviance) => {
+    const found = await fitted(
+      problem({ family, link, terms: ["x"], y: [y, y, y], offset: Float64Array.of(0.5, 0.25, 0), variables: { x: numbers([1, 2, 4]) } }),
+    )
+    expect(found.interceptOnly?.deviance).toBeCloseTo(deviance, 13)
+    expect(found.deviance).toBeLessThanOrEqual(deviance)
+  })
 })
