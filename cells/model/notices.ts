@@ -224,13 +224,18 @@ export const linkReachesBeyond = (name: Name, family: string, low: number | null
   )
 }
 
+/** The link these families take when none is said is not their canonical one, which few would choose. */
+const withoutCanonical = /^(negative_binomial|tweedie|quasi_likelihood)\b/
+
 export const linkNotChosen = (link: string, family: string): Notice =>
   notice(
     "remark",
     "link-not-chosen",
     null,
     heading,
-    `Nobody chose a link, so the canonical one of ${family} was taken: ${link}.`,
+    withoutCanonical.test(family)
+      ? `Nobody chose a link, so ${link} was taken, as for every model of ${family} that names none.`
+      : `Nobody chose a link, so the canonical one of ${family} was taken: ${link}.`,
     "Write it out if it is meant, or compare others on the two scales.",
     writes("link", link),
   )

@@ -329,6 +329,13 @@ describe("warnings and remarks", () => {
     expect(mended(outcome, outcome.notices[0]?.mend ?? null)).toMatch(/^ {2}link log$/m)
   })
 
+  it("calls no link canonical that is not", async () => {
+    const outcome = await finding("response buds\nfamily negative_binomial(2)\npredictor frost", beds)
+    expect(told(outcome).filter((text) => text.includes("link-not-chosen"))).toEqual([
+      "remark link-not-chosen: Nobody chose a link, so log was taken, as for every model of negative_binomial(2) that names none.",
+    ])
+  })
+
   it("says that a precision counts absolutely where the dispersion is one", async () => {
     expect(codes(await finding(`${counts}\nprecision hours`, beds))).toEqual(["precision-counts"])
     expect(codes(await finding("response hours\nfamily gamma\nlink log\npredictor frost\nprecision pots", beds))).toEqual([])
