@@ -74,9 +74,14 @@ function directionSays(directions: Evidence["directions"]): string {
 /** Multipliers are by row: the score of its linear predictor, taken outwards. */
 function edgeSays(edge: Evidence["edge"], { records }: ModelFinding): string {
   const named = [...edge].sort((a, b) => (records[a.row] ?? 0) - (records[b.row] ?? 0)).slice(0, mostNamed)
-  const says = named.map(({ row, multiplier }) => `${writtenCount((records[row] ?? 0) + 1)} (multiplier ${multiplierSays(multiplier)})`)
+  const [first] = edge
+  const alike = first !== undefined && edge.length > 1 && edge.every(({ multiplier }) => multiplier === first.multiplier)
+  const says = named.map(({ row, multiplier }) => {
+    const number = writtenCount((records[row] ?? 0) + 1)
+    return alike ? number : `${number} (multiplier ${multiplierSays(multiplier)})`
+  })
   const more = edge.length - named.length
-  const rows = list(more > 0 ? [...says, `${writtenCount(more)} more`] : says)
+  const rows = `${list(more > 0 ? [...says, `${writtenCount(more)} more`] : says)}${alike ? ` (multiplier ${multiplierSays(first.multiplier)} each)` : ""}`
   return `The mean of ${edge.length === 1 ? "row" : "rows"} ${rows} is held at the end of its range: since no multiplier is below 0, no step inwards raises the likelihood.`
 }
 

@@ -2,8 +2,10 @@
 // likelihood would still rise beyond. Found by Newton's method with those rows held at the edge, verified by the multipliers of the rows
 // (Karush-Kuhn-Tucker); what is not verified is not called a maximum.
 
+import { alongBarrier, type BarrierEnd } from "./barrier.ts"
 import { definiteSolver } from "./definite.ts"
-import type { Gram } from "./gram.ts"
+import { Factor, type Gram, gramOf, rangeSums, scoreSums } from "./gram.ts"
+import { nonnegativeCombination } from "./nonnegative.ts"
 import { directionOf } from "./recession.ts"
 import type { Responses } from "./rows.ts"
 import { dot, Equations, type Point } from "./scoring.ts"
@@ -29,9 +31,9 @@ const nearEdge = 1e-3
  * @param stuck  the last point inside
  */
 export async function edgeMaximum(equations: Equations, stuck: Point): Promise<Edge | null> {
-  const { responses, basis } = equations
+  const { responses } = equations
   const { low, high, rows, a } = responses
-  if (basis.size > mostColumns || (!Number.isFinite(low) && !Number.isFinite(high))) return null
+  if (!mayHaveEdge(equations)) return null
   // Shares have a scale of their own, so that all of them may be at the edge.
   const spread = Math.max(spreadOf(stuck.state.eta), responses.family.name === "binomial" ? 1e-3 : 0)
   const active = new Map<number, number>()
@@ -41,29 +43,140 @@ export async function edgeMaximum(equations: Equations, stuck: Point): Promise<E
     const end = eta - low < high - eta ? low : high
     if (Math.abs(eta - end) <= nearEdge * spread && agrees(responses, i, end)) active.set(i, end)
   }
-  let gamma = stuck.gamma.slice()
+  return maximumFrom(equations, stuck.gamma, active)
+}
+
+/** Where the way to the edge leads when every row that may be there is kept off it at first; null where there is no edge. */
+export async function edgeAlongBarrier(equations: Equations, inside: Point): Promise<BarrierEnd | null> {
+  return mayHaveEdge(equations) ? alongBarrier(equations, inside, (row, end) => agrees(equations.responses, row, end)) : null
+}
+
+/** The same maximum, with the rows that lean on the edge known. */
+export const leaningMaximum = (equations: Equations, { gamma, leaning }: BarrierEnd): Promise<Edge | null> =>
+  maximumFrom(equations, gamma, new Map(leaning))
+
+const mayHaveEdge = ({ basis, responses: { low, high } }: Equations): boolean =>
+  basis.size <= mostColumns && (Number.isFinite(low) || Number.isFinite(high))
+
+/** From some rows held, letting go and taking up others until the multipliers agree. */
+async function maximumFrom(equations: Equations, from: Float64Array, active: Map<number, number>): Promise<Edge | null> {
+  const { responses } = equations
+  let gamma = from.slice()
   for (let round = 0; round < 60; round++) {
     const found = await heldMaximum(equations, gamma, active)
     if (!found) return null
-    const { point, multipliers, iterations, blocked } = found
+    const { point, iterations, blocked } = found
     gamma = point.gamma.slice()
     if (blocked !== null) {
       if (!agrees(responses, blocked.row, blocked.end)) return null
       active.set(blocked.row, blocked.end)
       continue
     }
-    // The row that pulls inside the most is let go.
-    let worst: number | null = null
-    for (const [row, lambda] of multipliers)
-      if (lambda < -1e-9 && (worst === null || lambda < (multipliers.get(worst) as number))) worst = row
-    if (worst === null) {
-      if (multipliers.size === 0) return null
-      return { point, active: [...multipliers].map(([row, multiplier]) => ({ row, multiplier })), iterations }
+    if (active.size === 0) return null
+    const pull = multipliersAt(equations, point, active)
+    if (pull.inside.length === 0) {
+      const rows = [...pull.multipliers].map(([row, multiplier]) => ({ row, multiplier }))
+      return { point, active: rows, iterations }
     }
-    active.delete(worst)
+    for (const row of pull.inside) active.delete(row)
     if (active.size === 0) return null
   }
   return null
+}
+
+/** A score of this share of its parts, and of what is its standard deviation, is rounding. */
+const noPull = 1e-8
+
+/**
+ * Multipliers λ ≥ 0 of the rows held, with ∇ℓ = Σ λ·n; where there are none, the rows that what is left of ∇ℓ leads inside. Rows whose likelihood
+ * falls without bound at the edge are held whatever the others do.
+ */
+function multipliersAt(
+  equations: Equations,
+  { score, gram }: Point,
+  active: ReadonlyMap<number, number>,
+): { readonly multipliers: ReadonlyMap<number, number>; readonly inside: readonly number[] } {
+  const { responses } = equations
+  const p = score.length
+  // Rows that are the same in the basis have one normal, and share its multiplier by what they weigh.
+  const normals = new Map<
+    string,
+    { readonly unit: Float64Array; readonly length: number; readonly rows: number[]; weight: number; steep: boolean }
+  >()
+  const total = score.slice()
+  const full = gram.full()
+  const size = score.map((u, j) => Math.abs(u) + Math.sqrt(full[j * p + j] as number))
+  for (const [row, end] of active) {
+    const out = end === responses.high ? 1 : -1
+    const x = rowOf(equations, row)
+    const own = out * ownSlope(responses, row, end)
+    const length = Math.sqrt(dot(x, x))
+    if (!(length > 0)) continue
+    for (let j = 0; j < p && Number.isFinite(own); j++) {
+      const part = own * out * (x[j] as number)
+      total[j] = (total[j] as number) + part
+      size[j] = (size[j] as number) + Math.abs(part)
+    }
+    const key = `${out} ${x.join(" ")}`
+    const known = normals.get(key)
+    const weight = responses.a[row] as number
+    if (known) {
+      known.rows.push(row)
+      known.weight += weight
+    } else
+      normals.set(key, { unit: x.map((v) => (out * v) / length), length, rows: [row], weight, steep: own === Number.POSITIVE_INFINITY })
+  }
+  const all = [...normals.values()]
+  const { lambda, left } = nonnegativeCombination(
+    all.map(({ unit }) => unit),
+    total,
+  )
+  const most = Math.sqrt(dot(size, size))
+  const far = Math.sqrt(dot(left, left))
+  const multipliers = new Map<number, number>()
+  all.forEach(({ rows, length, weight, steep }, k) => {
+    for (const row of rows) {
+      const share = ((lambda[k] as number) / length) * ((responses.a[row] as number) / weight)
+      multipliers.set(row, steep ? Number.POSITIVE_INFINITY : share < 1e-12 * (responses.a[row] as number) ? 0 : share)
+    }
+  })
+  if (!(far > noPull * most)) return { multipliers, inside: [] }
+  const inside = all.flatMap(({ unit, rows, steep }) => (!steep && dot(unit, left) < -1e-6 * far ? rows : []))
+  return { multipliers, inside }
+}
+
+/**
+ * The maximum where every response is at the same end of what is possible, and so is every mean: all counts 0 under the identity. Null unless
+ * all responses are and the columns can bring all means there.
+ */
+export async function wholeEdge(equations: Equations): Promise<Edge | null> {
+  const { responses, basis, pace } = equations
+  const { low, high, rows, a, offset } = responses
+  const end = [low, high].find((each) => Number.isFinite(each) && a.every((own, i) => own === 0 || agrees(responses, i, each)))
+  if (end === undefined) return null
+  const factor = Factor.of(gramOf(basis.layout, rangeSums(basis.layout, new Float64Array(rows).fill(1), new Float64Array(rows))))
+  if (!factor) return null
+  const masked = new Equations(basis, { ...responses, a: new Float64Array(rows) }, pace)
+  const point = masked.point()
+  // Least squares, and once more on what it left.
+  let left = Float64Array.from({ length: rows }, (_, i) => end - (offset ? (offset[i] as number) : 0))
+  const size = left.reduce((most, value) => Math.max(most, Math.abs(value)), Number.MIN_VALUE)
+  for (let round = 0; round < 2; round++) {
+    const step = factor.solve(scoreSums(basis.layout, left))
+    for (let j = 0; j < step.length; j++) point.gamma[j] = (point.gamma[j] as number) + (step[j] as number)
+    const off = directionOf(equations, step)
+    left = left.map((value, i) => value - (off[i] as number))
+  }
+  if (left.some((value, i) => (a[i] as number) > 0 && Math.abs(value) > 1e-12 * size)) return null
+  if (!(await masked.fill(point, "observed"))) return null
+  const out = end === high ? 1 : -1
+  const active: { row: number; multiplier: number }[] = []
+  for (let row = 0; row < rows; row++) {
+    point.state.eta[row] = end
+    point.state.mu[row] = (responses.scale ? (responses.scale[row] as number) : 1) * responses.link.mean(end)
+    if ((a[row] as number) > 0) active.push({ row, multiplier: out * ownSlope(responses, row, end) || 0 })
+  }
+  return { point, active, iterations: 0 }
 }
 
 /** Whether a row has a finite deviance with its mean at this end. */
@@ -80,7 +193,6 @@ const agrees = ({ family, link, y, scale }: Responses, row: number, end: number)
 
 type Held = {
   readonly point: Point
-  readonly multipliers: Map<number, number>
   readonly iterations: number
   /** A row that came to the edge on the way. */
   readonly blocked: { readonly row: number; readonly end: number } | null
@@ -106,7 +218,7 @@ async function heldMaximum(equations: Equations, from: Float64Array, active: Rea
     for (let j = 0; j < p; j++) point.gamma[j] = (point.gamma[j] as number) + (step.delta[j] as number)
   }
   const blockedAtStart = await firstOutside(inner, from, point.gamma)
-  if (blockedAtStart) return { point, multipliers: new Map(), iterations: 0, blocked: blockedAtStart }
+  if (blockedAtStart) return { point, iterations: 0, blocked: blockedAtStart }
   if (!(await inner.fill(point, "observed"))) return null
   let information: "observed" | "expected" = "observed"
   let last = false
@@ -136,18 +248,11 @@ async function heldMaximum(equations: Equations, from: Float64Array, active: Rea
       }
     }
     if (arrived || last) {
-      const multipliers = new Map<number, number>()
-      held.forEach((row, k) => {
-        // λ on −∇ of the others, and the row's own slope, both along the normal that points out.
-        const end = active.get(row) as number
-        const out = end === responses.high ? 1 : -1
-        multipliers.set(row, out * ((step?.lambda[k] as number) + ownSlope(responses, row, end)))
-      })
       for (const [row, end] of active) {
         point.state.eta[row] = end
         point.state.mu[row] = (responses.scale ? (responses.scale[row] as number) : 1) * responses.link.mean(end)
       }
-      return { point, multipliers, iterations, blocked: null }
+      return { point, iterations, blocked: null }
     }
     let share = 1
     let blocked: { row: number; end: number } | null = null
@@ -174,7 +279,7 @@ async function heldMaximum(equations: Equations, from: Float64Array, active: Rea
       share /= 2
       blocked = null
     }
-    if (blocked) return { point: taken ? trial : point, multipliers: new Map(), iterations, blocked }
+    if (blocked) return { point: taken ? trial : point, iterations, blocked }
     if (!taken) return null
     point.gamma.set(trial.gamma)
     if (!(await inner.fill(point, "observed"))) return null
@@ -207,10 +312,16 @@ async function firstOutside(
   return first
 }
 
-/** dℓ/dη of one row at an end of its range, where V is 0: by its limit, from just inside. */
+/** dℓ/dη of one row at an end of its range, where V is 0 and (y − μ)/V tends to −1/V'; elsewhere by its limit, from just inside. */
 function ownSlope(responses: Responses, row: number, end: number): number {
   const { family, link, y, a, scale } = responses
   const times = scale ? (scale[row] as number) : 1
+  const at = times * link.mean(end)
+  if (family.variance(at, 1 - at) === 0) {
+    const steep = -1 / family.varianceSlope(at, 1 - at)
+    const slope = times * link.slope(end)
+    if (slope === 0 ? Number.isFinite(steep) : Number.isFinite(slope)) return (a[row] as number) * steep * slope
+  }
   const inside = end === responses.high ? end - 1e-9 * Math.max(1, Math.abs(end)) : end + 1e-9 * Math.max(1, Math.abs(end))
   const mu = times * link.mean(inside)
   const rest = 1 - mu

@@ -13,7 +13,7 @@ import { Factor } from "./gram.ts"
 import { groundOf } from "./ground.ts"
 import { type Findings, findings, scaledScore } from "./inference.ts"
 import { estimatedParameters, problemAt } from "./joint-information.ts"
-import { type Climb, limitOf } from "./limits.ts"
+import { type Climb, type Limit, limitOf } from "./limits.ts"
 import { nullModel } from "./null-model.ts"
 import type { FamilySpec, LinkSpec, Problem } from "./problem.ts"
 import type { Recipe } from "./recipe.ts"
@@ -204,7 +204,12 @@ export async function searched(
   let climb: Climb = { problem, design, responses, equations, found: await maximum(equations, start, measure) }
   let limit = await limitOf(climb, measure)
   const others: number[] = []
-  if (!isConcave(givenOnly(problem.family), givenOnly(problem.link)) && !near && limit.type !== "infinite") {
+  if (
+    !isConcave(givenOnly(problem.family), givenOnly(problem.link)) &&
+    !near &&
+    limit.type !== "infinite" &&
+    !isWholeEdge(limit, problem.rows)
+  ) {
     const better = await fromOtherStarts(climb, measure, others)
     if (better) {
       climb = { ...climb, found: better }
@@ -233,6 +238,9 @@ const sameParameters = (a: Pick<Problem, "family" | "link">, b: Pick<Problem, "f
     estimatedParameters(b)
       .map(({ of }) => of)
       .join()
+
+/** Whether all means are at an end of what is possible, as all responses are: nothing can be better. */
+const isWholeEdge = (limit: Limit, rows: number): boolean => limit.type === "edge" && limit.edge.active.length === rows
 
 /** The same with its parameters taken as given. */
 const givenOnly = <S extends FamilySpec | LinkSpec>(spec: S): S => ({ ...spec, estimated: [] })

@@ -4,6 +4,7 @@
 import { changeMatrix, designCoefficients, designCovariance, designScore, intoBasis, outOfBasis, outOfScore } from "./change.ts"
 import { isConcave } from "./concavity.ts"
 import { dispersionByLikelihood, dispersionRule } from "./dispersion.ts"
+import type { Edge } from "./edge.ts"
 import { log } from "./elementary.ts"
 import { controlDeviance, controlPearson, type Estimated } from "./estimated.ts"
 import type { Family } from "./family.ts"
@@ -62,8 +63,9 @@ export async function findings(given: Findings): Promise<Fit> {
 
   // Likelihood and errors come from the rows whose means stay: all of them, unless coefficients run to infinity.
   const rest = limit.type === "infinite" ? limit.rest : climb
-  const point = limit.type === "edge" ? limit.edge.point : (rest?.found.point ?? null)
-  if (rest && point && (limit.type === "infinite" || limit.type === "gave_up")) await rest.equations.fill(point, "expected", true)
+  const edge = edgeOf(limit)
+  const point = edge ? edge.point : (rest?.found.point ?? null)
+  if (rest && point && !edge && (limit.type === "infinite" || limit.type === "gave_up")) await rest.equations.fill(point, "expected", true)
   const means = wholeMeans(given, point)
   const moved = limit.type === "infinite" ? movedRows(climb, limit.rows, means.mu) : { deviance: 0, pearson: 0 }
   const perfect = !family.discrete && isPerfect(responses, means.mu)
@@ -90,8 +92,8 @@ export async function findings(given: Findings): Promise<Fit> {
   const lawDf = clusters !== null ? clusters - 1 : rule.estimated ? df : null
   const constant = design.constant || (await spansConstant(climb.equations))
   const certificate = classOf(given)
-  const factor = rest && point && limit.type !== "edge" ? Factor.of(point.gram) : null
-  const hasErrors = (limit.type === "inside" || limit.type === "infinite") && phi !== null && factor !== null && rest !== null
+  const factor = rest && point && !edge ? Factor.of(point.gram) : null
+  const hasErrors = !edge && limit.type !== "gave_up" && phi !== null && factor !== null && rest !== null
   // Parameters at an end of what they can be have no errors, and are taken as given for those of the others.
   const ends = given.estimated?.ends ?? []
   const joined = parameters.filter(({ part }, j) => ends[j] === 0 && !(part === "family" && problem.family.name === "tweedie"))
@@ -149,7 +151,7 @@ export async function findings(given: Findings): Promise<Fit> {
       iterations:
         climb.found.iterations + (given.estimated?.steps ?? 0) + (limit.type === "infinite" ? (limit.rest?.found.iterations ?? 0) : 0),
       scaledScore: measured && point ? scaledScore(measured, point, phi === null || phi === 0 ? 1 : phi) : 0,
-      condition: measured && point && limit.type !== "edge" ? conditionOf(measured, point, factor) : Number.NaN,
+      condition: measured && point && !edge ? conditionOf(measured, point, factor) : Number.NaN,
       evidence: evidenceOf(given, dependences),
     },
     goodnessOfLink:
@@ -170,6 +172,9 @@ export async function findings(given: Findings): Promise<Fit> {
   }
 }
 
+/** The edge a fit is at: that of all rows, or of those that stay where coefficients run to infinity. */
+const edgeOf = (limit: Limit): Edge | null => (limit.type === "edge" || limit.type === "infinite" ? limit.edge : null)
+
 function classOf({ limit, dependences, others, estimated }: Findings): Certificate["class"] {
   if (limit.type === "gave_up") return "gave_up"
   if (dependences.length > 0) return "unidentified"
@@ -187,7 +192,8 @@ function evidenceOf({ climb, limit, others }: Findings, dependent: DependentTerm
           design.recipe.columns.flatMap((column, j) => (direction[j] === 0 ? [] : [{ column, times: direction[j] as number }])),
         )
       : []
-  const edge = limit.type === "edge" ? limit.edge.active : []
+  const rows = limit.type === "infinite" ? limit.rows : null
+  const edge = (edgeOf(limit)?.active ?? []).map(({ row, multiplier }) => ({ row: rows ? (rows[row] as number) : row, multiplier }))
   const stopped =
     limit.type === "gave_up"
       ? {

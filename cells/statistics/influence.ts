@@ -24,7 +24,7 @@ export async function leverages(problem: Problem, fit: Fit, pause: () => Promise
   const search = await searched(problem, pause, fit)
   if (!search.ok) return null
   const { climb, limit } = search.found
-  if (limit.type === "edge" || limit.type === "gave_up") return null
+  if (limit.type === "edge" || limit.type === "gave_up" || (limit.type === "infinite" && limit.edge !== null)) return null
   const inner = limit.type === "infinite" ? limit.rest : climb
   const out = new Float64Array(problem.rows)
   if (inner === null) return out

@@ -4,9 +4,10 @@
 import { basisOf } from "./basis.ts"
 import { designCoefficients } from "./change.ts"
 import { columnSizes, type Design, designAtRows } from "./design.ts"
-import { type Edge, edgeMaximum } from "./edge.ts"
+import { type Edge, edgeAlongBarrier, edgeMaximum, leaningMaximum, wholeEdge } from "./edge.ts"
+import { Factor } from "./gram.ts"
 import type { Problem } from "./problem.ts"
-import { recessionAlong } from "./recession.ts"
+import { type Recession, recessionAlong } from "./recession.ts"
 import { type Responses, responsesOf } from "./rows.ts"
 import { Equations, type Maximum, maximum, type Point } from "./scoring.ts"
 import { startingPoint } from "./start.ts"
@@ -30,38 +31,76 @@ export type Limit =
       /** Rows of the whole whose means stay, and the climb over them; null where none stays. */
       readonly rows: Int32Array
       readonly rest: Climb | null
+      /** Where the best of those rows is at the edge of the possible means, that; its rows are counted among them. */
+      readonly edge: Edge | null
       /** x'b of the rows that move, by the direction that moves them first; 0 for the others. */
       readonly along: Float64Array
     }
   | { readonly type: "gave_up" }
 
+/** The least deviance of the rows whose means stay: those that move add nothing. */
+export const leastDeviance = (limit: Limit & { readonly type: "infinite" }): number =>
+  (limit.edge?.point ?? limit.rest?.found.point)?.deviance ?? 0
+
 /** Looks at where a search ended and finds what kind of end it is. */
 export async function limitOf(climb: Climb, phi: (point: Point) => number): Promise<Limit> {
-  const { equations, found, design, problem } = climb
-  const recession = recessionAlong(equations, found.step)
-  if (recession) {
-    const columns = design.recipe.columns.length
-    const direction = cleaned(designCoefficients(equations.basis, columns, recession.gamma), columnSizes(design))
-    const kept = rowsWhere(problem.rows, (i) => recession.along[i] === 0)
-    const next = await restOf(climb, kept, direction, phi)
-    const directions = [direction]
-    const along = recession.along.slice()
-    if (next === null) return { type: "infinite", directions, rows: kept, rest: null, along }
-    const further = await limitOf(next, phi)
-    if (further.type === "infinite") {
-      for (const other of further.directions) directions.push(other)
-      kept.forEach((row, k) => {
-        along[row] = further.along[k] as number
-      })
-      return { type: "infinite", directions, rows: further.rows.map((k) => kept[k] as number), rest: further.rest, along }
-    }
-    return further.type === "inside" ? { type: "infinite", directions, rows: kept, rest: next, along } : { type: "gave_up" }
-  }
+  const { equations, found } = climb
+  const recession = recessionAlong(equations, found.step) ?? recessionAlong(equations, await expectedStep(climb))
+  if (recession) return receding(climb, recession, phi)
+  const whole = await wholeEdge(equations)
+  if (whole) return { type: "edge", edge: whole }
   if (found.end !== "arrived" || nearEdge(equations, found.point)) {
     const edge = await edgeMaximum(equations, found.point)
     if (edge) return { type: "edge", edge }
   }
-  return found.end === "arrived" ? { type: "inside" } : { type: "gave_up" }
+  if (found.end === "arrived") return { type: "inside" }
+  // Where rows at the edge and coefficients that run to infinity stand in each other's way, the barrier keeps the ones apart from the others.
+  const along = await edgeAlongBarrier(equations, (await startOf(climb)) ?? found.point)
+  if (along) {
+    for (const drift of along.drifts) {
+      const drifting = recessionAlong(equations, drift)
+      if (drifting) return receding(climb, drifting, phi)
+    }
+    const edge = along.leaning.size > 0 ? await leaningMaximum(equations, along) : null
+    if (edge) return { type: "edge", edge }
+  }
+  return { type: "gave_up" }
+}
+
+/** The limit along a direction in which the likelihood never falls, and what is left of the rows that it does not move. */
+async function receding(climb: Climb, recession: Recession, phi: (point: Point) => number): Promise<Limit> {
+  const { equations, design, problem } = climb
+  const columns = design.recipe.columns.length
+  const direction = cleaned(designCoefficients(equations.basis, columns, recession.gamma), columnSizes(design))
+  const kept = rowsWhere(problem.rows, (i) => recession.along[i] === 0)
+  const next = await restOf(climb, kept, direction, phi)
+  const directions = [direction]
+  const along = recession.along.slice()
+  if (next === null) return { type: "infinite", directions, rows: kept, rest: null, edge: null, along }
+  const further = await limitOf(next, phi)
+  if (further.type === "infinite") {
+    for (const other of further.directions) directions.push(other)
+    kept.forEach((row, k) => {
+      along[row] = further.along[k] as number
+    })
+    return {
+      type: "infinite",
+      directions,
+      rows: further.rows.map((k) => kept[k] as number),
+      rest: further.rest,
+      edge: further.edge,
+      along,
+    }
+  }
+  if (further.type === "gave_up") return further
+  return { type: "infinite", directions, rows: kept, rest: next, edge: further.type === "edge" ? further.edge : null, along }
+}
+
+/** Where scoring would go on from a search that did not arrive: observed weights can be flat where a mean is near the edge. */
+async function expectedStep({ equations, found }: Climb): Promise<Float64Array> {
+  const none = new Float64Array(equations.basis.size)
+  if (found.end === "arrived" || !(await equations.fill(found.point, "expected"))) return none
+  return Factor.of(found.point.gram)?.solve(found.point.score) ?? none
 }
 
 /** The climb over the rows that stay, with the columns that move last, so that the others are the ones kept. */
@@ -74,11 +113,16 @@ async function restOf(climb: Climb, rows: Int32Array, direction: Float64Array, p
   const order = [...all.filter((j) => direction[j] === 0), ...all.filter((j) => direction[j] !== 0)]
   const { basis } = await basisOf(design, climb.equations.pace, order)
   const equations = new Equations(basis, responses, climb.equations.pace)
-  const constant = design.constant && basis.change.column.includes(0) ? 0 : -1
-  const start = await startingPoint(equations, constant, all.length, null, null)
+  const start = await startOf({ design, equations })
   if (!start) return null
   const found = await maximum(equations, start, phi)
   return { problem, design, responses, equations, found }
+}
+
+/** Where a search over these rows begins: well inside the possible means. */
+function startOf({ design, equations }: Pick<Climb, "design" | "equations">): Promise<Point | null> {
+  const constant = design.constant && equations.basis.change.column.includes(0) ? 0 : -1
+  return startingPoint(equations, constant, design.recipe.columns.length, null, null)
 }
 
 function problemAtRows(problem: Problem, rows: Int32Array): Problem {

@@ -5,7 +5,7 @@ import { basisOver } from "./basis.ts"
 import { basisCoefficients, designCoefficients } from "./change.ts"
 import { denseColumns } from "./design.ts"
 import type { Edge } from "./edge.ts"
-import { type Climb, limitOf } from "./limits.ts"
+import { type Climb, leastDeviance, limitOf } from "./limits.ts"
 import type { ProfileInterval } from "./profile.ts"
 import type { Responses } from "./rows.ts"
 import { dot, Equations, maximum } from "./scoring.ts"
@@ -50,7 +50,7 @@ export async function edgeProfile(climb: Climb, edge: Edge, column: number, rise
       warm = designCoefficients(basis, columns, ended.edge.point.gamma)
       return ended.edge.point.deviance - base
     }
-    if (ended.type === "infinite") return (ended.rest?.found.point.deviance ?? 0) - base
+    if (ended.type === "infinite") return leastDeviance(ended) - base
     if (ended.type === "gave_up") return Number.POSITIVE_INFINITY
     warm = designCoefficients(basis, columns, found.point.gamma, found.point.gammaLow)
     return found.point.deviance - base

@@ -79,6 +79,10 @@ async function intervalOf({ climb, limit }: Findings, column: number, rise: numb
   if (limit.type !== "infinite") return profileOf(climb.equations, climb.found.point, column, null, rise, phi, 0)
   const moved = limit.directions.find((direction) => direction[column] !== 0)?.[column] ?? 0
   // What stays is profiled over the rows whose means stay: the others are at their limit whatever it is.
+  if (limit.edge !== null && limit.rest !== null)
+    return moved === 0
+      ? edgeProfile(limit.rest, limit.edge, column, rise, phi)
+      : { low: moved < 0 ? "-infinity" : null, high: moved > 0 ? "infinity" : null }
   if (moved === 0) return limit.rest === null ? null : profileOf(limit.rest.equations, limit.rest.found.point, column, null, rise, phi, 0)
   return profileOf(climb.equations, climb.found.point, column, limit.rest?.found.point.deviance ?? 0, rise, phi, moved)
 }

@@ -6,7 +6,7 @@ import { Factor, gramOf, rangeSums, scoreSums } from "./gram.ts"
 import type { Responses } from "./rows.ts"
 import { cellTerms, type Equations, linearPredictor } from "./scoring.ts"
 
-type Recession = {
+export type Recession = {
   /** The direction in the basis. */
   readonly gamma: Float64Array
   /** x'b of each row, 0 where the mean stays; the largest is 1 in size. */

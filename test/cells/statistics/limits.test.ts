@@ -4,7 +4,7 @@
 import { describe, expect, it } from "vitest"
 import { predicted } from "../../../cells/statistics/index.ts"
 import { digits, expectPrinted } from "../../reference/printed.ts"
-import { betas, errors, factor, fitted, numbers, problem } from "./problems.ts"
+import { betas, errors, factor, fitted, generator, numbers, problem } from "./problems.ts"
 
 const shares = ["logit", "probit", "cauchit", "cloglog", "loglog"]
 const toward = (found: Awaited<ReturnType<typeof fitted>>): (string | null)[] => found.coefficients.map((c) => c.toward)
@@ -249,5 +249,147 @@ describe("what is odd but not wrong", () => {
     )
     expect(found.interceptOnly?.deviance).toBeCloseTo(deviance, 13)
     expect(found.deviance).toBeLessThanOrEqual(deviance)
+  })
+})
+
+describe("multipliers", () => {
+  it("are shared by rows that are the same, and vouch for ∇ℓ = Σ λ·n", async () => {
+    // The mean is at 1 in all four rows with x = 0: by hand, with μ = 1 − b·x, Σ over the others of (y − μ)/(μ(1 − μ))·(−x) vanishes.
+    const x = [4, 2, 2, 1, 0, 4, 0, 1, 0, 0]
+    const y = [1, 1, 1, 0, 1, 1, 1, 0, 1, 1]
+    const found = await fitted(problem({ family: "binomial", link: "identity", terms: ["x"], y, variables: { x: numbers(x) } }))
+    expect(found.certificate.class).toBe("boundary")
+    const edge = found.certificate.evidence?.edge ?? []
+    const [b = 0, slope = 0] = betas(found) as number[]
+    const held = new Set(edge.map(({ row }) => row))
+    // The score by the rows inside, and by the limits of the slope at the rows held: 1 at a mean of 1, −1 at a mean of 0.
+    const score = [0, 0]
+    x.forEach((v, i) => {
+      const mu = b + slope * v
+      const s = held.has(i) ? (y[i] === 1 ? 1 : -1) : ((y[i] as number) - mu) / (mu * (1 - mu))
+      score[0] = (score[0] as number) + s
+      score[1] = (score[1] as number) + s * v
+    })
+    const along = edge.reduce(
+      ([one, times], { row, multiplier }) => {
+        const out = y[row] === 1 ? 1 : -1
+        return [one + out * multiplier, times + out * multiplier * (x[row] as number)] as const
+      },
+      [0, 0] as readonly [number, number],
+    )
+    expect(along[0]).toBeCloseTo(score[0] as number, 8)
+    expect(along[1]).toBeCloseTo(score[1] as number, 8)
+    expect(edge.every(({ multiplier }) => multiplier >= 0)).toBe(true)
+  })
+
+  it("are 0 where the likelihood is level at the edge, and infinite where it falls without bound", async () => {
+    const x = numbers([1, 2, 3, 4])
+    const level = await fitted(problem({ family: "poisson", link: "square_root", terms: ["x"], y: [0, 0, 0, 0], variables: { x } }))
+    expect([level.certificate.class, betas(level), level.deviance]).toEqual(["boundary", [0, 0], 0])
+    expect(level.certificate.evidence?.edge.map(({ multiplier }) => multiplier)).toEqual([0, 0, 0, 0])
+    const steep = await fitted({
+      ...problem({ family: "tweedie", link: "identity", terms: ["x"], y: [0, 0, 0, 0], variables: { x } }),
+      family: { name: "tweedie", parameters: [1.5] },
+    })
+    expect([steep.certificate.class, betas(steep), steep.deviance]).toEqual(["boundary", [0, 0], 0])
+    expect(steep.certificate.evidence?.edge.map(({ multiplier }) => multiplier)).toEqual(new Array(4).fill(Number.POSITIVE_INFINITY))
+  })
+})
+
+describe("estimates at infinity beside rows at the edge", () => {
+  it("have the limit of one and the multipliers of the other, and no errors", async () => {
+    // By hand: group a has no success, group b nothing else, group c 4 of 10.
+    const found = await fitted(
+      problem({
+        family: "binomial",
+        link: "log",
+        terms: ["g"],
+        y: [0, 1, 0.4],
+        trials: Float64Array.of(10, 10, 10),
+        variables: { g: factor(["a", "b", "c"]) },
+      }),
+    )
+    expect(found.certificate.class).toBe("infinite")
+    expect(toward(found)).toEqual(["-infinity", "infinity", "infinity"])
+    expect(found.certificate.evidence?.edge).toEqual([{ row: 1, multiplier: expect.closeTo(10, 10) }])
+    expect([...found.mu].map((mu) => Number(mu.toFixed(12)))).toEqual([0, 1, 0.4])
+    expect(found.deviance).toBeCloseTo(0, 12)
+    expect(errors(found)).toEqual([null, null, null])
+  })
+
+  it("leave those that stay finite where the closed form has them", async () => {
+    // The same without group a's part in the constant: the reference level is b, whose mean is 1.
+    const found = await fitted(
+      problem({
+        family: "binomial",
+        link: "log",
+        terms: ["g"],
+        y: [1, 0, 0.4],
+        trials: Float64Array.of(10, 10, 10),
+        variables: { g: factor(["b", "a", "c"], "corner", ["b", "a", "c"]) },
+      }),
+    )
+    expect([found.certificate.class, toward(found)]).toEqual(["infinite", [null, "-infinity", null]])
+    expect(betas(found)[0]).toBeCloseTo(0, 12)
+    expect(betas(found)[2]).toBeCloseTo(Math.log(0.4), 12)
+  })
+})
+
+describe("constrained fits of small whole numbers", () => {
+  const pairs = [
+    ["binomial", "log"],
+    ["binomial", "identity"],
+    ["binomial", "log_complement"],
+    ["poisson", "identity"],
+    ["poisson", "square_root"],
+  ] as const
+
+  /** The deviance where the means are those of other coefficients; infinite where they are not possible. */
+  const devianceAt = (family: string, y: readonly number[], mu: readonly number[]): number =>
+    y.reduce((sum, response, i) => {
+      const m = mu[i] as number
+      if (!(m >= 0) || (family === "binomial" && m > 1)) return Number.POSITIVE_INFINITY
+      const part = (of: number, at: number): number => (of === 0 ? 0 : of * Math.log(of / at))
+      return sum + 2 * (family === "binomial" ? part(response, m) + part(1 - response, 1 - m) : part(response, m) - (response - m))
+    }, 0)
+  const means: Readonly<Record<string, (eta: number) => number>> = {
+    log: Math.exp,
+    identity: (eta) => eta,
+    log_complement: (eta) => 1 - Math.exp(eta),
+    square_root: (eta) => (eta < 0 ? Number.NaN : eta * eta),
+  }
+
+  // Likelihoods of these pairs are concave, so a maximum is one if no step towards another possible point raises it.
+  it.each(pairs)("end in no worse place than any other: %s, %s", async (family, link) => {
+    const draw = generator(31)
+    const whole = (n: number): number => Math.floor(draw() * n)
+    const seen: Record<string, number> = {}
+    for (let k = 0; k < 40; k++) {
+      const n = 5 + whole(7)
+      const x = Array.from({ length: n }, () => whole(5))
+      const z = Array.from({ length: n }, () => whole(4) - 1)
+      const y = x.map((v) => (family === "binomial" ? (draw() < v / 5 + 0.1 ? 1 : 0) : draw() < 0.4 ? 0 : whole(2 + 2 * v)))
+      const found = await fitted(problem({ family, link, terms: ["x", "z"], y, variables: { x: numbers(x), z: numbers(z) } }))
+      seen[found.certificate.class] = (seen[found.certificate.class] ?? 0) + 1
+      const evidence = found.certificate.evidence
+      expect(evidence?.edge.every(({ multiplier }) => multiplier >= 0) ?? true).toBe(true)
+      if (found.certificate.class !== "boundary") continue
+      const [b = 0, bx = 0, bz = 0] = betas(found) as number[]
+      const mean = means[link] as (eta: number) => number
+      const least = found.deviance as number
+      const at = (c: number, cx: number, cz: number): number =>
+        devianceAt(
+          family,
+          y,
+          x.map((v, i) => mean(c + cx * v + cz * (z[i] as number))),
+        )
+      for (let step = 0; step < 200; step++) {
+        const size = 10 ** (-4 * draw())
+        const [dc, dx, dz] = [draw() - 0.5, draw() - 0.5, draw() - 0.5].map((d) => size * d) as [number, number, number]
+        expect(at(b + dc, bx + dx, bz + dz)).toBeGreaterThan(least - 1e-9)
+      }
+    }
+    expect(seen["boundary"]).toBeGreaterThan(5)
+    expect(seen["gave_up"] ?? 0).toBe(0)
   })
 })
