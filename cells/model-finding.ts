@@ -40,6 +40,17 @@ export function modelIn(value: Value | undefined): ModelFinding | null {
   return memberOf(fit, "problem") === null ? null : (fit as unknown as ModelFinding)
 }
 
+/**
+ * The distinct values, rising, of a number that a predictor takes as a category: the model has a mean at these and nowhere between. Null for
+ * every other column.
+ */
+export function valuesTaken({ problem }: ModelFinding, name: Name): Float64Array | null {
+  const variable = problem.variables[name]
+  if (variable?.type !== "number") return null
+  const taken = problem.terms.some(({ pieces }) => pieces.some((piece) => piece.variable === name && piece.as === "category"))
+  return taken ? Float64Array.from(new Set(variable.values)).sort() : null
+}
+
 function memberOf(value: Value | undefined, member: string): Value {
   if (typeof value !== "object" || value === null || Array.isArray(value) || ArrayBuffer.isView(value)) return null
   return (value as { readonly [member: string]: Value })[member] ?? null

@@ -9,7 +9,7 @@ import { evaluated } from "./language/evaluate.ts"
 import { type Expression, printed, type Scalar, type Trouble } from "./language/expression.ts"
 import { modelFunctions } from "./language/functions.ts"
 import { listed } from "./language/notices.ts"
-import { type ModelFinding, modelIn } from "./model-finding.ts"
+import { type ModelFinding, modelIn, valuesTaken } from "./model-finding.ts"
 import { linkOf, predicted } from "./statistics/index.ts"
 import type { Variable } from "./statistics/problem.ts"
 
@@ -204,7 +204,7 @@ class ModelReading {
         return this.trouble(each.left, "value/held-twice", `${column} is held twice.`, "Each column has one value here.")
       const right = this.replaced(each.right)
       if (right === null) return null
-      const variable = this.heldAt(column, like, right)
+      const variable = this.heldAt(column, like, valuesTaken(model, column), right)
       if (variable === null) return null
       made[column] = variable
     }
@@ -233,7 +233,7 @@ class ModelReading {
   }
 
   /** A column that is one value: of a number, or a level of a category. */
-  private heldAt(column: Name, like: Variable, expression: Expression): Variable | null {
+  private heldAt(column: Name, like: Variable, taken: Float64Array | null, expression: Expression): Variable | null {
     const found = evaluated(expression, 1, (each) => scalarOf(this.inputs.get(each)), this.inputs.keys())
     if (!found.ok) {
       this.troubles.push(...found.troubles)
@@ -241,6 +241,15 @@ class ModelReading {
     }
     const scalar = found.vector
     if (like.type === "number") {
+      if ("value" in scalar && scalar.type === "number" && taken !== null && !taken.includes(scalar.value)) {
+        const there = Array.from(taken.subarray(0, 12), String)
+        return this.trouble(
+          expression,
+          "value/unknown-level",
+          `${column} is taken as a category, and none of the rows used has ${column} ${printed(expression)}.`,
+          `They have ${taken.length > 12 ? `${there.join(", ")} and more` : listed(there, "and")}.`,
+        )
+      }
       if ("value" in scalar && scalar.type === "number" && Number.isFinite(scalar.value))
         return { type: "number", values: Float64Array.of(scalar.value) }
       return this.trouble(
@@ -287,6 +296,8 @@ const numberAt = (like: Expression, value: number): Expression => ({ type: "numb
 /** A number at its mean over the rows used, weighted by R·m; a category at its first level. */
 function heldByDefault(column: Name, like: Variable, model: ModelFinding): readonly [Variable, string] {
   if (like.type === "factor") return [{ ...like, codes: Int32Array.of(0) }, `${column} at ${like.levels[0] ?? ""}`]
+  const least = valuesTaken(model, column)?.[0]
+  if (least !== undefined) return [{ type: "number", values: Float64Array.of(least) }, `${column} at ${least}`]
   const { repeat, trials } = model.problem
   let [sum, total] = [0, 0]
   for (let i = 0; i < like.values.length; i++) {

@@ -87,6 +87,16 @@ export const noSuchLevel = (name: Name, level: string, levels: readonly string[]
     `Its levels are ${list(levels.map((l) => `"${l}"`))}.`,
   )
 
+/** A number taken as a category, held at a value that no row used has. */
+export const noSuchValue = (name: Name, value: number, values: Float64Array, at: Place): Notice =>
+  fault(
+    "no-such-value",
+    "hold",
+    at,
+    `${name} is taken as a category, and none of the rows used has ${name} ${value}.`,
+    `They have ${list(Array.from(values.subarray(0, 12), String))}${values.length > 12 ? " and more" : ""}.`,
+  )
+
 export const heldWrongly = (name: Name, wants: "a number" | "a level", at: Place): Notice =>
   fault(
     "held-wrongly",

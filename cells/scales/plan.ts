@@ -6,7 +6,7 @@ import type { Notice, Place } from "../../runtime/notice.ts"
 import type { Name } from "../../runtime/value.ts"
 import { written } from "../figure/number.ts"
 import type { Bound, Choice } from "../language/form.ts"
-import type { ModelFinding } from "../model-finding.ts"
+import { type ModelFinding, valuesTaken } from "../model-finding.ts"
 import type { Variable } from "../statistics/problem.ts"
 import type { ScalesFinding } from "./finding.ts"
 import * as say from "./notices.ts"
@@ -21,6 +21,8 @@ export type Plan = {
   /** x of each row of the problem. */
   readonly x: Float64Array
   readonly range: readonly [number, number]
+  /** The only x with a mean, where the axis is a number taken as a category; null where every x has one. */
+  readonly places: Float64Array | null
   readonly data: readonly [number, number]
   readonly levels: readonly { readonly level: string; readonly code: number }[] | null
   readonly codes: Int32Array | null
@@ -53,7 +55,7 @@ export function planOf(said: ScalesSaid, name: Name, model: ModelFinding, inputs
       fault(say.holdDrawn(column.name, column.at))
       continue
     }
-    const code = heldAt(column.name, variable, value, at, inputs, fault)
+    const code = heldAt(column.name, variable, valuesTaken(model, column.name), value, at, inputs, fault)
     if (code !== null) held.set(column.name, code)
     stated.add(column.name)
   }
@@ -61,7 +63,7 @@ export function planOf(said: ScalesSaid, name: Name, model: ModelFinding, inputs
   for (const other of names) {
     const variable = variables[other] as Variable
     if (said.averaged || held.has(other) || other === acrossName || other === said.split?.name) continue
-    held.set(other, variable.type === "number" ? meanOf(model, variable.values) : 0)
+    held.set(other, variable.type === "number" ? (valuesTaken(model, other)?.[0] ?? meanOf(model, variable.values)) : 0)
   }
 
   const label = model.labels[acrossName] ?? { label: acrossName, unit: null }
@@ -78,6 +80,9 @@ export function planOf(said: ScalesSaid, name: Name, model: ModelFinding, inputs
     if (from >= to) return fault(say.emptyRange(from, to, said.range.at))
     range = [from, to]
   } else if (data[0] === data[1] && across.type === "number") range = [data[0] - 1, data[1] + 1]
+  const [from, to] = range
+  const places = valuesTaken(model, acrossName)?.filter((at) => at >= from && at <= to) ?? null
+  if (places?.length === 0 && said.range !== null) return fault(say.emptyRange(from, to, said.range.at))
 
   const heldValues: Record<Name, number | string> = {}
   const parts: string[] = []
@@ -86,7 +91,7 @@ export function planOf(said: ScalesSaid, name: Name, model: ModelFinding, inputs
     const value = variable.type === "number" ? at : (variable.levels[at] as string)
     heldValues[column] = value
     const { label: called, unit } = model.labels[column] ?? { label: column, unit: null }
-    const mean = variable.type === "number" && !stated.has(column) ? " (its mean)" : ""
+    const mean = variable.type === "number" && !stated.has(column) && valuesTaken(model, column) === null ? " (its mean)" : ""
     parts.push(`${called} at ${typeof value === "number" ? rounded(value) : value}${unit === null ? "" : ` ${unit}`}${mean}`)
   }
   if (model.exposure !== null) parts.push(`a unit of ${model.exposure.label}`)
@@ -96,6 +101,7 @@ export function planOf(said: ScalesSaid, name: Name, model: ModelFinding, inputs
     axis: { name: acrossName, ...label, levels: across.type === "factor" ? across.levels : null },
     x,
     range,
+    places,
     data,
     levels: splitBy?.type === "factor" ? splitBy.levels.map((level, code) => ({ level, code })) : null,
     codes: splitBy?.type === "factor" ? splitBy.codes : null,
@@ -110,7 +116,15 @@ export function planOf(said: ScalesSaid, name: Name, model: ModelFinding, inputs
 export const rounded = (value: number): string => written(Number(value.toPrecision(4)), Number.isInteger(value) ? 1 : 4)
 
 /** What a stated value means for a column: the number, or the code of the level; null once a fault was said. */
-function heldAt(name: Name, variable: Variable, choice: Choice, at: Place, inputs: Inputs, fault: (notice: Notice) => null): number | null {
+function heldAt(
+  name: Name,
+  variable: Variable,
+  taken: Float64Array | null,
+  choice: Choice,
+  at: Place,
+  inputs: Inputs,
+  fault: (notice: Notice) => null,
+): number | null {
   let value: number | string | null = null
   if (choice.type === "text") value = choice.text
   else if (choice.type === "truth") value = String(choice.value)
@@ -120,6 +134,7 @@ function heldAt(name: Name, variable: Variable, choice: Choice, at: Place, input
     if (typeof given === "number" || typeof given === "string") value = given
   }
   if (variable.type === "number") {
+    if (typeof value === "number" && taken !== null && !taken.includes(value)) return fault(say.noSuchValue(name, value, taken, at))
     return typeof value === "number" && Number.isFinite(value) ? value : fault(say.heldWrongly(name, "a number", at))
   }
   if (value === null) return fault(say.heldWrongly(name, "a level", at))

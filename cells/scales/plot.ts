@@ -43,7 +43,9 @@ export class Plot {
     this.work = work
     this.possible = familyOf(model.problem.family).range
     const points = plan.averaged ? Math.max(leastGrid, Math.min(gridPoints, Math.floor(averagedWork / model.problem.rows))) : gridPoints
-    this.grid = plan.axis.levels === null ? gridOf(plan.range[0], plan.range[1], points) : Float64Array.from(plan.axis.levels, (_, i) => i)
+    this.grid =
+      plan.places ??
+      (plan.axis.levels === null ? gridOf(plan.range[0], plan.range[1], points) : Float64Array.from(plan.axis.levels, (_, i) => i))
     const all = Uint32Array.from({ length: model.problem.rows }, (_, i) => i)
     const levels = plan.levels ?? [{ level: null, code: null }]
     this.lines = levels.map(({ level, code }) => {
