@@ -531,11 +531,8 @@ async function logLikelihoodOf(climb: Climb, point: Point, phi: number): Promise
 
 /** ℓ = ℓ(y; y) − D/(2φ) where the first part is no more than sums over the responses; null for the other families, and where φ differs by row. */
 function likelihoodByDeviance({ responses, problem }: Climb, point: Point, phi: number): number | null {
-  const { family, y, a, logY, rows } = responses
-  if (family.name === "binomial") {
-    const single = (problem.trials === null || problem.trials.every((m) => m === 1)) && y.every((share) => share === 0 || share === 1)
-    return single ? -point.deviance / 2 : null
-  }
+  const { family, y, a, logY, rows, extremes } = responses
+  if (family.name === "binomial") return extremes ? -point.deviance / 2 : null
   const counts = family.name === "poisson"
   if (!counts && (family.name !== "gamma" || problem.precision !== null)) return null
   const constant = counts ? -halfLogTwoPi : family.logDensity(1, 1, 0, 1, phi)

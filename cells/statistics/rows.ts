@@ -27,6 +27,12 @@ export type Responses = {
   readonly offset: Float64Array | null
   /** E where the mean is E·h(η); null where it went into the offset or there is none. */
   readonly scale: Float64Array | null
+  /** The loop that goes over the rows. */
+  readonly loop: Loop
+  /** What all rows weigh, where that is the same. */
+  readonly weight: number | null
+  /** Whether all shares are 0 or 1: ℓ is then −D/2. */
+  readonly extremes: boolean
   /** log y, under the log link of counts and amounts. */
   readonly logY: Float64Array | null
   /** Open interval of η on which every row has a possible mean. */
@@ -61,8 +67,14 @@ export function responsesOf(problem: Problem): Responses {
   const { rows, y, trials, repeat, precision, exposure } = problem
   const family = familyOf(problem.family)
   const a = new Float64Array(rows)
+  let weight: number | null = null
+  let extremes = family.name === "binomial"
   for (let i = 0; i < rows; i++) {
-    a[i] = (repeat ? (repeat[i] as number) : 1) * (precision ? (precision[i] as number) : 1) * (trials ? (trials[i] as number) : 1)
+    const own = (repeat ? (repeat[i] as number) : 1) * (precision ? (precision[i] as number) : 1) * (trials ? (trials[i] as number) : 1)
+    a[i] = own
+    if (i === 0) weight = own
+    else if (own !== weight) weight = null
+    if (extremes && y[i] !== 0 && y[i] !== 1) extremes = false
   }
   const negative = problem.family.name === "normal" && problem.link.name === "reciprocal" && weightedSum(a, y) < 0
   const link = linkOf(problem.link, negative ? -1 : 1)
@@ -75,6 +87,7 @@ export function responsesOf(problem: Problem): Responses {
     else scale = exposure
   }
   const ends = etaEnds(link, family)
+  const loop = loopOf(problem)
   return {
     rows,
     family,
@@ -84,7 +97,10 @@ export function responsesOf(problem: Problem): Responses {
     a,
     offset,
     scale,
-    logY: link.name === "log" && (family.name === "poisson" || family.name === "gamma") ? y.map(log) : null,
+    loop,
+    weight,
+    extremes,
+    logY: loop === "counts" || loop === "amounts" ? y.map(log) : null,
     ...ends,
     rounding: roundingOf(family, y, a),
   }
@@ -118,14 +134,37 @@ export function fillRows(of: Responses, information: Information, from: number, 
       if (!(e > low && e < high) && (of.a[i] as number) > 0) return false
     }
   }
-  if (of.family.name === "binomial" && of.link.name === "logit") return logitRows(of, from, to, state, sums)
-  if (of.family.name === "poisson" && of.link.name === "log") return logRows(of, from, to, state, sums)
-  if (of.family.name === "binomial" && of.link.name === "cloglog") return cloglogRows(of, information, false, from, to, state, sums)
-  if (of.family.name === "binomial" && of.link.name === "loglog") return cloglogRows(of, information, true, from, to, state, sums)
-  if (of.family.name === "binomial" && of.link.name === "probit") return probitRows(of, information, from, to, state, sums)
-  if (of.family.name === "gamma" && of.link.name === "log") return gammaLogRows(of, information, from, to, state, sums)
-  if (of.family.name === "normal" && of.link.name === "identity") return identityRows(of, from, to, state, sums)
-  return anyRows(of, information, from, to, state, sums)
+  switch (of.loop) {
+    case "logit":
+      return logitRows(of, from, to, state, sums)
+    case "cloglog":
+      return cloglogRows(of, information, false, from, to, state, sums)
+    case "loglog":
+      return cloglogRows(of, information, true, from, to, state, sums)
+    case "probit":
+      return probitRows(of, information, from, to, state, sums)
+    case "counts":
+      return logRows(of, from, to, state, sums)
+    case "amounts":
+      return gammaLogRows(of, information, from, to, state, sums)
+    case "identity":
+      return identityRows(of, from, to, state, sums)
+    case "any":
+      return anyRows(of, information, from, to, state, sums)
+  }
+}
+
+/** Loops of their own: for shares under four links, for counts and amounts under log, and for the normal law. */
+type Loop = "logit" | "cloglog" | "loglog" | "probit" | "counts" | "amounts" | "identity" | "any"
+
+/** A link of the user's own may be called what it likes, and limits make another link of one that is known. */
+function loopOf({ family, link }: Problem): Loop {
+  if (link.own !== undefined || link.limits) return "any"
+  const { name } = link
+  if (family.name === "binomial" && (name === "logit" || name === "cloglog" || name === "loglog" || name === "probit")) return name
+  if (name === "log" && family.name === "poisson") return "counts"
+  if (name === "log" && family.name === "gamma") return "amounts"
+  return name === "identity" && family.name === "normal" ? "identity" : "any"
 }
 
 /** Rows by the scalar functions, for every family and link. */
@@ -178,7 +217,7 @@ export function anyRows(of: Responses, information: Information, from: number, t
 export function devianceAtOneMean(of: Responses, mean: number, eta: number): number {
   const { family, link, y, a, rows, logY } = of
   const rest = link.complement === null || mean < 0.5 ? 1 - mean : link.complement(eta)
-  const counts = family.name === "poisson"
+  const counts = of.loop === "counts"
   const [none, all] = [family.unitDeviance(0, mean, rest), family.unitDeviance(1, mean, rest)]
   let deviance = 0
   for (let from = 0; from < rows; from += onePart) {

@@ -58,10 +58,8 @@ export async function startingPoint(
  */
 function nullPoint(equations: Equations, point: Point, gamma: Float64Array, none: NullModel): boolean {
   const { basis, responses } = equations
-  const { family, link, y, a, offset, scale, rows, low, high } = responses
-  const own = a[0] as number
-  if (!basis.products || offset !== null || scale !== null || !(none.eta > low && none.eta < high)) return false
-  if (a.some((each) => each !== own)) return false
+  const { family, link, y, weight: own, offset, scale, rows, low, high } = responses
+  if (!basis.products || own === null || offset !== null || scale !== null || !(none.eta > low && none.eta < high)) return false
   const mean = link.mean(none.eta)
   const rest = link.complement === null || mean < 0.5 ? 1 - mean : link.complement(none.eta)
   const v = family.variance(mean, rest)
