@@ -332,7 +332,7 @@ describe("warnings and remarks", () => {
   it("calls no link canonical that is not", async () => {
     const outcome = await finding("response buds\nfamily negative_binomial(2)\npredictor frost", beds)
     expect(told(outcome).filter((text) => text.includes("link-not-chosen"))).toEqual([
-      "remark link-not-chosen: Nobody chose a link, so log was taken, as for every model of negative_binomial(2) that names none.",
+      "remark link-not-chosen: Nobody chose a link, so log was taken, as for every model of negative_binomial that names none.",
     ])
   })
 
