@@ -10,6 +10,7 @@ import { linkNames } from "../../cells/statistics/links.ts"
 import { predicted } from "../../cells/statistics/prediction.ts"
 import type { Problem } from "../../cells/statistics/problem.ts"
 import * as special from "../../cells/statistics/special.ts"
+import { settledBook } from "../book.ts"
 import { factor, generator, numbers, problem, type Stated } from "../cells/statistics/problems.ts"
 
 /** By what was computed, a class where there is one and the digest of its bits. */
@@ -20,7 +21,7 @@ export const argumentsOfEach = 100_000
 
 export async function allBits(): Promise<Bits> {
   const bits: Record<string, string> = {}
-  for (const family of familyNames) {
+  for (const family of plainFamilies) {
     for (const link of legalLinks({ name: family, parameters: familyParameters(family) })) {
       const parameters = linkNames[link].map((_, at) => linkParameters[link]?.[at] ?? 0.75)
       const own: Problem = {
@@ -32,10 +33,44 @@ export async function allBits(): Promise<Bits> {
     }
   }
   for (const [says, stated] of Object.entries(hard())) bits[says] = await fitBits(problem(stated))
+  Object.assign(bits, await notebookBits())
   for (const [name, f] of Object.entries(elementary)) {
     if (typeof f === "function") bits[name] = functionBits(f as (x: number, y: number) => number, argumentsOfEach)
   }
   for (const [name, f] of Object.entries(specials)) bits[name] = functionBits(f, 4000)
+  return bits
+}
+
+/** Families that need no more than numbers; a variance of the user's own is fitted through a notebook, below. */
+export const plainFamilies: readonly FamilyName[] = familyNames.filter((name) => (name as string) !== "quasi_likelihood")
+
+/** A whole notebook: a file read, an own link proved, a variance as an expression, estimated parameters, candidates. By cell, the hash of its finding. */
+async function notebookBits(): Promise<Bits> {
+  const next = generator(31)
+  const rows = Array.from({ length: 80 }, () => {
+    const dose = Math.floor(next() * 400) / 100
+    const n = 5 + Math.floor(next() * 20)
+    const share = 0.08 + (0.9 * dose) / (1.4 + dose)
+    return [dose, n, Math.min(n, Math.floor(n * share * (0.7 + 0.6 * next()))), (0.3 + dose) * (0.4 + next())]
+  })
+  const model = (name: string, says: string): string => `model ${name}\n  data trial\n${says}\n  predictor dose`
+  const cells = [
+    'data trial\n  from "trial.csv"\n  column dose number\n  column n count\n  column y count\n  column amount number',
+    "link abbott\n  mean from c to 1\n  given c = 0.05\n  eta = normal_quantile((mu - c)/(1 - c))",
+    model("own", "  response y out of n\n  family binomial\n  link abbott"),
+    model("limited", "  response y out of n\n  family binomial\n  link cloglog\n  limits estimate to 1"),
+    model("bent", "  response y out of n\n  family binomial\n  link aranda_ordaz(estimate)"),
+    model("quasi", "  response amount\n  family quasi_likelihood(mu^1.3)\n  link log"),
+    model("counts", "  response y\n  family negative_binomial(estimate)\n  link log"),
+    "scales candidates\n  model bent\n  across dose",
+    "value at_one = mean_at(own, dose = 1)",
+  ]
+  const book = await settledBook(cells, { "trial.csv": `dose,n,y,amount\n${rows.map((row) => row.join(",")).join("\n")}\n` })
+  const bits: Record<string, string> = {}
+  for (const name of ["trial", "abbott", "own", "limited", "bent", "quasi", "counts", "candidates", "at_one"]) {
+    const state = book.state(name)
+    bits[`cell ${name}`] = state.status === "ready" ? `ready ${state.hash}` : `${state.status} ${JSON.stringify(book.notices(name))}`
+  }
   return bits
 }
 
