@@ -13,12 +13,13 @@ type Region = { readonly where: string; readonly has: string }
 
 const mostRegions = 4
 
-/** Sentences of more rows times columns than this would take longer than the fit. */
-const mostWork = 5e6
+/** With more rows, or more rows times columns, a sentence would hold up what waits for it. */
+const mostRows = 20_000
+const mostWork = 1e6
 
 /** Such as `every row with dose up to 1.8 has no success, and every row with dose from 2.1 on only successes`; null where there are no words for it. */
 export function separationSays({ problem, fit }: Found): string | null {
-  if (fit.recession.length === 0) return null
+  if (fit.recession.length === 0 || problem.rows > mostRows) return null
   const kinds = kindsOf(problem, fit)
   if (kinds === null) return null
   const involved = fit.coefficients.filter((_, j) => fit.recession.some((direction) => direction[j] !== 0))
@@ -45,17 +46,16 @@ function sentence(regions: readonly Region[] | null): string | null {
 /** What the response of each row that moves is; "" for rows that stay. Null where there is no common word for those that move. */
 function kindsOf(problem: Found["problem"], fit: Found["fit"]): readonly string[] | null {
   const shares = problem.family.name === "binomial"
-  const zero = shares
-    ? "no success"
-    : problem.family.name === "poisson" || problem.family.name === "negative_binomial"
-      ? "a count of 0"
-      : "a response of 0"
+  const zero =
+    { binomial: "no success", poisson: "a count of 0", negative_binomial: "a count of 0", normal: "a response of 0 or less" }[
+      problem.family.name
+    ] ?? "a response of 0"
   const kinds: string[] = []
   for (let i = 0; i < problem.rows; i++) {
     const eta = fit.eta[i] as number
     const y = problem.y[i] as number
     if (Number.isFinite(eta)) kinds.push("")
-    else if (y === 0) kinds.push(zero)
+    else if (y === 0 || (problem.family.name === "normal" && y < 0 && fit.mu[i] === 0)) kinds.push(zero)
     else if (shares && y === 1) kinds.push("only successes")
     else return null
   }

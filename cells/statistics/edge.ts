@@ -152,7 +152,7 @@ function multipliersAt(
 export async function wholeEdge(equations: Equations): Promise<Edge | null> {
   const { responses, basis, pace } = equations
   const { low, high, rows, a, offset } = responses
-  const end = [low, high].find((each) => Number.isFinite(each) && a.every((own, i) => own === 0 || agrees(responses, i, each)))
+  const end = [low, high].find((each) => Number.isFinite(each) && a.every((own, i) => own === 0 || isAt(responses, i, each)))
   if (end === undefined) return null
   const factor = Factor.of(gramOf(basis.layout, rangeSums(basis.layout, new Float64Array(rows).fill(1), new Float64Array(rows))))
   if (!factor) return null
@@ -179,8 +179,12 @@ export async function wholeEdge(equations: Equations): Promise<Edge | null> {
   return { point, active, iterations: 0 }
 }
 
-/** Whether a row has a finite deviance with its mean at this end. */
-const agrees = ({ family, link, y, scale }: Responses, row: number, end: number): boolean => {
+/** Whether a row has a finite likelihood with its mean at this end: its response is there too, or is an inverse Gaussian one, under any mean. */
+const agrees = (responses: Responses, row: number, end: number): boolean =>
+  isAt(responses, row, end) || (responses.family.name === "inverse_gaussian" && responses.link.mean(end) === Number.POSITIVE_INFINITY)
+
+/** Whether the response of a row is at this end itself. */
+const isAt = ({ family, link, y, scale }: Responses, row: number, end: number): boolean => {
   const mu = (scale ? (scale[row] as number) : 1) * link.mean(end)
   const response = y[row] as number
   return (
@@ -250,7 +254,10 @@ async function heldMaximum(equations: Equations, from: Float64Array, active: Rea
     if (arrived || last) {
       for (const [row, end] of active) {
         point.state.eta[row] = end
-        point.state.mu[row] = (responses.scale ? (responses.scale[row] as number) : 1) * responses.link.mean(end)
+        const mu = (responses.scale ? (responses.scale[row] as number) : 1) * responses.link.mean(end)
+        point.state.mu[row] = mu
+        // Nothing where the response is at that end; at a mean without bound an inverse Gaussian one is not.
+        point.deviance += (responses.a[row] as number) * responses.family.unitDeviance(responses.y[row] as number, mu, 1 - mu)
       }
       return { point, iterations, blocked: null }
     }
@@ -314,15 +321,24 @@ async function firstOutside(
 
 /** dℓ/dη of one row at an end of its range, where V is 0 and (y − μ)/V tends to −1/V'; elsewhere by its limit, from just inside. */
 function ownSlope(responses: Responses, row: number, end: number): number {
-  const { family, link, y, a, scale } = responses
+  const { family, link, a, scale } = responses
   const times = scale ? (scale[row] as number) : 1
   const at = times * link.mean(end)
   if (family.variance(at, 1 - at) === 0) {
-    const steep = -1 / family.varianceSlope(at, 1 - at)
-    const slope = times * link.slope(end)
-    if (slope === 0 ? Number.isFinite(steep) : Number.isFinite(slope)) return (a[row] as number) * steep * slope
+    const own = (-1 / family.varianceSlope(at, 1 - at)) * times * link.slope(end)
+    if (!Number.isNaN(own)) return (a[row] as number) * own
   }
-  const inside = end === responses.high ? end - 1e-9 * Math.max(1, Math.abs(end)) : end + 1e-9 * Math.max(1, Math.abs(end))
+  const near = slopeInside(responses, row, end, 1e-9)
+  const far = slopeInside(responses, row, end, 2e-9)
+  // A power of the distance runs to infinity or to 0; of what has a limit the part that is linear in the distance is taken away.
+  if (Math.abs(near) > 1.1 * Math.abs(far)) return near > 0 ? Number.POSITIVE_INFINITY : Number.NEGATIVE_INFINITY
+  return Math.abs(near) < 0.9 * Math.abs(far) ? 0 : 2 * near - far
+}
+
+function slopeInside({ family, link, y, a, scale, high }: Responses, row: number, end: number, distance: number): number {
+  const times = scale ? (scale[row] as number) : 1
+  const far = distance * Math.max(1, Math.abs(end))
+  const inside = end === high ? end - far : end + far
   const mu = times * link.mean(inside)
   const rest = 1 - mu
   return ((a[row] as number) * ((y[row] as number) - mu) * times * link.slope(inside)) / family.variance(mu, rest)

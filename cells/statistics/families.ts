@@ -130,7 +130,7 @@ const inverseGaussian: Family = {
   varianceSlope: (mu) => 3 * mu * mu,
   unitDeviance: (y, mu) => (mu === Infinity ? 1 : ((y - mu) / mu) * ((y - mu) / mu)) / y,
   logDensity: (y, mu, _rest, _trials, phi) =>
-    -halfLogTwoPi - 0.5 * log(phi) - 1.5 * log(y) - (((y - mu) / mu) * ((y - mu) / mu)) / y / (2 * phi),
+    -halfLogTwoPi - 0.5 * log(phi) - 1.5 * log(y) - inverseGaussian.unitDeviance(y, mu, 0) / (2 * phi),
 }
 
 const families: Readonly<Record<Exclude<FamilyName, "negative_binomial" | "tweedie" | "quasi_likelihood">, Family>> = {
