@@ -50,7 +50,7 @@ async function shown(block: Block, width = 860) {
   host.addEventListener("etamu-say", (event) => spoken.push(event.detail))
   const root = host
   const put = async (next: Block): Promise<void> => {
-    render(html`<etamu-block .block=${next} .cell=${"c"} .stale=${false}></etamu-block>`, root)
+    render(html`<etamu-block .block=${next}></etamu-block>`, root)
     await root.querySelector("etamu-block")?.updateComplete
     await inner().updateComplete
   }

@@ -9,7 +9,7 @@ import { read } from "../../runtime/statement.ts"
 import type { Hash, Key } from "../../runtime/value.ts"
 import { Desk } from "../../ui/page/desk.ts"
 import type { Ledger } from "../../ui/page/ledger/ledger.ts"
-import type { Row } from "../../ui/page/ledger/row.ts"
+import { Row } from "../../ui/page/ledger/row.ts"
 import { CannedEngine } from "./canned-engine.ts"
 import "../../ui/page/page.css"
 import "../../ui/page/blocks/block.ts"
@@ -230,5 +230,17 @@ describe("the ledger", () => {
     const notices = row(2).querySelector(".saying .notices")?.getBoundingClientRect()
     expect(notices?.height).toBeGreaterThan(10)
     expect(notices?.bottom).toBeLessThanOrEqual(row(2).getBoundingClientRect().bottom)
+  })
+
+  it("draws no other row again while a text changes", async () => {
+    const { desk, ledger } = await laid(["dial shift\n  start 1", "value twice = shift * 2", "note\nNothing to do with it."])
+    const drawn: CellId[] = []
+    const render = vi.spyOn(Row.prototype, "render")
+    desk.typed("c0", "dial shift\n  start 2")
+    await ledger.updateComplete
+    await row(0).updateComplete
+    for (const each of render.mock.contexts) drawn.push((each as Row).cell.id)
+    render.mockRestore()
+    expect([...new Set(drawn)]).toEqual(["c0"])
   })
 })

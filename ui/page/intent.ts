@@ -2,7 +2,7 @@
 // never touches the engine and knows no other cell; the row it stands in knows whose block it is, and one controller writes.
 //
 // Contract for the elements in blocks/:
-//   - `<etamu-block>` is given `.block` (a Block), `.cell` (its CellId) and `.stale` (true while the finding is out of date).
+//   - `<etamu-block>` is given `.block` (a Block).
 //   - A click dispatches `new IntentEvent({ intent })`: one edit, one step of undo.
 //   - A drag or a walk by arrow keys dispatches `new IntentEvent({ intent, gesture })` for every step, all with the same `gesture` (from
 //     `newGesture()`), and once more with `ended: true` (with the last intent) when the hand lets go: the whole of it is one step of undo.

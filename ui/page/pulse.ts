@@ -52,8 +52,6 @@ export class Pulse {
   ended(): void {
     this.#working -= 1
     if (this.#working > 0) return
-    clearInterval(this.#timer)
-    this.#timer = undefined
     this.#askedAt = null
     this.#cancelled = false
   }
@@ -80,6 +78,12 @@ export class Pulse {
   }
 
   #beat(): void {
+    if (this.#working === 0) {
+      // It ends only when a whole beat was idle: a drag is work and idle many times a second.
+      clearInterval(this.#timer)
+      this.#timer = undefined
+      return
+    }
     const now = this.#options.now()
     const slept = now - this.#lastBeat > beat * mostSleep
     this.#lastBeat = now

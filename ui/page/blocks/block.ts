@@ -13,10 +13,8 @@ import "./table.ts"
 import "./tapes.ts"
 
 export class BlockElement extends LitElement {
-  static override properties = { block: { attribute: false }, cell: { attribute: false }, stale: { type: Boolean, reflect: true } }
+  static override properties = { block: { attribute: false } }
   declare block: Block | null
-  declare cell: string
-  declare stale: boolean
 
   static override styles = [
     blockStyles,
@@ -35,8 +33,6 @@ export class BlockElement extends LitElement {
   constructor() {
     super()
     this.block = null
-    this.cell = ""
-    this.stale = false
   }
 
   protected override render(): TemplateResult | null {

@@ -280,7 +280,7 @@ export class ScalesElement extends LitElement {
       @click=${() => this.#choose(candidate)}
     >
       <svg width="44" height="28" aria-hidden="true">
-        ${guard([candidate.bridge], () => svg`<path class=${linkRole(candidate.link)} d=${linkThumbnail(candidate, 44, 28)}></path>`)}
+        ${guard(shapeOfBridge(candidate), () => svg`<path class=${linkRole(candidate.link)} d=${linkThumbnail(candidate, 44, 28)}></path>`)}
       </svg>
       <span><b>${candidate.link}</b><small>${standing(block, candidate)}</small></span>
     </button>`
@@ -424,6 +424,12 @@ export class ScalesElement extends LitElement {
     const reading = this.pointing === null ? null : readingOf(block, layout, subject, this.pointing)
     if (reading !== null) this.dispatchEvent(new SayEvent(readingSentence(block, subject, reading)))
   }
+}
+
+/** What the shape of a thumbnail hangs on, so coarsely that a drag which hardly moves the means does not draw it again. */
+function shapeOfBridge({ link, bridge: { mu } }: ScalesCandidate): unknown[] {
+  const [low, high] = [mu[0] ?? Number.NaN, mu.at(-1) ?? Number.NaN]
+  return [link, mu.length, low.toPrecision(2), high.toPrecision(2)]
 }
 
 /** The line under a candidate's name. */

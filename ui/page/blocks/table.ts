@@ -8,12 +8,19 @@ import { SayEvent } from "../intent.ts"
 import { blockStyles } from "./look.ts"
 
 export class TableElement extends LitElement {
-  static override properties = { block: { attribute: false }, full: { state: true }, said: { state: true } }
+  static override properties = {
+    block: { attribute: false },
+    full: { state: true },
+    said: { state: true },
+    unfolded: { state: true },
+  }
   declare block: TableBlock | null
   /** Whether every digit is shown. */
   declare full: boolean
   /** What came of copying, until something else happens. */
   declare said: string | null
+  /** Whether a folded table was opened: until then its rows are not made, since a drag would make them at every step. */
+  declare unfolded: boolean
 
   static override styles = [
     blockStyles,
@@ -108,15 +115,16 @@ export class TableElement extends LitElement {
     this.block = null
     this.full = false
     this.said = null
+    this.unfolded = false
   }
 
   protected override render(): TemplateResult | null {
     const { block } = this
     if (block === null) return null
     if (!block.folded) return this.#table(block, true)
-    return html`<details>
+    return html`<details @toggle=${this.#unfold}>
       <summary>${block.caption ?? "In numbers"}</summary>
-      ${this.#table(block, false)}
+      ${this.unfolded ? this.#table(block, false) : nothing}
     </details>`
   }
 
@@ -158,6 +166,10 @@ export class TableElement extends LitElement {
         ><button class="small-button" aria-pressed=${this.full} @click=${() => this.#turn()}>${this.full ? "fewer digits" : "every digit"}</button>
         <span class="quiet" role="status">${this.said ?? ""}</span>
       </div></div>`
+  }
+
+  readonly #unfold = (event: Event): void => {
+    this.unfolded = (event.currentTarget as HTMLDetailsElement).open
   }
 
   #turn(): void {

@@ -36,6 +36,7 @@ export class Ledger extends LitElement {
   #stop: (() => void) | null = null
   readonly #visible = new Set<CellId>()
   #sight: IntersectionObserver | null = null
+  readonly #offers: (readonly MenuItem[])[] = []
 
   constructor() {
     super()
@@ -153,7 +154,14 @@ export class Ledger extends LitElement {
     </div>`
   }
 
+  /** What can be added at a place. Made once for each place, so that no menu is drawn again when a text changes. */
   #kinds(at: number): readonly MenuItem[] {
+    const known = this.#offers[at] ?? this.#offered(at)
+    this.#offers[at] = known
+    return known
+  }
+
+  #offered(at: number): readonly MenuItem[] {
     const file: MenuItem = {
       label: "data from a file…",
       says: "A CSV or TSV file is enclosed, and a cell written that reads it",

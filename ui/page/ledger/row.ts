@@ -19,11 +19,14 @@ import { lineOf, reading } from "../statement/reading.ts"
 import { surroundings } from "../statement/surroundings.ts"
 import { hairline } from "./hairline.ts"
 import { type Standing, standing } from "./standing.ts"
-import { lanes, type Strand } from "./threads.ts"
+import { lanes, type Strand, sameStrands } from "./threads.ts"
 import "../menu.ts"
 
 /** How long after a keystroke what is wrong is put into words; underlined it is at once. */
 const wordsAfter = 700
+
+/** How long a finding may be due again before that is shown. */
+const briefly = 120
 
 export type RowAsk =
   | { readonly type: "edit"; readonly at: number; readonly offer: boolean }
@@ -47,7 +50,8 @@ export class Row extends LitElement {
   static override properties = {
     desk: { attribute: false },
     cell: { attribute: false },
-    strands: { attribute: false },
+    // Made anew with every change of the notebook, and hardly ever different: a row that nothing has happened to is not drawn again.
+    strands: { attribute: false, hasChanged: (next: readonly Strand[], now: readonly Strand[]) => !sameStrands(next, now ?? []) },
     editing: { attribute: false },
     first: { type: Boolean },
     last: { type: Boolean },
@@ -78,6 +82,7 @@ export class Row extends LitElement {
   /** What is being drawn. */
   #shown: Shown | null = null
   #timer: ReturnType<typeof setTimeout> | undefined
+  #lag: ReturnType<typeof setTimeout> | undefined
   readonly #editor = createRef<HTMLElementTagNameMap["etamu-editor"]>()
   readonly #size = new ResizeObserver(() => this.#measure())
 
@@ -109,13 +114,28 @@ export class Row extends LitElement {
     this.#size.disconnect()
     this.#sized = null
     clearTimeout(this.#timer)
+    clearTimeout(this.#lag)
+  }
+
+  /**
+   * The state of the cell is another. That a finding which is shown is due again is drawn only when it stays so: what is back at once, as at
+   * every step of a drag, must neither flicker nor cost two drawings more.
+   */
+  #told(): void {
+    const state = this.desk.state(this.cell.id)
+    const isBrief = (state.status === "due" || state.status === "working") && state.last !== null
+    if (isBrief) this.#lag ??= setTimeout(() => this.requestUpdate(), briefly)
+    else this.requestUpdate()
   }
 
   protected override willUpdate(): void {
+    clearTimeout(this.#lag)
+    this.#lag = undefined
+
     if (this.#watched !== this.cell.id) {
       this.#unwatch?.()
       this.#watched = this.cell.id
-      this.#unwatch = this.desk.watch(this.cell.id, () => this.requestUpdate())
+      this.#unwatch = this.desk.watch(this.cell.id, () => this.#told())
     }
   }
 
@@ -224,19 +244,23 @@ export class Row extends LitElement {
   }
 
   #found(how: Standing, notices: readonly Notice[]): TemplateResult | typeof nothing {
-    const beside = notices.filter(({ level }) => level !== "fault")
+    // What was said beside a finding stays with it while it is out of date, dimmed like it, so that the page does not jump.
+    const said = how.stale ? [...notices, ...(how.shown?.notices ?? [])] : notices
+    const beside = [...new Set(said)].filter(({ level }) => level !== "fault")
     const warnings = beside.filter(({ level }) => level === "warning")
     const remarks = beside.filter(({ level }) => level === "remark")
     const list = (of: readonly Notice[]) =>
-      of.length === 0 ? nothing : html`<ul class="notices">${of.map((notice) => this.#notice(notice))}</ul>`
+      of.length === 0
+        ? nothing
+        : html`<ul class=${how.stale ? "notices stale" : "notices"}>${of.map((notice) => this.#notice(notice))}</ul>`
     this.#shown = how.shown
     const blocks = (how.shown?.blocks ?? []) as readonly Block[]
     return html`
-      ${how.stale ? nothing : list(warnings)}
+      ${list(warnings)}
       <div class=${how.stale ? "blocks stale" : "blocks"}>${repeat(
         blocks,
         (block, i) => `${i} ${block.type}`,
-        (block) => html`<etamu-block .block=${block} .cell=${this.cell.id} .stale=${how.stale}></etamu-block>`,
+        (block) => html`<etamu-block .block=${block}></etamu-block>`,
       )}</div>
       ${
         this.failure === null || this.failure.shown !== how.shown
@@ -244,7 +268,7 @@ export class Row extends LitElement {
           : html`<p class="drawing-failed" role="alert">Not all of this finding could be drawn: ${this.failure.why}. That is a fault of
             the program; the statement is untouched.</p>`
       }
-      ${how.stale ? nothing : list(remarks)}
+      ${list(remarks)}
     `
   }
 

@@ -26,6 +26,21 @@ export interface Strand {
   readonly name: string
 }
 
+export const sameStrands = (one: readonly Strand[], other: readonly Strand[]): boolean =>
+  one.length === other.length &&
+  one.every((strand, i) => {
+    const its = other[i] as Strand
+    const sameKnot = strand.knot?.type === its.knot?.type && strand.knot?.line === its.knot?.line
+    return (
+      sameKnot &&
+      strand.lane === its.lane &&
+      strand.above === its.above &&
+      strand.below === its.below &&
+      strand.lit === its.lit &&
+      strand.name === its.name
+    )
+  })
+
 /** As many as stand side by side in the gutter. */
 export const lanes = 4
 

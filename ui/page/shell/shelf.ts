@@ -129,7 +129,10 @@ function when(time: string): string {
 }
 
 /** Hours and minutes on the local clock. */
-export const clock = (time: string): string => new Date(time).toLocaleTimeString("en-GB", { hour: "2-digit", minute: "2-digit" })
+export const clock = (time: string): string => hours.format(new Date(time))
+
+/** Made once: the head of the page asks at every draw. */
+const hours = new Intl.DateTimeFormat("en-GB", { hour: "2-digit", minute: "2-digit" })
 
 customElements.define("etamu-shelf", ShelfSheet)
 
