@@ -92,7 +92,12 @@ export async function rowsUsed(
 }
 
 /** The rows of no dose that have a response and weigh something. */
-function controlUsed(said: ModelSaid, table: TableHere, { response, repeat, precision, sampling }: Read, isControl: Uint8Array): Uint8Array {
+function controlUsed(
+  said: ModelSaid,
+  table: TableHere,
+  { response, repeat, precision, sampling }: Read,
+  isControl: Uint8Array,
+): Uint8Array {
   const used = isControl.slice()
   const clauses = new Set(["response", "repeat", "precision", "sampling"])
   for (const { name, clause } of columnsOf(said)) {

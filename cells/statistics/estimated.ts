@@ -12,7 +12,7 @@ import { type Responses, responsesOf } from "./rows.ts"
 import { Equations, maximum, type Pace, type Point } from "./scoring.ts"
 import { devianceTerm } from "./special.ts"
 import { startingPoint } from "./start.ts"
-import { tweedieAtBest } from "./tweedie-fit.ts"
+import { tweedieAtBest, tweedieLikelihood } from "./tweedie-fit.ts"
 
 /** The best coefficients at given parameters, and how the objective goes on from there. */
 export type Spot = {
@@ -69,7 +69,7 @@ export class Surface {
     const problem = problemAt(this.problem, parameters, values)
     const responses = responsesOf(problem)
     const equations = new Equations(basis, responses, pace)
-    const start = (near ? await this.relinked(equations, near) : null) ?? (await this.cold(equations))
+    const start = (near ? await this.nearby(equations, problem, near) : null) ?? (await this.cold(equations))
     if (!start) return null
     const found = await maximum(equations, start, this.phi)
     const { point } = found
@@ -78,7 +78,8 @@ export class Surface {
     let [byLikelihood, powerSlope] = [1, 0]
     if (this.ofLikelihood) {
       if (problem.family.name === "tweedie") {
-        const best = await tweedieAtBest(problem, point.state.mu, near && near.phi !== 1 ? near.phi : this.phi(point), pace)
+        const search = await tweedieAtBest(problem, point.state.mu, near && near.phi !== 1 ? near.phi : this.phi(point), pace)
+        const best = await tweedieLikelihood(problem, point.state.mu, search.phi, pace, true)
         objective = -2 * best.logLikelihood
         byLikelihood = best.phi
         powerSlope = best.byPower
@@ -115,6 +116,15 @@ export class Surface {
     }
     const inside = found.end === "arrived" && factor !== null && gradient.every(Number.isFinite)
     return { values: Float64Array.from(values), objective, gradient, hessian, problem, equations, point, inside, phi: byLikelihood }
+  }
+
+  /** The coefficients of another spot, where the link is the same; else what comes to about the same means. */
+  private async nearby(equations: Equations, problem: Problem, near: Spot): Promise<Point | null> {
+    const same = near.problem.link === problem.link && near.equations.basis === this.basis && near.problem.offset === problem.offset
+    if (!same) return this.relinked(equations, near)
+    const point = equations.point()
+    point.gamma.set(near.point.gamma)
+    return (await equations.fill(point, "expected")) ? point : null
   }
 
   /** Coefficients under which the new link gives about the means of the old one: one weighted regression of its η. */
@@ -239,7 +249,8 @@ export async function bestParameters(surface: Surface, near: Spot | null = null)
         last = spot
       }
     }
-    starts = tried.sort((a, b) => a.objective - b.objective).slice(0, 2)
+    // With many rows a second beginning costs more than what it might find.
+    starts = tried.sort((a, b) => a.objective - b.objective).slice(0, problem.rows > manyRows ? 1 : 2)
   }
   let best: Spot | null = null
   let arrived = false
@@ -275,7 +286,8 @@ async function powerVarianceAt(surface: Surface, spot: Spot): Promise<number | n
   const p = spot.values[at] as number
   const h = 1e-3 * Math.min(p - 1, 2 - p)
   const slopes: number[] = []
-  for (const by of [-2 * h, -h, h, 2 * h]) {
+  const few = surface.problem.rows > manyRows
+  for (const by of few ? [-h, h] : [-2 * h, -h, h, 2 * h]) {
     const aside = await surface.at(
       spot.values.map((value, j) => (j === at ? value + by : value)),
       spot,
@@ -283,10 +295,12 @@ async function powerVarianceAt(surface: Surface, spot: Spot): Promise<number | n
     slopes.push(aside?.gradient[at] ?? Number.NaN)
   }
   const [a, b, c, d] = slopes as [number, number, number, number]
-  const second = (a - 8 * b + 8 * c - d) / (12 * h)
+  const second = few ? (b - a) / (2 * h) : (a - 8 * b + 8 * c - d) / (12 * h)
   return second > 0 ? 2 / second : null
 }
 
+/** Beyond so many rows the search is begun once, and a power's error is had by two slopes in place of four. */
+const manyRows = 5000
 const mostSteps = 60
 const mostHalvings = 30
 

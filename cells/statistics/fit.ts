@@ -189,7 +189,14 @@ export async function searched(
     const before = near && near.link.name === problem.link.name && sameParameters(near, problem) ? near : null
     const begin = before ? await surface.at(startingValues({ ...problem, family: before.family, link: before.link }), null) : null
     estimated = await bestParameters(surface, begin)
-    if (!estimated) return { ok: false, why: "no_start", detail: "no coefficients were found under which every mean is possible" }
+    if (!estimated) {
+      const of = surface.parameters.map((parameter) => parameter.of).join(" and ")
+      return {
+        ok: false,
+        why: "gave_up",
+        detail: `no value of ${of} was found for which these rows have a likelihood and every mean is possible`,
+      }
+    }
     problem = problemAt(problem, surface.parameters, estimated.spot.values)
   }
   const responses = responsesOf(problem)

@@ -15,7 +15,6 @@ import { type EstimatedParameter, estimatedParameters, searchedValue, shownValue
 import type { Climb, Limit } from "./limits.ts"
 import type { NullModel } from "./null-model.ts"
 import type { Problem } from "./problem.ts"
-import { endsOf } from "./recession.ts"
 import type { Responses } from "./rows.ts"
 import { directionScore, spansConstant } from "./score-direction.ts"
 import type { Equations, Point } from "./scoring.ts"
@@ -127,7 +126,7 @@ export async function findings(given: Findings): Promise<Fit> {
     parameters: parameters.map((parameter, j): Parameter => {
       const [value, slope] = shownValue(problem, parameter, searchedValue(problem, parameter))
       const at = joined.indexOf(parameter)
-      const variance = at >= 0 ? (joint?.variances[at] ?? Number.NaN) : powerVariance(given, parameter)
+      const variance = at >= 0 ? (joint?.variances[at] ?? Number.NaN) : ends[j] === 0 ? powerVariance(given, parameter) : Number.NaN
       return {
         of: parameter.of,
         value: Number.isFinite(value) ? value : null,
@@ -210,12 +209,12 @@ function evidenceOf({ climb, limit, others }: Findings, dependent: DependentTerm
 /** η and μ of all rows: those that move are at the end of their range. */
 function wholeMeans({ climb, limit }: Findings, point: Point | null): { readonly eta: Float64Array; readonly mu: Float64Array } {
   if (limit.type !== "infinite") return { eta: (point as Point).state.eta.slice(), mu: (point as Point).state.mu.slice() }
-  const { plus, minus } = endsOf(climb.responses)
+  const { link } = climb.responses
   const eta = new Float64Array(climb.problem.rows)
   const mu = new Float64Array(climb.problem.rows)
   limit.along.forEach((t, i) => {
     eta[i] = t > 0 ? Number.POSITIVE_INFINITY : Number.NEGATIVE_INFINITY
-    mu[i] = (t > 0 ? plus : minus) ?? Number.NaN
+    mu[i] = link.mean(eta[i])
   })
   limit.rows.forEach((row, k) => {
     eta[row] = (point as Point).state.eta[k] as number
@@ -243,7 +242,8 @@ function movedRows(climb: Climb, stay: Int32Array, mu: Float64Array): { readonly
 /** The log-densities of the rows that moved: 0 for counts, which agree with the end. */
 function movedLikelihood(climb: Climb, stay: Int32Array, mu: Float64Array, phi: number): number {
   const { family, y, rows } = climb.responses
-  if (family.discrete) return 0
+  // Between limits even a row at an end is not certain.
+  if (family.discrete && !climb.problem.link.limits) return 0
   const { repeat, precision, trials } = climb.problem
   const staying = new Set(stay)
   let sum = 0

@@ -55,12 +55,17 @@ export function problemAt(problem: Problem, parameters: readonly EstimatedParame
     const value = values[j] as number
     const put = (into: readonly number[], shown: number): readonly number[] => into.map((old, k) => (k === index ? shown : old))
     if (part === "family") family = { ...family, parameters: put(family.parameters, family.name === "tweedie" ? value : 1 / value) }
-    else if (part === "link")
-      link = { ...link, parameters: put(link.parameters, link.name === "symmetric_power" ? Math.sqrt(value) : value) }
+    else if (part === "link") link = { ...link, parameters: put(link.parameters, shownIn(link.name, value)) }
     else if (link.limits) link = { ...link, limits: { ...link.limits, [part]: value } }
   })
   return { ...problem, family, link }
 }
+
+/** A power so near to 0 is the log: μ^a would keep fewer digits of its mean than the difference makes. */
+const asLog = 1e-7
+
+const shownIn = (link: string, value: number): number =>
+  link === "symmetric_power" ? Math.sqrt(value) : link === "power" && Math.abs(value) < asLog ? 0 : value
 
 export type JointSums = {
   /** What rows of no dose, which are not among the others, add to ∂ℓ/∂θ; φ taken as one. */
@@ -100,6 +105,11 @@ export function jointSums(
   const observed = kind === "observed"
   const { low, high } = problem.link.limits ?? { low: 0, high: 1 }
   const alpha = problem.family.name === "negative_binomial" ? 1 / (problem.family.parameters[0] as number) : 0
+  const ofFamily = parameters.findIndex(({ part }) => part === "family")
+  const besideFamily = parameters.some(({ part }) => part !== "family")
+  // Filled again for each row.
+  const at = { m: 0, rest: 0, d: 0, low, high }
+  const out = { first, mixed, second }
   for (let i = 0; i < rows; i++) {
     const own = a[i] as number
     if (own === 0) continue
@@ -115,9 +125,13 @@ export function jointSums(
     const byMean = (own * residual) / v
     const byMeanTwice = observed ? -own * (1 / v + ((residual / v) * family.varianceSlope(m, rest)) / v) : -own / v
     if (count > 0 && link.bend) link.bend(e, bend)
-    slopesOf(parameters, count, bend, times, { m, rest, d, low, high }, { first, mixed, second })
+    if (besideFamily) {
+      at.m = m
+      at.rest = rest
+      at.d = d
+      slopesOf(parameters, count, bend, times, at, out)
+    }
     const R = (repeat ? (repeat[i] as number) : 1) * (precision ? (precision[i] as number) : 1)
-    const ofFamily = parameters.findIndex(({ part }) => part === "family")
     if (ofFamily >= 0 && family.discrete) alphaSlopes(response, m, alpha, slopes)
     for (let j = 0; j < q; j++) {
       const column = columns[j] as Float64Array

@@ -11,7 +11,10 @@ export function limitedLink(link: Link, low: number, high: number): Link {
     range: { low, high },
     reach: link.reach,
     eta: (mu) => link.eta((mu - low) / width),
-    mean: (eta) => low + width * link.mean(eta),
+    mean: (eta) => {
+      const share = link.mean(eta)
+      return share === 1 ? high : low + width * share
+    },
     complement: (eta) => 1 - high + width * complement(eta),
     slope: (eta) => width * link.slope(eta),
     curvature: (eta) => width * link.curvature(eta),

@@ -5,26 +5,30 @@ import { log, log1p } from "./elementary.ts"
 import type { Family } from "./family.ts"
 import { devianceTermBy, halfLogTwoPi, stirlingError } from "./special.ts"
 
-export const negativeBinomial = (k: number): Family => ({
-  name: `negative_binomial(${k})`,
-  range: { low: 0, high: Infinity },
-  discrete: true,
-  dispersion: "one",
-  variance: (mu) => mu * (1 + mu / k),
-  varianceSlope: (mu) => 1 + (2 * mu) / k,
-  unitDeviance: (y, mu) => 2 * halfDeviance(y, mu, k),
-  // Loader's form: a binomial law of y + k trials, times k/(y + k).
-  logDensity: (y, mu) =>
-    y === 0
-      ? -k * log1p(mu / k)
-      : stirlingError(y + k) -
-        stirlingError(k) -
-        stirlingError(y) -
-        halfDeviance(y, mu, k) -
-        halfLogTwoPi -
-        0.5 * log1p(y / k) -
-        0.5 * log(y),
-})
+export const negativeBinomial = (k: number): Family => {
+  // What a count adds whatever its mean is, once for each small count.
+  const small = new Float64Array(256).fill(Number.NaN)
+  const constant = (y: number): number =>
+    stirlingError(y + k) - stirlingError(k) - stirlingError(y) - halfLogTwoPi - 0.5 * log1p(y / k) - 0.5 * log(y)
+  const known = (y: number): number => {
+    if (!(y < small.length)) return constant(y)
+    const value = small[y] as number
+    if (!Number.isNaN(value)) return value
+    small[y] = constant(y)
+    return small[y] as number
+  }
+  return {
+    name: `negative_binomial(${k})`,
+    range: { low: 0, high: Infinity },
+    discrete: true,
+    dispersion: "one",
+    variance: (mu) => mu * (1 + mu / k),
+    varianceSlope: (mu) => 1 + (2 * mu) / k,
+    unitDeviance: (y, mu) => 2 * halfDeviance(y, mu, k),
+    // Loader's form: a binomial law of y + k trials, times k/(y + k).
+    logDensity: (y, mu) => (y === 0 ? -k * log1p(mu / k) : known(y) - halfDeviance(y, mu, k)),
+  }
+}
 
 /** y·log(y/μ) − (y + k)·log((y + k)/(μ + k)) as two terms that are never negative. */
 function halfDeviance(y: number, mu: number, k: number): number {

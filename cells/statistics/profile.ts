@@ -25,7 +25,11 @@ export type ProfileInterval = { readonly low: IntervalEnd; readonly high: Interv
 export const mostProfileWork = 5e8
 
 /** Whether profiles are to be had without being asked for: by the data, never by the clock. */
-export const profilesAreLight = (fit: Fit): boolean => fit.rows * fit.rank * fit.rank * fit.rank <= mostProfileWork
+export const profilesAreLight = (fit: Fit): boolean => {
+  // Where parameters are estimated too, each point of a profile is a search of its own; at an edge each is a search among its rows.
+  const times = fit.certificate.class === "boundary" ? 10_000 : fit.parameters.length > 0 ? 100 : 1
+  return times * fit.rows * fit.rank * fit.rank * fit.rank <= mostProfileWork
+}
 
 /**
  * What the deviance may rise by in units of φ: the point of χ²(1), or of F(1, df) where φ is estimated. Null where there is none.

@@ -18,7 +18,8 @@ export function endsOf({ link }: Pick<Responses, "link">): { readonly plus: 0 | 
   const { range, reach } = link
   const end = (eta: number): 0 | 1 | null => {
     const mu = link.mean(eta)
-    return mu === 0 && range.low === 0 ? 0 : mu === 1 && range.high === 1 ? 1 : null
+    // Between limits a failure agrees with the lower and a success with the upper one: no other mean gives it more likelihood.
+    return mu === range.low && range.low >= 0 ? 0 : mu === range.high && range.high <= 1 ? 1 : null
   }
   return { plus: reach.high === Infinity ? end(Infinity) : null, minus: reach.low === -Infinity ? end(-Infinity) : null }
 }

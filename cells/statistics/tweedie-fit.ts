@@ -5,7 +5,7 @@ import type { Problem } from "./problem.ts"
 import type { Pace } from "./scoring.ts"
 import { tweedieRow, tweedieRowOf } from "./tweedie.ts"
 
-/** ℓ over all rows at one φ, with its slopes in log φ and in p. */
+/** ℓ over all rows at one φ, with its slopes in log φ, and in p where that was asked for. */
 export type TweedieLikelihood = {
   readonly phi: number
   readonly logLikelihood: number
@@ -17,7 +17,13 @@ export type TweedieLikelihood = {
 /** A row costs up to this many nanoseconds. */
 const workOfRow = 15_000
 
-export async function tweedieLikelihood(problem: Problem, mu: Float64Array, phi: number, pace: Pace): Promise<TweedieLikelihood> {
+export async function tweedieLikelihood(
+  problem: Problem,
+  mu: Float64Array,
+  phi: number,
+  pace: Pace,
+  withPower = false,
+): Promise<TweedieLikelihood> {
   const { y, repeat, precision, rows } = problem
   const p = problem.family.parameters[0] as number
   const row = tweedieRowOf()
@@ -27,7 +33,7 @@ export async function tweedieLikelihood(problem: Problem, mu: Float64Array, phi:
     // A mean at 0 agrees with its response, and then with certainty.
     if (m === 0 && y[i] === 0) continue
     const R = repeat ? (repeat[i] as number) : 1
-    tweedieRow(y[i] as number, m, p, phi / (precision ? (precision[i] as number) : 1), row)
+    tweedieRow(y[i] as number, m, p, phi / (precision ? (precision[i] as number) : 1), row, withPower)
     logLikelihood += R * row.logDensity
     byLogPhi += R * row.byLogPhi
     byLogPhiTwice += R * row.byLogPhiTwice

@@ -216,3 +216,33 @@ describe("values of the conventions for Bliss's beetles", () => {
     }
   })
 })
+
+describe("separation between limits", () => {
+  it("leaves failures at the lower limit and successes at the upper, and counts what that costs", async () => {
+    const y = Float64Array.of(0, 0, 0, 1, 1, 1)
+    const problem: Problem = {
+      family: { name: "binomial", parameters: [] },
+      link: { name: "logit", parameters: [], limits: { low: 0.1, high: 1, estimated: [] } },
+      intercept: true,
+      terms: [{ says: "x", pieces: [{ variable: "x", as: "itself", setting: null }] }],
+      variables: { x: { type: "number", values: Float64Array.of(1, 2, 3, 4, 5, 6) } },
+      rows: 6,
+      y,
+      trials: null,
+      repeat: null,
+      precision: null,
+      offset: null,
+      exposure: null,
+      cluster: null,
+      dispersion: "one",
+      standardErrors: "expected",
+      confidence: 0.95,
+    }
+    const found = await fitted(problem)
+    expect(found.certificate.class).toBe("infinite")
+    expect([...found.mu]).toEqual([0.1, 0.1, 0.1, 1, 1, 1])
+    // Three failures at a mean of 0.1.
+    expect(digits(found.deviance, "0.6321630939469578")).toBeGreaterThan(13)
+    expect(digits(found.logLikelihood, "-0.3160815469734789")).toBeGreaterThan(13)
+  })
+})
