@@ -111,8 +111,9 @@ export function designCovariance(basis: Basis, columns: number, C: Float64Array)
       if (on >= 0) half[on * size + k] = (half[on * size + k] as number) - (change.centre[j] as number) * own
     }
   }
+  const row = new Float64Array(columns)
   for (const a of change.column) {
-    const row = new Float64Array(columns)
+    row.fill(0)
     for (let k = 0; k < size; k++) {
       const own = (half[a * size + k] as number) / (change.scale[k] as number)
       const at = change.column[k] as number
@@ -213,7 +214,15 @@ export function outOfScore(basis: Basis, score: Float64Array): Float64Array {
   return out
 }
 
-const placesOf = (column: Int32Array): Map<number, number> => new Map([...column].map((at, j) => [at, j]))
+/** Where each column of the design is in the basis, found once for each basis. */
+function placesOf(column: Int32Array): ReadonlyMap<number, number> {
+  const known = places.get(column)
+  if (known) return known
+  const made = new Map([...column].map((at, j) => [at, j]))
+  places.set(column, made)
+  return made
+}
+const places = new WeakMap<Int32Array, ReadonlyMap<number, number>>()
 
 const lowerTriangle = (full: Float64Array, p: number): Float64Array => {
   const lower = new Float64Array((p * (p + 1)) / 2)

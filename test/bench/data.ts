@@ -17,17 +17,21 @@ export const p = 10
 /** Nine columns of numbers that are nearly normal: sums of four even ones. */
 export function columnsOf(rows: number): readonly Float64Array[] {
   const next = generator(rows)
-  return Array.from({ length: p - 1 }, () =>
-    Float64Array.from({ length: rows }, () => Math.sqrt(3) * (next() + next() + next() + next() - 2)),
-  )
+  return Array.from({ length: p - 1 }, () => {
+    const x = new Float64Array(rows)
+    for (let i = 0; i < rows; i++) x[i] = Math.sqrt(3) * (next() + next() + next() + next() - 2)
+    return x
+  })
 }
 
 /** The linear predictor: every column counts, and together they have a standard deviation of 0.8. */
 export function predictorOf(columns: readonly Float64Array[]): Float64Array {
   const size = 0.8 / Math.sqrt(columns.length)
-  return Float64Array.from(columns[0] ?? [], (_, i) =>
-    columns.reduce((sum, x, j) => sum + (j % 2 === 0 ? size : -size) * (x[i] as number), -0.3),
-  )
+  const eta = new Float64Array(columns[0]?.length ?? 0).fill(-0.3)
+  columns.forEach((x, j) => {
+    for (let i = 0; i < eta.length; i++) eta[i] = (eta[i] as number) + (j % 2 === 0 ? size : -size) * (x[i] as number)
+  })
+  return eta
 }
 
 export function responseOf(family: Case["family"], link: string, eta: Float64Array): Float64Array {
