@@ -49,6 +49,8 @@ export interface Window {
 export async function windowAt(context: BrowserContext, address: string, there = "etamu-row"): Promise<Window> {
   const page = await context.newPage()
   const wrong: string[] = []
+  // From the start, since the browser is told to hand its dialogs for files over only once somebody listens.
+  page.on("filechooser", () => {})
   page.on("console", (message) => {
     if (["error", "warning"].includes(message.type())) wrong.push(`${message.type()}: ${message.text()}`)
   })

@@ -66,6 +66,8 @@ export class Page extends LitElement {
   #keeping: Keeping | null = null
   #started: Started | null = null
   #stop: (() => void) | null = null
+  /** How the row in focus stood when it was told last. */
+  #told = ""
   /** The name a data cell asks for, while the dialog for it is open. */
   #wanted: string | null = null
   readonly #ledger = createRef<Ledger>()
@@ -331,12 +333,21 @@ export class Page extends LitElement {
     })
     this.#stop = desk.listen((event) => {
       this.requestUpdate()
-      if (event.type === "settled" && desk.isAtRest) this.spoken = this.#ledger.value?.spoken ?? ""
+      if (event.type === "notebook") this.#told = ""
+      if (event.type === "settled" && desk.isAtRest) this.#tellStanding()
     })
     this.desk = desk
     if (book.doubt !== null && loan?.role !== "reading") this.#sayDoubt(book.doubt)
     desk.rest()
     scrollTo(0, 0)
+  }
+
+  /** What the row in focus has come to, once it is all there and only if it is news: a reading told meanwhile is not talked over. */
+  #tellStanding(): void {
+    const standing = this.#ledger.value?.spoken ?? ""
+    if (standing === "" || standing === this.#told || standing.endsWith("more to come")) return
+    this.#told = standing
+    this.spoken = standing
   }
 
   async #close(next: Loan | null): Promise<void> {
