@@ -92,7 +92,7 @@ export function createEvaluator(options: EvaluatorOptions): Evaluator {
       late: async (soFar) => {
         if (task.gesture) return false
         if (run.cancelled) throw new Cancelled()
-        const shown = found(kind, soFar, said, false)
+        const shown = found(kind, soFar, said)
         const parked = turns.park(run)
         events.soFar(shown)
         const wanted = await parked
@@ -109,7 +109,7 @@ export function createEvaluator(options: EvaluatorOptions): Evaluator {
       outcome = { ok: false, found: null, notices: [missingFile(error.file, placeOfText(statement, error.file))] }
     }
     if (run.cancelled) return { type: "cancelled" }
-    const result = found(kind, outcome, said, task.gesture)
+    const result = found(kind, outcome, said)
     for (const [part, its] of published) {
       if (result.ok && result.parts[part] !== its) throw new Error(`The part ${part} was published otherwise than it was found`)
     }
@@ -132,18 +132,15 @@ export function createEvaluator(options: EvaluatorOptions): Evaluator {
     return { inputs, lost }
   }
 
-  /**
-   * Holds what was found and makes what is shown of it. Blocks are copied where they hold an array of a value, since they are given away.
-   * Nothing of a gesture is kept or tried, so that its findings come without a summary: a hand would wait for numbers that nobody reads.
-   */
-  function found(kind: AnyKind, outcome: Outcome<Value>, said: unknown, gesture: boolean): Found {
+  /** Holds what was found and makes what is shown of it. Blocks are copied where they hold an array of a value, since they are given away. */
+  function found(kind: AnyKind, outcome: Outcome<Value>, said: unknown): Found {
     const { ok, notices, version } = { ...outcome, version: kind.version }
     if (outcome.found === null && !ok) {
       return { ok, version, whole: null, parts: {}, bytes: {}, shown: { blocks: [], notices, summary: null }, tried: [] }
     }
     const { value, whole, parts, bytes } = store.putFinding(outcome.found)
     const blocks = store.fresh(kind.show(value, said) as unknown as Value) as unknown as readonly BlockLike[]
-    const shown: Shown = { blocks, notices, summary: gesture ? null : kind.summary(value) }
+    const shown: Shown = { blocks, notices, summary: kind.summary(value) }
     const size = bytesOf(shown as unknown as Value)
     return {
       ok,
@@ -152,7 +149,7 @@ export function createEvaluator(options: EvaluatorOptions): Evaluator {
       parts,
       bytes: { ...bytes, [whole]: (bytes[whole] ?? 0) + size },
       shown,
-      tried: ok && !gesture ? kind.tried(value) : [],
+      tried: ok ? kind.tried(value) : [],
     }
   }
 }

@@ -263,15 +263,6 @@ describe("work under way", () => {
     expect(foundOf(await result).whole).toBe(hash({ tail: 1 }))
   })
 
-  it("makes no summary of what a gesture finds, since nothing of it is kept", async () => {
-    const evaluator = evaluatorOf(
-      told(async () => ({ ok: true, found: 1, notices: [] }), { summary: () => "its numbers", tried: () => ["a fit"] }),
-    )
-    const kept = ({ shown, tried }: Found) => [shown.summary, tried]
-    expect(kept(await evaluated(evaluator, "k", { gesture: true }))).toEqual([null, []])
-    expect(kept(await evaluated(evaluator, "k"))).toEqual(["its numbers", ["a fit"]])
-  })
-
   it("leaves its late parts out in a gesture, or where they are not wanted", async () => {
     expect((await evaluated(evaluatorOf(tardy([])), "k", { gesture: true })).whole).toBe(hash({ tail: 0 }))
     const evaluator = evaluatorOf(tardy([]))

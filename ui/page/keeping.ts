@@ -51,8 +51,7 @@ export class Keeping {
     const notebook = this.#notebook
     const findings = notebook.cells.flatMap(({ id }) => {
       const state = this.#desk.state(id)
-      // What is still unfinished, or of a gesture, is found once more; what is kept is what will stand.
-      return state.status === "ready" && !state.late ? [{ cell: id, key: state.key as string, summary: state.shown.summary }] : []
+      return state.status === "ready" ? [{ cell: id, key: state.key as string, summary: state.shown.summary }] : []
     })
     const same = notebook === this.#kept.notebook
     const changed = same && this.#doubt === this.#kept.doubt ? this.#kept.changed : now()
