@@ -97,37 +97,39 @@ function quadratic(covariance: Float64Array, gradient: readonly number[]): numbe
   return sum
 }
 
-/** Both scales along `x` from a line and the width `c` of its band in standard errors; a mean outside `possible` is a gap. */
+/** Both scales along `x` from a line and the width `c` of its band in standard errors, or no band; a mean outside `possible` is a gap. */
 export function curveOf(
   link: Link,
   possible: Range,
   line: Line,
-  c: number,
+  c: number | null,
   x: Float64Array,
   level: string | null,
   inside: Uint8Array,
 ): ScalesCurve {
   const n = x.length
+  const banded = c === null ? 0 : n
   const curve = {
     level,
     x,
     eta: new Float64Array(n),
-    etaLow: new Float64Array(n),
-    etaHigh: new Float64Array(n),
+    etaLow: new Float64Array(banded),
+    etaHigh: new Float64Array(banded),
     mu: new Float64Array(n),
-    muLow: new Float64Array(n),
-    muHigh: new Float64Array(n),
+    muLow: new Float64Array(banded),
+    muHigh: new Float64Array(banded),
     inside,
   }
   for (let i = 0; i < n; i++) {
     const eta = line.eta[i] as number
-    const half = c * (line.error[i] as number)
     const mean = meanWithin(link, possible, eta)
     const gives = mean > possible.low && mean < possible.high && eta > link.reach.low && eta < link.reach.high
     curve.eta[i] = eta
+    curve.mu[i] = gives ? mean : Number.NaN
+    if (c === null) continue
+    const half = c * (line.error[i] as number)
     curve.etaLow[i] = eta - half
     curve.etaHigh[i] = eta + half
-    curve.mu[i] = gives ? mean : Number.NaN
     // Written out without arrays: this runs for every candidate at every step of a drag.
     const below = gives ? meanWithin(link, possible, eta - half) : Number.NaN
     const above = gives ? meanWithin(link, possible, eta + half) : Number.NaN

@@ -56,13 +56,13 @@ export class Plot {
   }
 
   /**
-   * A candidate drawn from its fit. In a drag the others take their points from `like`, the model's own: where points stand on the mean scale
-   * does not depend on the link, only a preview shows working responses of another one, and a hand on a dial is not on the strip.
+   * A candidate drawn from its fit. In a drag the others are drawn `beside` the model's own as lines alone: their bands and working responses
+   * are seen only in a preview, and a hand on a dial is not on the strip. Their bridges span what the own points do.
    */
-  async candidate(spec: LinkSpec, says: string, own: boolean, of: Fit, like: CandidateFound | null = null): Promise<CandidateFound> {
+  async candidate(spec: LinkSpec, says: string, own: boolean, of: Fit, beside: CandidateFound | null = null): Promise<CandidateFound> {
     const { model, plan, grid, work } = this
     const link = this.link(spec, of)
-    const c = criticalValue(of, model.problem.confidence)
+    const c = beside === null ? criticalValue(of, model.problem.confidence) : null
     const curves: ScalesCurve[] = []
     const points: CandidateFound["points"][number][] = []
     for (const { level, code, rows, inside } of this.lines) {
@@ -71,7 +71,7 @@ export class Plot {
         ? await averagedLine(model, of, link, plan.of, grid, code, () => work.checkpoint())
         : heldLine(model, of, plan.of, grid, code)
       curves.push(curveOf(link, this.possible, line, c, grid, level, inside))
-      if (!plan.points || rows.length === 0 || like !== null) continue
+      if (!plan.points || rows.length === 0 || beside !== null) continue
       const known = plan.averaged ? await this.averagedAt(of, link, rows, code, line) : null
       const at = (x: Float64Array): Float64Array =>
         known === null ? heldLine(model, of, plan.of, x, code).eta : along(known.x, known.eta, x)
@@ -89,7 +89,7 @@ export class Plot {
       fitted: true,
       curves,
       points,
-      bridge: this.bridge(link, curves, like?.points ?? points),
+      bridge: this.bridge(link, curves, beside?.points ?? points),
       middle: { eta: link.eta(mean), slope: 1 / link.slope(link.eta(mean)) },
       fit: own || model.problem.rows > keptRows ? null : of,
     }

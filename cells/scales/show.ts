@@ -11,6 +11,7 @@ export function shown(found: ScalesFinding): readonly Block[] {
 
 function scalesBlock(found: ScalesFinding): ScalesBlock {
   const least = leastAic(found)
+  const shared: Shared = new Map()
   return {
     type: "scales",
     across: found.across,
@@ -23,12 +24,21 @@ function scalesBlock(found: ScalesFinding): ScalesBlock {
     aligned: found.aligned,
     complete: found.complete,
     confidence: found.confidence,
-    candidates: found.candidates.map((candidate) => drawn(candidate, found, least)),
+    candidates: found.candidates.map((candidate) => drawn(candidate, found, least, shared)),
     summary: summaryText(found),
   }
 }
 
-function drawn(candidate: CandidateFound, found: ScalesFinding, least: number | null): ScalesCandidate {
+/** What all curves have in common is copied once. */
+type Shared = Map<Float64Array | Uint8Array, Float64Array | Uint8Array>
+
+function copied<Values extends Float64Array | Uint8Array>(values: Values, shared: Shared): Values {
+  const copy = shared.get(values) ?? values.slice()
+  shared.set(values, copy)
+  return copy as Values
+}
+
+function drawn(candidate: CandidateFound, found: ScalesFinding, least: number | null, shared: Shared): ScalesCandidate {
   const align = found.aligned
     ? alignment(candidate, found.candidates[0] as CandidateFound)
     : (eta: Float64Array): Float64Array => eta.slice()
@@ -39,7 +49,7 @@ function drawn(candidate: CandidateFound, found: ScalesFinding, least: number | 
     deltaAic: deltaAic(candidate, found, least),
     trouble: candidate.trouble,
     choose: choice(candidate.link, found.model),
-    curves: candidate.curves.map((curve) => curveCopy(curve, align)),
+    curves: candidate.curves.map((curve) => curveCopy(curve, align, shared)),
     points: candidate.points.map((points) => pointsCopy(points, align)),
     bridge: { mu: candidate.bridge.mu.slice(), eta: align(candidate.bridge.eta) },
   }
@@ -58,16 +68,16 @@ function alignment(of: CandidateFound, own: CandidateFound): (eta: Float64Array)
   return (eta) => eta.map((at) => own.middle.eta + scale * (at - of.middle.eta))
 }
 
-const curveCopy = (curve: ScalesCurve, align: (eta: Float64Array) => Float64Array): ScalesCurve => ({
+const curveCopy = (curve: ScalesCurve, align: (eta: Float64Array) => Float64Array, shared: Shared): ScalesCurve => ({
   level: curve.level,
-  x: curve.x.slice(),
+  x: copied(curve.x, shared),
   eta: align(curve.eta),
   etaLow: align(curve.etaLow),
   etaHigh: align(curve.etaHigh),
   mu: curve.mu.slice(),
   muLow: curve.muLow.slice(),
   muHigh: curve.muHigh.slice(),
-  inside: curve.inside.slice(),
+  inside: copied(curve.inside, shared),
 })
 
 const pointsCopy = (points: ScalesPoints, align: (eta: Float64Array) => Float64Array): ScalesPoints => ({
