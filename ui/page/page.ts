@@ -450,6 +450,7 @@ export class Page extends LitElement {
       return
     }
     this.#unsay(id)
+    if (desk.stated.length === 0) this.#unsay("file")
     if (did.replaced) {
       this.#say({
         id,
