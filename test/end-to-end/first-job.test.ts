@@ -2,29 +2,14 @@
 // dragged, all of it is undone; what is there survives closing the window, goes out as a file and comes back from it. The console stays
 // empty, the policy blocks nothing, and axe finds nothing to say.
 
-import { mkdtemp, readFile, rm } from "node:fs/promises"
+import { readFile } from "node:fs/promises"
 import { createRequire } from "node:module"
-import { tmpdir } from "node:os"
 import { join } from "node:path"
-import type { Browser, Page } from "playwright-core"
-import { afterAll, beforeAll, describe, expect, it } from "vitest"
-import { launched, type Served, served, windowAt } from "./served.ts"
+import type { Page } from "playwright-core"
+import { describe, expect, it } from "vitest"
+import { running, windowAt } from "./served.ts"
 
-let server: Served
-let browser: Browser
-let folder: string
-
-beforeAll(async () => {
-  server = await served()
-  browser = await launched()
-  folder = await mkdtemp(join(tmpdir(), "etamu-"))
-})
-
-afterAll(async () => {
-  await browser.close()
-  await server.stop()
-  await rm(folder, { recursive: true })
-})
+const own = running()
 
 const rowOf = (page: Page, kind: string, nth = 0) => page.locator(`etamu-row.kind-${kind}`).nth(nth)
 
@@ -55,8 +40,8 @@ async function faultsByAxe(page: Page): Promise<readonly string[]> {
 
 describe("the first job", () => {
   it("goes from the sample through edits, a strip, a dial, undo, a file and back", async () => {
-    const context = await browser.newContext({ viewport: { width: 1440, height: 900 }, acceptDownloads: true })
-    const { page, wrong } = await windowAt(context, server.address)
+    const context = await own.browser.newContext({ viewport: { width: 1440, height: 900 }, acceptDownloads: true })
+    const { page, wrong } = await windowAt(context, own.server.address)
 
     // The sample opens and every cell comes to a finding.
     expect(await page.locator("input.title").inputValue()).toBe("How many cells spoil a bottle?")
@@ -132,13 +117,13 @@ describe("the first job", () => {
     await page.getByRole("button", { name: "Hand over" }).click()
     const download = await coming
     expect(download.suggestedFilename()).toBe("Bottles-with-another-link.etamu")
-    const file = join(folder, download.suggestedFilename())
+    const file = join(own.folder, download.suggestedFilename())
     await download.saveAs(file)
     expect(wrong).toEqual([])
     await context.close()
 
-    const other = await browser.newContext({ viewport: { width: 1024, height: 768 } })
-    const second = await windowAt(other, server.address)
+    const other = await own.browser.newContext({ viewport: { width: 1024, height: 768 } })
+    const second = await windowAt(other, own.server.address)
     const choosing = second.page.waitForEvent("filechooser")
     await second.page.getByRole("button", { name: "Open" }).click()
     await (await choosing).setFiles(file)
@@ -151,8 +136,8 @@ describe("the first job", () => {
   })
 
   it("brings in a file of one's own: enclosed, read, and a cell proposed that can be looked over", async () => {
-    const context = await browser.newContext({ viewport: { width: 1440, height: 900 } })
-    const { page, wrong } = await windowAt(context, server.address)
+    const context = await own.browser.newContext({ viewport: { width: 1440, height: 900 } })
+    const { page, wrong } = await windowAt(context, own.server.address)
     await page.getByRole("button", { name: "Shelf" }).click()
     await page.getByRole("button", { name: "Begin a new notebook" }).click()
     await expect.poll(() => page.locator("etamu-row").count()).toBe(0)
@@ -194,10 +179,10 @@ describe("the first job", () => {
   })
 
   it("lets one tab write and a second read, which writes when the first is gone", async () => {
-    const context = await browser.newContext({ viewport: { width: 1440, height: 900 } })
-    const first = await windowAt(context, server.address)
+    const context = await own.browser.newContext({ viewport: { width: 1440, height: 900 } })
+    const first = await windowAt(context, own.server.address)
     await savedAt(first.page)
-    const second = await windowAt(context, server.address)
+    const second = await windowAt(context, own.server.address)
     await expect.poll(() => second.page.locator("div.band").textContent()).toContain("open in another tab")
     expect(await second.page.locator("span.saved").textContent()).toBe("read only: another tab writes")
     await rowOf(first.page, "dial").locator(".statement").focus()

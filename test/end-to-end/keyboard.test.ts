@@ -1,28 +1,13 @@
 // The whole job by keyboard alone: no pointer is used from the first page to the notebook that is opened again. Files are handed to the
 // browser's own dialog, which is no part of the page.
 
-import { mkdtemp, rm, writeFile } from "node:fs/promises"
-import { tmpdir } from "node:os"
+import { writeFile } from "node:fs/promises"
 import { join } from "node:path"
-import type { Browser, Page } from "playwright-core"
-import { afterAll, beforeAll, describe, expect, it } from "vitest"
-import { launched, type Served, served, windowAt } from "./served.ts"
+import type { Page } from "playwright-core"
+import { describe, expect, it } from "vitest"
+import { running, windowAt } from "./served.ts"
 
-let server: Served
-let browser: Browser
-let folder: string
-
-beforeAll(async () => {
-  server = await served()
-  browser = await launched()
-  folder = await mkdtemp(join(tmpdir(), "etamu-"))
-})
-
-afterAll(async () => {
-  await browser.close()
-  await server.stop()
-  await rm(folder, { recursive: true })
-})
+const own = running()
 
 /** What has the focus, through all shadow roots, as a person would be told: its role and name. */
 const focused = (page: Page): Promise<string> =>
@@ -93,9 +78,9 @@ async function leave(page: Page): Promise<void> {
 
 describe("by keyboard alone", () => {
   it("a file is brought in, modelled, seen on both scales, changed, undone, handed over and opened again", async () => {
-    const context = await browser.newContext({ viewport: { width: 1440, height: 900 }, acceptDownloads: true })
-    const { page, wrong } = await windowAt(context, server.address)
-    const csv = join(folder, "trial.csv")
+    const context = await own.browser.newContext({ viewport: { width: 1440, height: 900 }, acceptDownloads: true })
+    const { page, wrong } = await windowAt(context, own.server.address)
+    const csv = join(own.folder, "trial.csv")
     const rows = [2, 4, 9, 16, 24, 31, 37, 39].map((killed, i) => `${i + 1},${killed},40,${i % 2 === 0 ? "007" : "008"}`)
     await writeFile(csv, `dose,killed,n,lot\n${rows.join("\n")}\n`)
 
@@ -199,14 +184,14 @@ describe("by keyboard alone", () => {
     await expect.poll(() => page.locator("span.saved").textContent()).toMatch(/^saved and read back/)
     const coming = page.waitForEvent("download")
     await page.keyboard.press("Control+s")
-    const file = join(folder, "by-keyboard.etamu")
+    const file = join(own.folder, "by-keyboard.etamu")
     await (await coming).saveAs(file)
     expect(wrong).toEqual([])
     await context.close()
 
     // Opened again, in a browser that knows nothing of it.
-    const other = await browser.newContext({ viewport: { width: 1440, height: 900 } })
-    const second = await windowAt(other, server.address)
+    const other = await own.browser.newContext({ viewport: { width: 1440, height: 900 } })
+    const second = await windowAt(other, own.server.address)
     const again = second.page.waitForEvent("filechooser")
     await second.page.keyboard.press("Control+o")
     await (await again).setFiles(file)

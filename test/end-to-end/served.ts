@@ -2,8 +2,12 @@
 // the console says and what the policy blocks is gathered, and a test ends by expecting none.
 
 import { spawn } from "node:child_process"
+import { mkdtemp, rm } from "node:fs/promises"
+import { tmpdir } from "node:os"
+import { join } from "node:path"
 import { fileURLToPath } from "node:url"
 import { type Browser, type BrowserContext, chromium, type Page } from "playwright-core"
+import { afterAll, beforeAll } from "vitest"
 import { browserArguments, browserPath } from "../../ui/build/browser.mjs"
 
 export interface Served {
@@ -38,6 +42,29 @@ export async function served(): Promise<Served> {
 }
 
 export const launched = (): Promise<Browser> => chromium.launch({ executablePath: browserPath(), args: browserArguments })
+
+/** The program, a browser and a folder for files, there while the tests of one file run. */
+export interface Running {
+  server: Served
+  browser: Browser
+  folder: string
+}
+
+/** Starts all three before the tests of a file and takes them away after. */
+export function running(): Running {
+  const own = {} as Running
+  beforeAll(async () => {
+    own.server = await served()
+    own.browser = await launched()
+    own.folder = await mkdtemp(join(tmpdir(), "etamu-"))
+  })
+  afterAll(async () => {
+    await own.browser.close()
+    await own.server.stop()
+    await rm(own.folder, { recursive: true })
+  })
+  return own
+}
 
 export interface Window {
   readonly page: Page

@@ -1,28 +1,13 @@
 // What may go wrong around a notebook is said plainly, and nothing is lost: a browser that keeps nothing, a file that was altered, a file that
 // is none, a data file that is missing.
 
-import { mkdtemp, readFile, rm, writeFile } from "node:fs/promises"
-import { tmpdir } from "node:os"
+import { readFile, writeFile } from "node:fs/promises"
 import { join } from "node:path"
-import type { Browser, Page } from "playwright-core"
-import { afterAll, beforeAll, describe, expect, it } from "vitest"
-import { launched, type Served, served, windowAt } from "./served.ts"
+import type { Page } from "playwright-core"
+import { describe, expect, it } from "vitest"
+import { running, windowAt } from "./served.ts"
 
-let server: Served
-let browser: Browser
-let folder: string
-
-beforeAll(async () => {
-  server = await served()
-  browser = await launched()
-  folder = await mkdtemp(join(tmpdir(), "etamu-"))
-})
-
-afterAll(async () => {
-  await browser.close()
-  await server.stop()
-  await rm(folder, { recursive: true })
-})
+const own = running()
 
 const bands = (page: Page) => page.locator("div.band").allTextContents()
 const saysBand = (page: Page, words: RegExp, timeout = 5000) =>
@@ -31,7 +16,7 @@ const saysBand = (page: Page, words: RegExp, timeout = 5000) =>
 async function handedOver(page: Page): Promise<string> {
   const coming = page.waitForEvent("download")
   await page.keyboard.press("Control+s")
-  const path = join(folder, `${crypto.randomUUID()}.etamu`)
+  const path = join(own.folder, `${crypto.randomUUID()}.etamu`)
   await (await coming).saveAs(path)
   return path
 }
@@ -44,9 +29,9 @@ async function opened(page: Page, path: string): Promise<void> {
 
 describe("trouble", () => {
   it("of a browser that keeps nothing is said at once, and the notebook works and can be handed over", async () => {
-    const context = await browser.newContext()
+    const context = await own.browser.newContext()
     await context.addInitScript(() => Object.defineProperty(globalThis, "indexedDB", { value: undefined }))
-    const { page, wrong } = await windowAt(context, server.address)
+    const { page, wrong } = await windowAt(context, own.server.address)
     await saysBand(page, /Not saved\. .*private window/)
     expect(await page.locator("span.saved").textContent()).toBe("not saved")
     await page.locator("etamu-row.kind-dial .statement").first().focus()
@@ -58,8 +43,8 @@ describe("trouble", () => {
   })
 
   it("with a file that was altered opens it read only, names the break, and lets the person decide", async () => {
-    const context = await browser.newContext()
-    const { page, wrong } = await windowAt(context, server.address)
+    const context = await own.browser.newContext()
+    const { page, wrong } = await windowAt(context, own.server.address)
     await expect.poll(() => page.locator("etamu-row.form-ready").count(), { timeout: 20_000 }).toBe(await page.locator("etamu-row").count())
     const path = await handedOver(page)
     const text = await readFile(path, "utf8")
@@ -93,25 +78,25 @@ describe("trouble", () => {
   })
 
   it("with an enclosure whose bytes are missing takes the file that was meant, and says so of another", async () => {
-    const first = await browser.newContext()
-    const whole = await handedOver((await windowAt(first, server.address)).page)
+    const first = await own.browser.newContext()
+    const whole = await handedOver((await windowAt(first, own.server.address)).page)
     await first.close()
     const records = (await readFile(whole, "utf8")).split("\n")
     const csv = (JSON.parse(records.find((line) => line.startsWith('{"@record":"bytes"')) ?? "{}") as { data: string }).data
     const id = "00000000-0000-4000-8000-000000000001"
-    const withoutBytes = join(folder, "without-bytes.etamu")
+    const withoutBytes = join(own.folder, "without-bytes.etamu")
     const left = records.filter((line) => !/^{"@record":"(bytes|seal)"/.test(line)).join("\n")
     await writeFile(withoutBytes, left.replaceAll(/"id":"[0-9a-f-]{36}"/g, `"id":"${id}"`).replaceAll(/^{"@record":"trail".*\n/gm, ""))
     // A browser that has never held these bytes, so that it cannot know them.
-    const context = await browser.newContext()
+    const context = await own.browser.newContext()
     await context.route("**/samples/index.json", (route) => route.fulfill({ json: [] }))
-    const { page, wrong } = await windowAt(context, server.address, ".adder.end")
+    const { page, wrong } = await windowAt(context, own.server.address, ".adder.end")
     await opened(page, withoutBytes)
     const asks = page.locator("etamu-row.kind-data .missing")
     await expect.poll(() => asks.textContent()).toMatch(/was written with\s+bottles\.csv/)
 
     // Another file of that name is not taken in silence.
-    const other = join(folder, "bottles.csv")
+    const other = join(own.folder, "bottles.csv")
     await writeFile(other, `${csv + csv.split("\n").at(-2)}\n`)
     const choosing = page.waitForEvent("filechooser")
     await asks.getByRole("button", { name: "choose it" }).click()
@@ -147,10 +132,10 @@ describe("trouble", () => {
   })
 
   it("with a file that is no notebook says what it is not, and leaves the page as it was", async () => {
-    const context = await browser.newContext()
-    const { page, wrong } = await windowAt(context, server.address)
+    const context = await own.browser.newContext()
+    const { page, wrong } = await windowAt(context, own.server.address)
     const title = await page.locator("input.title").inputValue()
-    const path = join(folder, "letter.etamu")
+    const path = join(own.folder, "letter.etamu")
     await writeFile(path, "Dear reader,\n")
     await opened(page, path)
     await saysBand(page, /letter\.etamu was not opened/)
@@ -160,8 +145,8 @@ describe("trouble", () => {
   })
 
   it("with a file on the shelf already offers both, and opens the copy beside it", async () => {
-    const context = await browser.newContext()
-    const { page, wrong } = await windowAt(context, server.address)
+    const context = await own.browser.newContext()
+    const { page, wrong } = await windowAt(context, own.server.address)
     const title = await page.locator("input.title").inputValue()
     await opened(page, await handedOver(page))
     await saysBand(page, /on the shelf already/)
@@ -174,14 +159,14 @@ describe("trouble", () => {
   })
 
   it("with data that a plain file names and does not hold asks for them by name", async () => {
-    const context = await browser.newContext()
-    const { page, wrong } = await windowAt(context, server.address)
-    const path = join(folder, "plain.cells")
+    const context = await own.browser.newContext()
+    const { page, wrong } = await windowAt(context, own.server.address)
+    const path = join(own.folder, "plain.cells")
     await writeFile(path, 'note\n# Two columns\n---\ndata d\n  from "two.csv"\n  column x number\n  column y count\n')
     await opened(page, path)
     await expect.poll(() => page.locator("input.title").inputValue()).toBe("Two columns")
     await expect.poll(() => page.locator("etamu-row.kind-data .missing").textContent()).toContain("two.csv")
-    const csv = join(folder, "other-name.csv")
+    const csv = join(own.folder, "other-name.csv")
     await writeFile(csv, "x,y\n1.5,2\n2.5,3\n")
     const choosing = page.waitForEvent("filechooser")
     await page.locator("etamu-row.kind-data .missing button").click()
@@ -193,14 +178,14 @@ describe("trouble", () => {
   })
 
   it("of work that never ends stays with its cell: the worker is started anew, and the rest goes on", async () => {
-    const context = await browser.newContext()
+    const context = await own.browser.newContext()
     // A worker that falls into an endless loop on one value.
     await context.route("**/evaluator.worker.js", async (route) => {
       const answer = await route.fetch()
       const trap = 'addEventListener("message", ({ data }) => { while (data.task?.text.startsWith("value stuck")) {} });'
       await route.fulfill({ response: answer, body: trap + (await answer.text()) })
     })
-    const { page, wrong } = await windowAt(context, server.address)
+    const { page, wrong } = await windowAt(context, own.server.address)
     const ready = () => page.locator("etamu-row.form-ready").count()
     const all = await page.locator("etamu-row").count()
     await expect.poll(ready, { timeout: 20_000 }).toBe(all)
