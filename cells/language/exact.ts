@@ -171,14 +171,6 @@ export function named(of: Fraction): string {
   return `(${written(of.above)})/(${written(of.below)})`
 }
 
-/** Every symbol in it. */
-export function symbolsIn({ above, below }: Fraction): ReadonlySet<string> {
-  const names = new Set<string>()
-  for (const polynomial of [above, below])
-    for (const monomial of polynomial.keys()) for (const part of partsOf(monomial)) names.add(part[0])
-  return names
-}
-
 /** The monomial as pairs of symbol and power. */
 export const partsOf = (monomial: string): readonly (readonly [string, number])[] =>
   monomial === ""
